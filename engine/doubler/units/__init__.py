@@ -1,0 +1,1 @@
+"""Unit text as engineers write it, turned into factors; consistent sets; suggestions."""

@@ -1,0 +1,1 @@
+"""A calc workbook as data: cells and declared units, formula graph, values and units over N cases."""
