@@ -1,0 +1,269 @@
+"""The call from a cell: arguments in any form, a grid of values back, errors as true error values with a reason."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass, field
+from typing import Any
+
+import numpy as np
+
+from doubler.catalogue.forms import OMITTED, ArgumentError, Bound, bind
+from doubler.catalogue.plan import CallError, Outcome, Plan, evaluate, plan_for, run_kernel, within_limits
+from doubler.catalogue.record import WorksheetFunction
+from doubler.errors import ErrorValue
+from doubler.units import ConsistentSet, Unit, UnitError, consistent_set, parse_unit
+
+MEMO_SIZE = 4096
+"""Calls of one function with texts only whose reading is kept; then the memory is begun anew."""
+
+
+@dataclass(frozen=True, slots=True)
+class CellResult:
+    """What a cell shows.
+
+    Attributes
+    ----------
+    grid
+        Rows of values: float, text, or `ErrorValue`; over cases a value may be a float64 array.
+    reasons
+        Why there are errors in it, one sentence each.
+    unit
+        Unit of the numbers; None for pure numbers and text.
+    failures
+        Over cases: (boolean array of lanes, error value, reason).
+    """
+
+    grid: list[list[Any]]
+    reasons: tuple[str, ...] = ()
+    unit: Unit | None = None
+    failures: tuple[Any, ...] = field(default=())
+
+
+_memo: dict[str, dict[tuple[Any, ...], tuple[Plan, list[Any], bool]]] = {}
+
+
+def call_cells(function: WorksheetFunction, arguments: Sequence[Any]) -> CellResult:
+    """Call a worksheet function with cell values, as every host does.
+
+    Parameters
+    ----------
+    function : WorksheetFunction
+    arguments : sequence
+        A cell value or a list of rows for each argument, in order; None where left out. The last, optional one is the
+        unit or the consistent set wanted.
+
+    Returns
+    -------
+    CellResult
+        Never raises for bad arguments: the grid then holds one error value and `reasons` says why.
+    """
+    key = tuple(arguments) if all(type(a) is str for a in arguments) else None
+    known = _memo.setdefault(function.name, {})
+    if key is not None and key in known:
+        plan, scaled, show_unit = known[key]
+        return _layout(function, run_kernel(function, plan, scaled), plan, (1, 1), show_unit)
+    try:
+        bound, wanted = bind_all(function, arguments)
+        plan = plan_for(function, tuple(b.unit for b in bound), wanted)
+        shape, values = _vector_shape(function, bound)
+        outcome = evaluate(function, plan, values)
+    except CallError as error:
+        return CellResult([[error.value]], error.reasons)
+    if key is not None and shape == (1, 1) and not outcome.failures:
+        _remember(function, known, key, plan, values, wanted is None)
+    result = _layout(function, outcome, plan, shape, wanted is None)
+    return _with_blanks(result, bound, shape, wanted is None)
+
+
+def _remember(
+    function: WorksheetFunction,
+    known: dict[tuple[Any, ...], tuple[Plan, list[Any], bool]],
+    key: tuple[Any, ...],
+    plan: Plan,
+    values: Sequence[Any],
+    show_unit: bool,
+) -> None:
+    """Keep the reading of a call whose arguments are all text (not its result) for the next time it is met."""
+    scaled = list(values)
+    for index, factor in enumerate(plan.factors):
+        if scaled[index] is not None and isinstance(scaled[index], np.ndarray):
+            scaled[index] = scaled[index] * (1.0 if factor is None else factor) + plan.offsets[index]
+    if within_limits(function, scaled):
+        if len(known) >= MEMO_SIZE:
+            known.clear()
+        known[key] = (plan, scaled, show_unit)
+
+
+def bind_all(
+    function: WorksheetFunction, arguments: Sequence[Any], lanes: bool = False
+) -> tuple[list[Bound], str | None]:
+    """Read all arguments; every bad one is reported at once.
+
+    Returns
+    -------
+    bound : list of Bound
+    wanted : str or None
+        The unit or set wanted of the result.
+
+    Raises
+    ------
+    CallError
+    """
+    declared = function.arguments
+    given, wanted, chosen = _split_result(function, list(arguments))
+    reasons: list[str] = []
+    value: ErrorValue | None = None
+    bound: list[Bound] = []
+    for index, argument in enumerate(declared):
+        item = given[index] if index < len(given) else None
+        if item is None and not argument.optional:
+            reasons.append(f"{argument.name} is missing ({argument.kind_name})")
+            value = ErrorValue.VALUE
+            continue
+        if item is None:
+            bound.append(_default(argument.default))
+            continue
+        try:
+            read = bind(argument, item, chosen, lanes)
+            bound.append(_default(argument.default) if read is OMITTED else read)
+        except ArgumentError as error:
+            reasons.append(str(error))
+            value = value or error.value
+    if reasons:
+        raise CallError(function.name, reasons, value or ErrorValue.VALUE)
+    _alike_forms(function, bound)
+    return bound, wanted
+
+
+def _default(default: Any) -> Bound:
+    if default is None or isinstance(default, str):
+        return Bound(default, None)
+    return Bound(np.array([float(default)]), None)
+
+
+def _alike_forms(function: WorksheetFunction, bound: Sequence[Bound]) -> None:
+    """Refuse bare numbers beside numbers with a unit where a function wants quantities that are alike."""
+    from doubler.catalogue.annotations import Alike
+
+    dimensionless = parse_unit("1").dimension
+    seen: dict[str, list[tuple[str, bool]]] = {}
+    for argument, item in zip(function.arguments, bound, strict=True):
+        if isinstance(argument.quantity, Alike) and item.values is not None and item.unit is not None:
+            letter = argument.quantity.letter or ""
+            seen.setdefault(letter, []).append((argument.name, item.unit.dimension == dimensionless))
+    for pairs in seen.values():
+        if len({bare for _, bare in pairs}) > 1:
+            bare_names = ", ".join(name for name, bare in pairs if bare)
+            raise CallError(function.name, [f"{bare_names} has no unit and the others have one; write its unit"])
+
+
+def _split_result(
+    function: WorksheetFunction, given: list[Any]
+) -> tuple[list[Any], str | None, ConsistentSet | None]:
+    """Take the closing result argument off: at its own place, or as the last one given where it can be nothing else."""
+    declared = function.arguments
+    if len(given) > len(declared) + 1:
+        raise CallError(function.name, [f"takes at most {len(declared) + 1} arguments, got {len(given)}"])
+    wanted: Any = None
+    if len(given) == len(declared) + 1:
+        wanted = _single(given.pop())
+    elif given and not declared[len(given) - 1].is_text and _names_a_unit(_single(given[-1])):
+        wanted = _single(given.pop())
+    if wanted is None or wanted == "":
+        return given, None, None
+    if isinstance(wanted, ErrorValue):
+        raise CallError(function.name, [f"the unit wanted is the error {wanted}"], wanted)
+    if not isinstance(wanted, str):
+        raise CallError(function.name, [f"the last argument names a unit or a set, such as \"MPa\"; it is {wanted!r}"])
+    try:
+        return given, wanted, consistent_set(wanted)
+    except UnitError as error:
+        raise CallError(function.name, [str(error)]) from error
+
+
+def _single(item: Any) -> Any:
+    if isinstance(item, list | tuple):
+        return item[0][0] if len(item) == 1 and len(item[0]) == 1 else False
+    return item
+
+
+def _names_a_unit(item: Any) -> bool:
+    if not isinstance(item, str) or not item.strip() or item.strip()[0].isdigit():
+        return False
+    try:
+        return consistent_set(item) is not None or parse_unit(item) is not None
+    except UnitError:
+        return False
+
+
+def _vector_shape(function: WorksheetFunction, bound: Sequence[Bound]) -> tuple[tuple[int, int], list[Any]]:
+    """Find the one shape of all vector arguments; unlike lengths are an error."""
+    shape = (1, 1)
+    first = ""
+    for argument, item in zip(function.arguments, bound, strict=True):
+        if argument.entries or item.shape == (1, 1):
+            continue
+        if shape == (1, 1):
+            shape, first = item.shape, argument.name
+        elif item.shape != shape and not (1 in shape and sorted(item.shape) == sorted(shape)):
+            lengths = f"{first} has {_count(shape)} values and {argument.name} has {_count(item.shape)}"
+            raise CallError(function.name, [f"{lengths}; give vectors of one length"])
+    return shape, [item.values for item in bound]
+
+
+def _count(shape: tuple[int, int]) -> str:
+    return str(shape[0] * shape[1]) if 1 in shape else f"{shape[0]} × {shape[1]}"
+
+
+def _layout(
+    function: WorksheetFunction, outcome: Outcome, plan: Plan, shape: tuple[int, int], show_unit: bool
+) -> CellResult:
+    """Arrange values (and units, side by side) as the sheet shows them."""
+    unit = plan.result_unit
+    extra = function.result.extra_axes
+    values = outcome.values
+    if shape == (1, 1) and not extra and not outcome.failures:
+        value = values.reshape(-1)[0] if values.dtype == object else values.item()
+        return CellResult([[value, unit.text]] if show_unit and unit is not None else [[value]], (), unit)
+    count = shape[0] * shape[1]
+    flat = np.broadcast_to(values, (count, *values.shape[values.ndim - extra :])).astype(object)
+    for failure in outcome.failures:
+        flat[np.broadcast_to(failure.lanes, (count,))] = failure.value
+    reasons = tuple(dict.fromkeys(failure.reason for failure in outcome.failures))
+    if extra == 2 and count > 1 or (extra == 1 and shape[1] > 1):
+        reason = f"{function.name}: gives several values a lane; give its vectors as columns, or one lane at a time"
+        return CellResult([[ErrorValue.VALUE]], (reason,))
+    if extra == 2:
+        grid = [list(line) for line in flat[0]]
+    elif extra == 1:
+        grid = [list(line) for line in flat]
+    else:
+        grid = [list(line) for line in flat.reshape(shape)]
+    if show_unit and unit is not None:
+        grid = _add_units(grid, unit.text, shape)
+    return CellResult(grid, tuple(f"{function.name}: {reason}" for reason in reasons), unit)
+
+
+def _add_units(grid: list[list[Any]], text: str, shape: tuple[int, int]) -> list[list[Any]]:
+    if shape[0] == 1 and shape[1] > 1:
+        return [*grid, [text] * shape[1]]
+    return [[*line, text] for line in grid]
+
+
+def _with_blanks(
+    result: CellResult, bound: Sequence[Bound], shape: tuple[int, int], show_unit: bool
+) -> CellResult:
+    """Put the error of an element that holds no number in that element's place."""
+    blanks = [blank for item in bound for blank in item.blanks]
+    if not blanks:
+        return result
+    grid = [list(line) for line in result.grid]
+    width = len(grid[0]) - (1 if show_unit and result.unit is not None and shape[1] == 1 else 0)
+    for index, value, _ in blanks:
+        row, column = divmod(index, shape[1])
+        cells = range(width) if shape[1] == 1 else [column]
+        for position in cells:
+            grid[row][position] = value
+    told = tuple(dict.fromkeys((*(reason for _, _, reason in blanks), *result.reasons)))
+    return CellResult(grid, told, result.unit)
