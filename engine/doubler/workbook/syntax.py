@@ -141,6 +141,14 @@ class Call:
 
 
 @dataclass(frozen=True, slots=True)
+class Apply:
+    """A call of what an expression gives, as in ``LAMBDA(x, x+1)(3)``."""
+
+    function: Node
+    arguments: tuple[Node, ...]
+
+
+@dataclass(frozen=True, slots=True)
 class ArrayLiteral:
     """An array constant, row by row."""
 
@@ -161,5 +169,6 @@ Node = (
     | Unary
     | Binary
     | Call
+    | Apply
     | ArrayLiteral
 )

@@ -1,0 +1,339 @@
+"""The formula graph of a workbook: groups of equal formulas, what they read, their order of evaluation."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass, field
+from typing import Any
+
+from doubler.workbook.coerce import CannotEvaluateError
+from doubler.workbook.geometry import Geometry, Place, Run
+from doubler.workbook.model import Address, Area, Cell, Sheet, Workbook
+from doubler.workbook.occupancy import Occupancy
+from doubler.workbook.ordering import strongly_connected
+from doubler.workbook.parse import FormulaError, FormulaParser
+from doubler.workbook.program import Program, compile_tree
+from doubler.workbook.references import address_text, read_area
+from doubler.workbook.resolve import Resolver
+from doubler.workbook.syntax import Node, RangeRef
+
+
+@dataclass(slots=True)
+class Group:
+    """Consecutive copies of one formula, evaluated as one.
+
+    Attributes
+    ----------
+    run
+        Where the copies stand.
+    tree
+        The formula as parsed, None where it cannot be; `resolved` without names and structured references.
+    program
+        Its compiled form, None where it cannot be evaluated.
+    reason
+        Why it cannot be evaluated; empty where it can.
+    area
+        For an array formula the rectangle that it fills.
+    spills
+        Whether it is a dynamic array formula.
+    """
+
+    run: Run
+    tree: Node | None
+    resolved: Node | None = None
+    program: Program | None = None
+    reason: str = ""
+    area: Area | None = None
+    spills: bool = False
+
+
+@dataclass
+class Graph:
+    """A workbook as a function: its groups of formulas in the order of evaluation.
+
+    Attributes
+    ----------
+    workbook
+        The workbook.
+    groups
+        All groups.
+    edges
+        For each node what it reads: first the groups, then rectangles that hold several groups.
+    order
+        The nodes, each after those that it reads; without the members of cycles.
+    cycles
+        The circular references found: the cells of each.
+    occupancy
+        For each sheet which cells are computed.
+    """
+
+    workbook: Workbook
+    geometry: Geometry
+    groups: list[Group]
+    edges: list[set[int]]
+    order: list[int]
+    cycles: list[list[tuple[str, Address]]]
+    occupancy: list[Occupancy]
+    areas: dict[Place, int] = field(default_factory=dict)
+    plans: dict[Any, Any] = field(default_factory=dict)
+
+    def sheet_index(self, name: str) -> int | None:
+        """Return the index of the sheet of that name, or None."""
+        return self.geometry.sheets.get(name.casefold())
+
+    def group_at(self, sheet: str, address: Address) -> tuple[int, int] | None:
+        """Return the group and copy that compute a cell; None where it is a constant or empty."""
+        index = self.sheet_index(sheet)
+        return None if index is None else self.occupancy[index].at(*address)
+
+    def tree_at(self, sheet: str, address: Address) -> Node | None:
+        """Return the syntax tree of a formula cell, as parsed; None where there is none."""
+        found = self.group_at(sheet, address)
+        return None if found is None else self.groups[found[0]].tree
+
+    def places_read(self, group: int) -> list[Place]:
+        """Return the rectangles that a group reads, over all its copies."""
+        program = self.groups[group].program
+        if program is None:
+            return []
+        return [
+            place for slot in program.slots for place in self.geometry.covered(slot, self.groups[group].run)
+        ]
+
+    def name_of(self, group: int, lane: int = 0) -> str:
+        """Return a copy's cell as it is written, with its sheet."""
+        run = self.groups[group].run
+        return f"{self.workbook.sheets[run.sheet].name}!{address_text(run.cell(lane))}"
+
+
+def build_graph(workbook: Workbook) -> Graph:
+    """Build the formula graph of a workbook.
+
+    Parameters
+    ----------
+    workbook : Workbook
+        As read.
+
+    Returns
+    -------
+    Graph
+        Never fails for a formula: what cannot be evaluated keeps its reason.
+    """
+    builder = _Builder(workbook)
+    groups = builder.groups()
+    while True:
+        occupancy = _occupied(workbook, groups)
+        edges, areas = _edges(builder.geometry, groups, occupancy)
+        order, rings = _ordered(edges, len(groups))
+        wide = {index for ring in rings for index in ring if groups[index].run.count > 1}
+        if not wide:
+            break
+        # A fill that reads itself (a running total) is evaluated copy by copy.
+        groups = [
+            part
+            for index, group in enumerate(groups)
+            for part in (_split(group) if index in wide else [group])
+        ]
+    graph = Graph(workbook, builder.geometry, groups, edges, order, [], occupancy, areas)
+    for ring in rings:
+        cells = [(workbook.sheets[groups[i].run.sheet].name, groups[i].run.cell(0)) for i in ring]
+        graph.cycles.append(sorted(cells))
+        shown = ", ".join(graph.name_of(i) for i in ring[:6]) + (", …" if len(ring) > 6 else "")
+        for index in ring:
+            groups[index].reason = f"it is part of a circular reference: {shown}"
+    return graph
+
+
+def _split(group: Group) -> list[Group]:
+    run = group.run
+    return [
+        Group(Run(run.sheet, *run.cell(lane)), group.tree, group.resolved, group.program, group.reason)
+        for lane in range(run.count)
+    ]
+
+
+class _Builder:
+    def __init__(self, workbook: Workbook) -> None:
+        self.workbook = workbook
+        self.geometry = Geometry(workbook)
+        self.parser = FormulaParser()
+        self.resolver = Resolver(workbook)
+        self.programs: dict[tuple[int, bool], Program | str] = {}
+        self.kept: list[Node] = []
+
+    def groups(self) -> list[Group]:
+        found: list[Group] = []
+        for index, sheet in enumerate(self.workbook.sheets):
+            found += self._sheet(index, sheet)
+        return found
+
+    def _sheet(self, index: int, sheet: Sheet) -> list[Group]:
+        groups: list[Group] = []
+        trees: dict[Address, Node] = {}
+        shared: dict[int, Node] = {}
+        for address, cell in sheet.cells.items():
+            if cell.formula is None:
+                continue
+            try:
+                tree = shared.get(cell.shared) if cell.shared is not None else None
+                if tree is None:
+                    tree = self.parser.tree(cell.formula, address)
+                    if cell.shared is not None:
+                        shared[cell.shared] = tree
+            except FormulaError as error:
+                groups.append(Group(Run(index, *address), None, reason=str(error)))
+                continue
+            if cell.array_range is not None or cell.dynamic:
+                groups.append(self._array_group(index, sheet, address, cell, tree))
+            else:
+                trees[address] = tree
+        runs = _runs(index, trees)
+        for run in runs:
+            groups += self._grouped(run, sheet, trees[run.row, run.column])
+        return groups
+
+    def _array_group(self, index: int, sheet: Sheet, address: Address, cell: Cell, tree: Node) -> Group:
+        group = Group(Run(index, *address), tree, spills=cell.dynamic)
+        group.area = Area(*address, *address)
+        if cell.array_range:
+            area = read_area(cell.array_range, (0, 0), None)
+            if isinstance(area, RangeRef):
+                rows, columns = (area.first_row, area.last_row), (area.first_column, area.last_column)
+                assert rows[0] is not None
+                assert rows[1] is not None
+                assert columns[0] is not None
+                assert columns[1] is not None
+                group.area = Area(rows[0].number, columns[0].number, rows[1].number, columns[1].number)
+        self._compile(group, sheet, array=True)
+        return group
+
+    def _grouped(self, run: Run, sheet: Sheet, tree: Node) -> list[Group]:
+        if run.count > 1 and not self.resolver.is_plain(tree) and not self._alike(run, sheet, tree):
+            return [part for part in _split(Group(run, tree)) if self._compile(part, sheet, array=False)]
+        group = Group(run, tree)
+        self._compile(group, sheet, array=False)
+        if group.program is not None and any(
+            self.geometry.must_split(slot, run) for slot in group.program.slots
+        ):
+            return _split(group)
+        return [group]
+
+    def _alike(self, run: Run, sheet: Sheet, tree: Node) -> bool:
+        """Whether 'this row' of a table means the same in all copies: some may stand beside the table's end."""
+        try:
+            first = self.resolver.resolve(tree, sheet, run.cell(0))
+            return first == self.resolver.resolve(tree, sheet, run.last)
+        except CannotEvaluateError:
+            return True
+
+    def _compile(self, group: Group, sheet: Sheet, *, array: bool) -> bool:
+        assert group.tree is not None
+        tree = group.tree
+        try:
+            if not self.resolver.is_plain(tree):
+                tree = self.resolver.resolve(tree, sheet, group.run.cell(0))
+                self.kept.append(tree)
+        except CannotEvaluateError as error:
+            group.reason = str(error)
+            return True
+        group.resolved = tree
+        program = self.programs.get((id(tree), array))
+        if program is None:
+            try:
+                program = compile_tree(tree, array)
+            except CannotEvaluateError as error:
+                program = str(error)
+            except RecursionError:
+                program = "the formula is nested too deeply"
+            self.programs[id(tree), array] = program
+        if isinstance(program, str):
+            group.reason = program
+        else:
+            group.program = program
+        return True
+
+
+def _runs(sheet: int, trees: dict[Address, Node]) -> list[Run]:
+    """Find runs of equal trees, first down the columns, then along the rows."""
+    runs: list[Run] = []
+    single: list[Address] = []
+    by_column = sorted(trees, key=lambda address: (address[1], address[0]))
+    for start, count in _stretches(by_column, trees, (1, 0)):
+        if count == 1:
+            single.append(by_column[start])
+        else:
+            runs.append(Run(sheet, *by_column[start], count, 1, 0))
+    single.sort()
+    for start, count in _stretches(single, trees, (0, 1)):
+        across = 1 if count > 1 else 0
+        runs.append(Run(sheet, *single[start], count, 0, across))
+    return runs
+
+
+def _stretches(
+    cells: list[Address], trees: dict[Address, Node], step: tuple[int, int]
+) -> Iterable[tuple[int, int]]:
+    start = 0
+    for at in range(1, len(cells) + 1):
+        if at < len(cells):
+            row, column = cells[at - 1]
+            if cells[at] == (row + step[0], column + step[1]) and trees[cells[at]] is trees[cells[at - 1]]:
+                continue
+        yield start, at - start
+        start = at
+
+
+def _occupied(workbook: Workbook, groups: list[Group]) -> list[Occupancy]:
+    occupancy = [Occupancy() for _ in workbook.sheets]
+    for index, group in enumerate(groups):
+        run, there = group.run, occupancy[group.run.sheet]
+        if group.area is not None:
+            for column in range(group.area.first_column, group.area.last_column + 1):
+                there.add(column, group.area.first_row, group.area.last_row, index)
+        elif run.across:
+            for lane in range(run.count):
+                there.add(run.column + lane, run.row, run.row, index, lane)
+        else:
+            there.add(run.column, run.row, run.last[0], index)
+    for there in occupancy:
+        there.settle()
+    return occupancy
+
+
+def _edges(
+    geometry: Geometry, groups: list[Group], occupancy: list[Occupancy]
+) -> tuple[list[set[int]], dict[Place, int]]:
+    """Find what each group reads.
+
+    A rectangle over several groups becomes a node of its own, so that many formulas over one large range cost
+    their number plus its size, not the product.
+    """
+    edges: list[set[int]] = [set() for _ in groups]
+    areas: dict[Place, int] = {}
+    for index, group in enumerate(groups):
+        if group.program is None:
+            continue
+        for slot in group.program.slots:
+            for place in geometry.covered(slot, group.run):
+                node = areas.get(place)
+                if node is None:
+                    found = occupancy[place[0]].groups(place[1])
+                    if len(found) <= 1:
+                        edges[index] |= found
+                        continue
+                    node = areas[place] = len(edges)
+                    edges.append(found)
+                edges[index].add(node)
+    return edges, areas
+
+
+def _ordered(edges: list[set[int]], count: int) -> tuple[list[int], list[list[int]]]:
+    """Return the nodes in order, and the rings among the first `count` of them."""
+    order: list[int] = []
+    rings: list[list[int]] = []
+    for component in strongly_connected(edges):
+        if len(component) > 1 or component[0] in edges[component[0]]:
+            rings.append(sorted(index for index in component if index < count))
+        else:
+            order.append(component[0])
+    return order, rings
