@@ -4,7 +4,15 @@ from doubler.catalogue.cells import CellResult, bind_all, call_cells
 from doubler.catalogue.formula_text import cell
 from doubler.catalogue.limits import Condition, Limit, Refusal, condition
 from doubler.catalogue.plan import CallError
-from doubler.catalogue.record import CATEGORIES, Argument, Result, WorksheetFunction, lookup, names, worksheet_function
+from doubler.catalogue.record import (
+    CATEGORIES,
+    Argument,
+    Result,
+    WorksheetFunction,
+    lookup,
+    names,
+    worksheet_function,
+)
 
 __all__ = [
     "CATEGORIES",

@@ -158,24 +158,20 @@ def _alike_forms(function: WorksheetFunction, bound: Sequence[Bound]) -> None:
             raise CallError(function.name, [f"{bare_names} has no unit and the others have one; write its unit"])
 
 
-def _split_result(
-    function: WorksheetFunction, given: list[Any]
-) -> tuple[list[Any], str | None, ConsistentSet | None]:
+def _split_result(function: WorksheetFunction, given: list[Any]) -> tuple[list[Any], str | None, ConsistentSet | None]:
     """Take the closing result argument off: at its own place, or as the last one given where it can be nothing else."""
     declared = function.arguments
     if len(given) > len(declared) + 1:
         raise CallError(function.name, [f"takes at most {len(declared) + 1} arguments, got {len(given)}"])
     wanted: Any = None
-    if len(given) == len(declared) + 1:
-        wanted = _single(given.pop())
-    elif given and not declared[len(given) - 1].is_text and _names_a_unit(_single(given[-1])):
+    if len(given) == len(declared) + 1 or (given and not declared[len(given) - 1].is_text and _names_a_unit(_single(given[-1]))):
         wanted = _single(given.pop())
     if wanted is None or wanted == "":
         return given, None, None
     if isinstance(wanted, ErrorValue):
         raise CallError(function.name, [f"the unit wanted is the error {wanted}"], wanted)
     if not isinstance(wanted, str):
-        raise CallError(function.name, [f"the last argument names a unit or a set, such as \"MPa\"; it is {wanted!r}"])
+        raise CallError(function.name, [f'the last argument names a unit or a set, such as "MPa"; it is {wanted!r}'])
     try:
         return given, wanted, consistent_set(wanted)
     except UnitError as error:
@@ -231,7 +227,7 @@ def _layout(
     for failure in outcome.failures:
         flat[np.broadcast_to(failure.lanes, (count,))] = failure.value
     reasons = tuple(dict.fromkeys(failure.reason for failure in outcome.failures))
-    if extra == 2 and count > 1 or (extra == 1 and shape[1] > 1):
+    if (extra == 2 and count > 1) or (extra == 1 and shape[1] > 1):
         reason = f"{function.name}: gives several values a lane; give its vectors as columns, or one lane at a time"
         return CellResult([[ErrorValue.VALUE]], (reason,))
     if extra == 2:
@@ -251,9 +247,7 @@ def _add_units(grid: list[list[Any]], text: str, shape: tuple[int, int]) -> list
     return [[*line, text] for line in grid]
 
 
-def _with_blanks(
-    result: CellResult, bound: Sequence[Bound], shape: tuple[int, int], show_unit: bool
-) -> CellResult:
+def _with_blanks(result: CellResult, bound: Sequence[Bound], shape: tuple[int, int], show_unit: bool) -> CellResult:
     """Put the error of an element that holds no number in that element's place."""
     blanks = [blank for item in bound for blank in item.blanks]
     if not blanks:

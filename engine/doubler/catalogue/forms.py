@@ -193,13 +193,11 @@ def bare_unit(argument: Argument, chosen: ConsistentSet | None, cell: Any) -> Un
     shown = "an array of bare numbers" if isinstance(cell, np.ndarray) else f"the bare number {cell:g}"
     raise ArgumentError(
         f"{argument.name} is {shown} and has no unit; write {_due(argument)}, "
-        f"or name a consistent set such as \"N-mm\" as the last argument"
+        f'or name a consistent set such as "N-mm" as the last argument'
     )
 
 
-def _bind_range(
-    argument: Argument, cells: list[list[Any]], chosen: ConsistentSet | None, lanes: bool
-) -> Bound:
+def _bind_range(argument: Argument, cells: list[list[Any]], chosen: ConsistentSet | None, lanes: bool) -> Bound:
     rows, columns = len(cells), len(cells[0])
     first = cells[0][0]
     if columns == 2 and all(is_number(row[0]) and isinstance(row[1], str) for row in cells):
@@ -242,7 +240,7 @@ def heading_unit(argument: Argument, heading: str, chosen: ConsistentSet | None)
     if chosen is not None:
         return bare_unit(argument, chosen, 0.0)
     raise ArgumentError(
-        f"{argument.name}: the heading {heading!r} names no unit; write it as in \"{label} [{_unit_hint(argument)}]\""
+        f'{argument.name}: the heading {heading!r} names no unit; write it as in "{label} [{_unit_hint(argument)}]"'
     )
 
 
@@ -293,7 +291,12 @@ def _bind_texts(argument: Argument, flat: list[Any], shape: tuple[int, int], lan
 
 
 def _vector(
-    argument: Argument, flat: list[Any], unit: Unit | None, shape: tuple[int, int], lanes: bool, offset: int = 1
+    argument: Argument,
+    flat: list[Any],
+    unit: Unit | None,
+    shape: tuple[int, int],
+    lanes: bool,
+    offset: int = 1,
 ) -> Bound:
     if not flat:
         raise ArgumentError(f"{argument.name} has a heading and no values under it")

@@ -83,7 +83,11 @@ POSITIVE = Limit(0.0, np.inf, True, False, "must be positive")
 NOT_NEGATIVE = Limit(0.0, np.inf, False, False, "must not be negative")
 POISSON = Limit(-1.0, 0.5, True, False, "must be above -1 and at most 0.5, the range of a stable isotropic material")
 POISSON_OPEN = Limit(
-    -1.0, 0.5, True, True, "must be above -1 and below 0.5; at 0.5 the material is incompressible and this has no result"
+    -1.0,
+    0.5,
+    True,
+    True,
+    "must be above -1 and below 0.5; at 0.5 the material is incompressible and this has no result",
 )
 AT_LEAST_ONE = Limit(1.0, np.inf, False, False, "must be at least 1")
 

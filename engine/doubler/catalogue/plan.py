@@ -18,6 +18,7 @@ from doubler.catalogue.limits import Refusal
 from doubler.catalogue.record import Argument, WorksheetFunction
 from doubler.errors import ErrorValue, InputError
 from doubler.units import ConsistentSet, Dimension, Unit, consistent_set, kind, parse_unit
+from doubler.units import factor as unit_factor
 
 BLOCK = 8192
 """Lanes evaluated at a time, so that the live arrays stay in cache."""
@@ -146,7 +147,7 @@ def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result
     factors: list[float | None] = []
     offsets: list[float] = []
     for unit in units:
-        factor = 1.0 if unit is None else unit.scale / _internal_unit(unit.dimension, system).scale
+        factor = 1.0 if unit is None else unit_factor(unit, _internal_unit(unit.dimension, system))
         factors.append(None if factor == 1.0 else factor)
         offsets.append(0.0 if unit is None else unit.offset)
     try:
@@ -156,7 +157,7 @@ def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result
         result_unit = None
     if reasons:
         raise CallError(function.name, reasons)
-    scale = 1.0 if result_unit is None else _internal_unit(result_unit.dimension, system).scale / result_unit.scale
+    scale = 1.0 if result_unit is None else unit_factor(_internal_unit(result_unit.dimension, system), result_unit)
     offset = 0.0 if result_unit is None else result_unit.offset
     return Plan(tuple(factors), tuple(offsets), units, scale, offset, result_unit)
 
@@ -341,8 +342,7 @@ def _evaluate_valid_lanes(
         blank = np.full(shape, "", dtype=object)
     if good.any():
         kept = [
-            _lanes_of(value, good, shape, argument.entries)
-            for argument, value in zip(arguments, scaled, strict=True)
+            _lanes_of(value, good, shape, argument.entries) for argument, value in zip(arguments, scaled, strict=True)
         ]
         outcome = run_kernel(function, plan, kept)
         blank[good] = outcome.values

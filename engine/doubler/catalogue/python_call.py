@@ -60,7 +60,9 @@ def call(function: WorksheetFunction, positional: Sequence[Any], named: Mapping[
     plan = plan_for(function, tuple(units), None) if with_units else _plain_plan(len(values))
     outcome = evaluate(function, plan, values)
     if outcome.failures:
-        raise CallError(function.name, list(dict.fromkeys(f.reason for f in outcome.failures)), outcome.failures[0].value)
+        raise CallError(
+            function.name, list(dict.fromkeys(f.reason for f in outcome.failures)), outcome.failures[0].value
+        )
     return _shaped(outcome, plan, single)
 
 
