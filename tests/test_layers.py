@@ -14,7 +14,8 @@ LAYERS = [
     {"units"},
     {"catalogue"},
     {"mechanics"},
-    {"workbook", "cases"},
+    {"workbook"},
+    {"cases", "summary"},
     {"fill", "sweep", "size", "explain", "check"},
     {"hosts", "cli", "__main__", "demo"},
 ]

@@ -43,7 +43,9 @@ class EnvelopeLine:
     not_computed: int
 
 
-def envelope(outputs: Sequence[Port], results: Mapping[str, Sequence[Scalar]], names: Sequence[str]) -> list[EnvelopeLine]:
+def envelope(
+    outputs: Sequence[Port], results: Mapping[str, Sequence[Scalar]], names: Sequence[str]
+) -> list[EnvelopeLine]:
     """Return lowest and highest value of every numeric output, with the governing cases.
 
     Parameters
@@ -81,7 +83,11 @@ def envelope(outputs: Sequence[Port], results: Mapping[str, Sequence[Scalar]], n
 def _order(line: EnvelopeLine) -> tuple[bool, bool, float]:
     value = line.lowest.value
     number = value if isinstance(value, float) else float("-inf")
-    return (not line.port.is_margin, line.port.is_margin and isinstance(value, float), number if line.port.is_margin else 0)
+    return (
+        not line.port.is_margin,
+        line.port.is_margin and isinstance(value, float),
+        number if line.port.is_margin else 0,
+    )
 
 
 def write_summary(
@@ -142,7 +148,9 @@ def _put(sheet: Any, row: int, column: int, value: Scalar, **style: Any) -> Any:
         cell.value, cell.data_type = value, "s"  # text never becomes a formula
     else:
         cell.value = value
-    cell.font = Font(name="Liberation Sans", size=style.get("size", 10), bold=style.get("bold", False), color=style.get("color", INK))
+    cell.font = Font(
+        name="Liberation Sans", size=style.get("size", 10), bold=style.get("bold", False), color=style.get("color", INK)
+    )
     if "fill" in style:
         cell.fill = PatternFill("solid", fgColor=style["fill"])
     if "format" in style:
@@ -161,7 +169,9 @@ def _write_envelope(sheet: Any, title: str, lines: Sequence[EnvelopeLine], count
     lost = sum(line.not_computed > 0 for line in lines)
     verdict = f"{count} load cases. "
     verdict += f"{below} of the margins fall below zero. " if below else "No margin falls below zero. "
-    verdict += f"{lost} outputs could not be computed in every case." if lost else "Every output was computed in every case."
+    verdict += (
+        f"{lost} outputs could not be computed in every case." if lost else "Every output was computed in every case."
+    )
     _put(sheet, 2, 1, verdict, bold=True, color=RUST if below or lost else TEAL)
     caution = "An aid to calculation: to be checked and approved under the applicable codes by a qualified engineer."
     _put(sheet, 3, 1, caution, color=GREY, size=9)

@@ -164,7 +164,9 @@ def _split_result(function: WorksheetFunction, given: list[Any]) -> tuple[list[A
     if len(given) > len(declared) + 1:
         raise CallError(function.name, [f"takes at most {len(declared) + 1} arguments, got {len(given)}"])
     wanted: Any = None
-    if len(given) == len(declared) + 1 or (given and not declared[len(given) - 1].is_text and _names_a_unit(_single(given[-1]))):
+    if len(given) == len(declared) + 1 or (
+        given and not declared[len(given) - 1].is_text and _names_a_unit(_single(given[-1]))
+    ):
         wanted = _single(given.pop())
     if wanted is None or wanted == "":
         return given, None, None

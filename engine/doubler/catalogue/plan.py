@@ -362,5 +362,5 @@ def _result_shape(function: WorksheetFunction) -> tuple[int, ...]:
 def _lanes_of(value: Any, good: Any, shape: tuple[int, ...], entries: bool) -> Any:
     if not isinstance(value, np.ndarray):
         return value
-    whole = shape + (value.shape[-1],) if entries else shape
+    whole = (*shape, value.shape[-1]) if entries else shape
     return np.broadcast_to(value, whole)[good]

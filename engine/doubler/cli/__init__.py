@@ -44,7 +44,9 @@ def main(arguments: Sequence[str] | None = None) -> int:
         print(f"doubler {options.verb}: stopped; what is written is whole, the same call goes on", file=sys.stderr)
         return 130
     except Exception as fault:
-        print(f"doubler {options.verb}: a fault of the program itself: {type(fault).__name__}: {fault}", file=sys.stderr)
+        print(
+            f"doubler {options.verb}: a fault of the program itself: {type(fault).__name__}: {fault}", file=sys.stderr
+        )
         if os.environ.get("DOUBLER_TRACEBACK"):
             raise
         print("Set DOUBLER_TRACEBACK=1 to see where; please report it with the file that shows it.", file=sys.stderr)

@@ -49,7 +49,9 @@ def parser() -> argparse.ArgumentParser:
     p.add_argument("--fresh", action="store_true", help="write every workbook anew, also those already there")
     p.add_argument("--json", action="store_true", help="print the envelope as JSON")
 
-    p = verb("sweep", "evaluate every case into one table", "doubler sweep shaft.xlsx cases.parquet --out results.parquet")
+    p = verb(
+        "sweep", "evaluate every case into one table", "doubler sweep shaft.xlsx cases.parquet --out results.parquet"
+    )
     p.add_argument("template", help="any .xlsx or .xlsm")
     p.add_argument("cases", help="table of load cases: .csv, .parquet or .xlsx")
     p.add_argument("--out", required=True, metavar="RESULTS", help="a .parquet, .csv or .xlsx file")

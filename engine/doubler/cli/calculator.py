@@ -129,7 +129,7 @@ def describe(function: Any) -> str:
     result = function.result
     lines.append(f"  result  [{result.kind_name}]  {result.description}")
     lines += [f"  Condition: {rule.words}." for rule in function.conditions]
-    lines.append("  The last argument names the unit of the result (such as \"MPa\") or a consistent set (\"N-mm\").")
+    lines.append('  The last argument names the unit of the result (such as "MPa") or a consistent set ("N-mm").')
     for title, text in (("Assumptions and limits", documentation.notes), ("Source", documentation.sources)):
         if text:
             lines += ["", title, *(f"  {line}" for line in text.splitlines())]

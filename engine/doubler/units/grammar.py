@@ -130,10 +130,7 @@ class _Reader:
     def factor(self) -> Unit:
         kind, text = self.take()
         if kind == "sqrt":
-            if text.startswith("√"):
-                unit = self.factor() ** Fraction(1, 2)
-            else:
-                unit = self.inside() ** Fraction(1, 2)
+            unit = self.factor() ** Fraction(1, 2) if text.startswith("√") else self.inside() ** Fraction(1, 2)
         elif kind == "open":
             unit = self.inside()
         elif kind == "number":

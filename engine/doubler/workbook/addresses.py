@@ -43,9 +43,7 @@ def column_letters(column: int) -> str:
     'AB'
     """
     if not 1 <= column <= MAX_COLUMN:
-        raise InputError(
-            f"column {column} is outside the sheet: columns run from 1 (A) to {MAX_COLUMN} (XFD)"
-        )
+        raise InputError(f"column {column} is outside the sheet: columns run from 1 (A) to {MAX_COLUMN} (XFD)")
     letters = ""
     rest = column
     while rest:

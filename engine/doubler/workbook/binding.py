@@ -179,9 +179,7 @@ class Binder:
             node, first = found
             length = self._stretch(node, first, sheet, r, c, down, count - lane)
             whole = node < len(self.graph.groups) and self.graph.groups[node].area is None
-            pieces.append(
-                (self._slice(node, first, first + length) if whole else self.single(sheet, r, c), length)
-            )
+            pieces.append((self._slice(node, first, first + length) if whole else self.single(sheet, r, c), length))
             lane += length
         return pieces[0][0] if len(pieces) == 1 else _joined_strip(pieces)
 
@@ -277,9 +275,7 @@ class Binder:
             ]
 
             def gather(store: Store) -> Grid:
-                return Grid(
-                    rows, columns, cells=[read(store) for read in readers], reference=True, whole=whole
-                )
+                return Grid(rows, columns, cells=[read(store) for read in readers], reference=True, whole=whole)
 
             return self._kept(gather, nodes)
         parts = [

@@ -239,9 +239,7 @@ class _Plan:
         for index in range(len(self.graph.groups)):
             for sheet, area in self.graph.places_read(index):
                 if area.last_column - area.first_column > len(by_column):
-                    columns = [
-                        c for s, c in by_column if s == sheet and area.first_column <= c <= area.last_column
-                    ]
+                    columns = [c for s, c in by_column if s == sheet and area.first_column <= c <= area.last_column]
                 else:
                     columns = list(range(area.first_column, area.last_column + 1))
                 for column in columns:

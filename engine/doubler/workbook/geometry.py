@@ -139,11 +139,7 @@ class Geometry:
                 if run.down
                 else (slot.node.first_column, slot.node.last_column)
             )
-            if (
-                ends_along[0] is None
-                or ends_along[1] is None
-                or (ends_along[0].anchored and ends_along[1].anchored)
-            ):
+            if ends_along[0] is None or ends_along[1] is None or (ends_along[0].anchored and ends_along[1].anchored):
                 return False
             if ends_along[0].anchored != ends_along[1].anchored:
                 return True

@@ -96,9 +96,7 @@ class Graph:
         program = self.groups[group].program
         if program is None:
             return []
-        return [
-            place for slot in program.slots for place in self.geometry.covered(slot, self.groups[group].run)
-        ]
+        return [place for slot in program.slots for place in self.geometry.covered(slot, self.groups[group].run)]
 
     def name_of(self, group: int, lane: int = 0) -> str:
         """Return a copy's cell as it is written, with its sheet."""
@@ -129,11 +127,7 @@ def build_graph(workbook: Workbook) -> Graph:
         if not wide:
             break
         # A fill that reads itself (a running total) is evaluated copy by copy.
-        groups = [
-            part
-            for index, group in enumerate(groups)
-            for part in (_split(group) if index in wide else [group])
-        ]
+        groups = [part for index, group in enumerate(groups) for part in (_split(group) if index in wide else [group])]
     graph = Graph(workbook, builder.geometry, groups, edges, order, [], occupancy, areas)
     for ring in rings:
         cells = [(workbook.sheets[groups[i].run.sheet].name, groups[i].run.cell(0)) for i in ring]
@@ -212,9 +206,7 @@ class _Builder:
             return [part for part in _split(Group(run, tree)) if self._compile(part, sheet, array=False)]
         group = Group(run, tree)
         self._compile(group, sheet, array=False)
-        if group.program is not None and any(
-            self.geometry.must_split(slot, run) for slot in group.program.slots
-        ):
+        if group.program is not None and any(self.geometry.must_split(slot, run) for slot in group.program.slots):
             return _split(group)
         return [group]
 
@@ -270,9 +262,7 @@ def _runs(sheet: int, trees: dict[Address, Node]) -> list[Run]:
     return runs
 
 
-def _stretches(
-    cells: list[Address], trees: dict[Address, Node], step: tuple[int, int]
-) -> Iterable[tuple[int, int]]:
+def _stretches(cells: list[Address], trees: dict[Address, Node], step: tuple[int, int]) -> Iterable[tuple[int, int]]:
     start = 0
     for at in range(1, len(cells) + 1):
         if at < len(cells):

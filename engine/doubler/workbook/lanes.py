@@ -74,11 +74,13 @@ class Grid:
         Size; a whole column or row is cut to what its sheet uses.
     whole
         Size before that cut.
+    memo
+        What functions worked out about the grid and may need again (an order for searching, say).
     reference
         True where it was read from cells of a sheet, so that text and logicals in it are skipped by sums.
     """
 
-    __slots__ = ("_cells", "_data", "columns", "reference", "rows", "whole")
+    __slots__ = ("_cells", "_data", "columns", "memo", "reference", "rows", "whole")
 
     def __init__(
         self,
@@ -96,6 +98,7 @@ class Grid:
         self.whole = whole or (rows, columns)
         self._data = data
         self._cells = cells
+        self.memo: dict[Any, Any] = {}
 
     @property
     def data(self) -> Array:
@@ -133,9 +136,7 @@ class Grid:
             cut = (slice(row, row + rows), slice(column, column + columns))
             return Grid(rows, columns, data=self._data[cut], reference=self.reference)
         cells = [
-            self._cells[r * self.columns + c]
-            for r in range(row, row + rows)
-            for c in range(column, column + columns)
+            self._cells[r * self.columns + c] for r in range(row, row + rows) for c in range(column, column + columns)
         ]
         return Grid(rows, columns, cells=cells, reference=self.reference)
 
@@ -267,10 +268,7 @@ def stack(cells: list[Any], rows: int, columns: int) -> Array:
         flat = [tidy(cell) for cell in cells]
         result: Array = from_scalars(flat, (rows, columns, 1, 1))
         return result
-    if all(
-        isinstance(cell, float) or (isinstance(cell, np.ndarray) and cell.dtype == np.float64)
-        for cell in cells
-    ):
+    if all(isinstance(cell, float) or (isinstance(cell, np.ndarray) and cell.dtype == np.float64) for cell in cells):
         out = np.empty((rows * columns, copies, cases))
         for index, cell in enumerate(cells):
             out[index] = cell

@@ -69,9 +69,7 @@ def _numbers_of_mixed(value: Mixed) -> tuple[Floats, Slots | None, list[Any]]:
         return value.numbers, value.slot, items
     # One look-up for all lanes: what each item counts as, and which error it is, if it is one.
     amounts = np.array([0.0 if isinstance(item, ErrorValue) else item for item in items])
-    faults = np.array(
-        [k if isinstance(item, ErrorValue) else NUMBER for k, item in enumerate(items)], np.int32
-    )
+    faults = np.array([k if isinstance(item, ErrorValue) else NUMBER for k, item in enumerate(items)], np.int32)
     odd = value.slot >= 0
     numbers = np.where(odd, amounts[value.slot], value.numbers)
     slot = np.where(odd, faults[value.slot], NUMBER).astype(np.int32)
@@ -108,9 +106,7 @@ class NumericRule:
 
     __slots__ = ("fault", "vector")
 
-    def __init__(
-        self, vector: Callable[..., Any], fault: Callable[..., ErrorValue | float] | None = None
-    ) -> None:
+    def __init__(self, vector: Callable[..., Any], fault: Callable[..., ErrorValue | float] | None = None) -> None:
         self.vector = vector
         self.fault = fault or (lambda *_: ErrorValue.NUM)
 
@@ -149,11 +145,7 @@ class NumericRule:
             amount, slot, faults = numbers_of(argument)
             numbers.append(amount)
             if slot is not None:
-                if (
-                    not isinstance(argument, Mixed)
-                    and not errors
-                    and all(shape_of(a) == () for a in arguments)
-                ):
+                if not isinstance(argument, Mixed) and not errors and all(shape_of(a) == () for a in arguments):
                     return faults[0]
                 errors.append((slot, faults))
         if all(type(number) is float for number in numbers):

@@ -62,8 +62,8 @@ class Package:
     Raises
     ------
     InputError
-        Where the file cannot be read, is no ``.xlsx`` or ``.xlsm`` workbook, is damaged, encrypted, or unpacks to
-        more than the limits of this module.
+        Where the file cannot be read, is no ``.xlsx`` or ``.xlsm`` workbook, is damaged or encrypted, or
+        unpacks to more than the limits of this module.
     """
 
     def __init__(self, path: Path | str) -> None:
@@ -129,6 +129,11 @@ class Package:
                 f"{self.path} is damaged: its part {part} can't be unpacked ({error}); copy or save it again"
             ) from None
 
+    @property
+    def zip_comment(self) -> bytes:
+        """The comment at the end of the zip file."""
+        return self.zip.comment
+
     def root(self, part: str) -> _Element:
         """Return the root element of a small XML part."""
         from doubler.workbook.xml_guard import parse_part
@@ -141,17 +146,13 @@ class Package:
         if known is None:
             folder, name = posixpath.split(part)
             rels = posixpath.join(folder, "_rels", f"{name}.rels")
-            known = self._relationships[part] = (
-                self._read_relationships(rels, folder) if self.has(rels) else {}
-            )
+            known = self._relationships[part] = self._read_relationships(rels, folder) if self.has(rels) else {}
         return known
 
     def related(self, part: str, kind: str) -> list[str]:
         """Return the names of the parts inside the package to which a part refers by one kind."""
         return [
-            found.target
-            for found in self.relationships(part).values()
-            if found.kind == kind and not found.external
+            found.target for found in self.relationships(part).values() if found.kind == kind and not found.external
         ]
 
     def workbook_part(self) -> str:
@@ -168,15 +169,13 @@ class Package:
             if self.has(part):
                 if posixpath.basename(part).lower() in {"document.xml", "presentation.xml"}:
                     raise InputError(
-                        f"{self.path} is a text document or a presentation, not a workbook; give an "
-                        ".xlsx or .xlsm file"
+                        f"{self.path} is a text document or a presentation, not a workbook; give an .xlsx or .xlsm file"
                     )
                 return part
         if self.has("xl/workbook.bin"):
             raise InputError(f"{self.path} is a binary workbook (.xlsb); {_SAVE_AS}")
         raise InputError(
-            f"{self.path} is a zip file but not a workbook (it has no workbook part); give an .xlsx "
-            "or .xlsm file"
+            f"{self.path} is a zip file but not a workbook (it has no workbook part); give an .xlsx or .xlsm file"
         )
 
     def _index(self) -> dict[str, zipfile.ZipInfo]:
@@ -192,13 +191,10 @@ class Package:
             total += info.file_size
             self._check_size(info, name, total)
             if info.flag_bits & 0x1:
-                raise InputError(
-                    f"{self.path} is protected by a zip password (part {name}); save it without one"
-                )
+                raise InputError(f"{self.path} is protected by a zip password (part {name}); save it without one")
             if name.lower() in members:
                 raise InputError(
-                    f"{self.path} is damaged: it holds the part {name} twice; save it again in a "
-                    "spreadsheet program"
+                    f"{self.path} is damaged: it holds the part {name} twice; save it again in a spreadsheet program"
                 )
             members[name.lower()] = info
         if "mimetype" in members and not any(name.startswith("xl/") for name in members):
@@ -214,8 +210,7 @@ class Package:
             )
         if total > MAX_TOTAL:
             raise InputError(
-                f"{self.path} unpacks to more than {MAX_TOTAL // mib} MiB, which is the limit for all "
-                "parts together"
+                f"{self.path} unpacks to more than {MAX_TOTAL // mib} MiB, which is the limit for all parts together"
             )
         if info.file_size > RATIO_FREE and info.file_size > MAX_RATIO * max(info.compress_size, 1):
             raise InputError(
@@ -239,9 +234,9 @@ class Package:
     def _resolve(self, target: str, folder: str) -> str:
         """Turn a target, relative to its part's folder or absolute, into a part's name."""
         target = target.replace("\\", "/").split("#", 1)[0]
-        joined = posixpath.normpath(
-            target if target.startswith("/") else posixpath.join("/", folder, target)
-        ).lstrip("/")
+        joined = posixpath.normpath(target if target.startswith("/") else posixpath.join("/", folder, target)).lstrip(
+            "/"
+        )
         for candidate in (joined, unquote(joined), posixpath.normpath(target).lstrip("./")):
             if self.has(candidate):
                 return candidate

@@ -131,9 +131,7 @@ anchored=False), column=Axis(number=-1, anchored=False)))
 
     body = text[1:] if text.startswith("=") else text
     if len(body) > LONGEST_FORMULA:
-        raise FormulaError(
-            f"the formula has {len(body)} characters; the file format allows {LONGEST_FORMULA}"
-        )
+        raise FormulaError(f"the formula has {len(body)} characters; the file format allows {LONGEST_FORMULA}")
     try:
         parsed = formualizer.parse("=" + body)
         return _node(parsed, host)

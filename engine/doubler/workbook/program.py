@@ -55,9 +55,7 @@ class Frame:
 
     __slots__ = ("cell", "copies", "date1904", "readers", "store", "variables")
 
-    def __init__(
-        self, readers: list[Any], store: Any, cell: tuple[str, int, int], copies: int, date1904: bool
-    ) -> None:
+    def __init__(self, readers: list[Any], store: Any, cell: tuple[str, int, int], copies: int, date1904: bool) -> None:
         self.readers = readers
         self.store = store
         self.variables: dict[int, Any] = {}
@@ -209,9 +207,7 @@ class Compiler:
         return lambda frame: rule(left(frame), right(frame))
 
     def _joined_reference(self, node: Binary) -> Step:
-        raise CannotEvaluateError(
-            f"a reference that is computed, joined by {node.operator!r}, is not evaluated here"
-        )
+        raise CannotEvaluateError(f"a reference that is computed, joined by {node.operator!r}, is not evaluated here")
 
     def _array(self, node: ArrayLiteral) -> Step:
         values: list[Any] = []
@@ -250,9 +246,7 @@ class Compiler:
             raise CannotEvaluateError(f"{node.name} changes by itself, so its value is not reproduced")
         kinds = function.kinds(len(node.arguments))
         if kinds is None:
-            raise CannotEvaluateError(
-                f"{node.name} takes {function.arity} arguments, not {len(node.arguments)}"
-            )
+            raise CannotEvaluateError(f"{node.name} takes {function.arity} arguments, not {len(node.arguments)}")
         self.reads_own_place = self.reads_own_place or function.with_frame
         steps = [self.argument(a, kind, array) for a, kind in zip(node.arguments, kinds, strict=True)]
         return self._invoke(function, kinds, steps)
@@ -274,11 +268,7 @@ class Compiler:
 
     def _invoke(self, function: Native, kinds: str, steps: list[Step]) -> Step:
         rule = function.rule
-        if (
-            not isinstance(rule, NumericRule | ScalarRule)
-            and any(kind in "vo" for kind in kinds)
-            and "l" not in kinds
-        ):
+        if not isinstance(rule, NumericRule | ScalarRule) and any(kind in "vo" for kind in kinds) and "l" not in kinds:
             rule = over_cells(rule, kinds)
         if function.with_frame:
             return lambda frame: rule(frame, *[step(frame) for step in steps])
@@ -334,8 +324,7 @@ class Compiler:
         if rule is None:
             raise CannotEvaluateError(f"the function {node.name} is not known here")
         steps = [
-            self.argument(argument, "o" if isinstance(argument, Omitted) else "a", array)
-            for argument in node.arguments
+            self.argument(argument, "o" if isinstance(argument, Omitted) else "a", array) for argument in node.arguments
         ]
         return lambda frame: rule([step(frame) for step in steps])
 

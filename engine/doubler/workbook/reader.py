@@ -33,7 +33,7 @@ def read_workbook(path: Path | str) -> Workbook:
     Returns
     -------
     Workbook
-        Its cells with stored values and formulas, names, tables and what else the evaluation and the check need.
+        Its cells with stored values and formulas, names, tables, and what else evaluation and check need.
 
     Raises
     ------
@@ -72,9 +72,7 @@ def workbook_from(package: Package) -> Workbook:
         external_links=_external_links(package, part, root),
     )
     book.names = _names(root, [child.get("name", "") for child in _sheet_elements(root)])
-    context = SheetContext(
-        package, read_shared_texts(package, part), _dynamic_metadata(package, part), date1904
-    )
+    context = SheetContext(package, read_shared_texts(package, part), _dynamic_metadata(package, part), date1904)
     with _no_collection():
         for sheet in book.sheets:
             read_sheet(sheet, context)
@@ -85,7 +83,7 @@ def workbook_from(package: Package) -> Workbook:
 
 @contextmanager
 def _no_collection() -> Iterator[None]:
-    """Hold the collector of circles still: it would walk over every new cell again and again, and finds none."""
+    """Hold the collector of circles still: it would walk over all new cells time and again, and find none."""
     was_on = gc.isenabled()
     gc.disable()
     try:
@@ -197,17 +195,13 @@ def _tables(package: Package, sheet: Sheet) -> list[Table]:
         root = package.root(part)
         columns = child(root, "tableColumns")
         names = (
-            []
-            if columns is None
-            else [unescape(column.get("name", "")) for column in children(columns, "tableColumn")]
+            [] if columns is None else [unescape(column.get("name", "")) for column in children(columns, "tableColumn")]
         )
         header, total = root.get("headerRowCount", "1"), root.get("totalsRowCount", "0")
         try:
             area = parse_area(root.get("ref", ""))
         except InputError as error:
-            raise InputError(
-                f"{package.path}, part {part}: {error}; the workbook is damaged, save it again"
-            ) from None
+            raise InputError(f"{package.path}, part {part}: {error}; the workbook is damaged, save it again") from None
         found.append(
             Table(
                 name=unescape(root.get("displayName") or root.get("name", "")),

@@ -70,9 +70,7 @@ def read_reference(text: str, host: Address) -> Node:
     return NameRef(without_prefix(body), sheet)
 
 
-def read_area(
-    body: str, host: Address, sheet: str | None, last_sheet: str | None = None
-) -> CellRef | RangeRef | None:
+def read_area(body: str, host: Address, sheet: str | None, last_sheet: str | None = None) -> CellRef | RangeRef | None:
     """Read ``A1``, ``$A1:B$2``, ``A:C`` or ``1:3``; None where the text is none of them."""
     first, colon, last = body.partition(":")
     if not colon:

@@ -40,8 +40,7 @@ class Resolver:
 
     def __post_init__(self) -> None:
         self._names = {
-            (name.name.casefold(), name.sheet.casefold() if name.sheet else None): name
-            for name in self.workbook.names
+            (name.name.casefold(), name.sheet.casefold() if name.sheet else None): name for name in self.workbook.names
         }
         self._tables = {table.name.casefold(): table for table in self.workbook.tables}
 
@@ -153,17 +152,11 @@ class Resolver:
         first_row, last_row = min(a for a, _ in chosen), max(b for _, b in chosen)
         if last_row < first_row:
             return ErrorLiteral(ErrorValue.REF)
-        return _rectangle(
-            table.sheet, Axis(first_row, anchored=True), first, Axis(last_row, anchored=True), last
-        )
+        return _rectangle(table.sheet, Axis(first_row, anchored=True), first, Axis(last_row, anchored=True), last)
 
     def _table_at(self, sheet: Sheet, host: Address) -> Table | None:
         return next(
-            (
-                t
-                for t in self.workbook.tables
-                if t.sheet.casefold() == sheet.name.casefold() and host in t.area
-            ),
+            (t for t in self.workbook.tables if t.sheet.casefold() == sheet.name.casefold() and host in t.area),
             None,
         )
 

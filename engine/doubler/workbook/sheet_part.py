@@ -27,9 +27,7 @@ if TYPE_CHECKING:
     from lxml.etree import _Element
 
 _VALIDATION_EXTENSION = "{http://schemas.microsoft.com/office/spreadsheetml/2009/9/main}dataValidation"
-_ROW, _COLUMN, _MERGED, _VALIDATION = (
-    main_tags(name) for name in ("row", "col", "mergeCell", "dataValidation")
-)
+_ROW, _COLUMN, _MERGED, _VALIDATION = (main_tags(name) for name in ("row", "col", "mergeCell", "dataValidation"))
 _ERRORS = {member.value: member for member in ErrorValue}
 
 
@@ -40,7 +38,7 @@ class SheetContext:
     package: Package
     texts: list[str]
     dynamic: frozenset[str] | None
-    """Values of a cell's ``cm`` that mean a dynamic array; None, which means all, where the file does not say."""
+    """Values of a cell's ``cm`` that mean a dynamic array; None, meaning all, where the file does not say."""
     date1904: bool
 
 
@@ -276,9 +274,7 @@ def _address(reference: str, reading: _Reading) -> Address:
             f"{reading.context.package.path}, sheet '{reading.sheet.name}': {error}; the workbook is "
             "damaged, save it again"
         ) from None
-    reading.columns[reference.rstrip("0123456789")] = column_number(
-        reference.rstrip("0123456789").replace("$", "")
-    )
+    reading.columns[reference.rstrip("0123456789")] = column_number(reference.rstrip("0123456789").replace("$", ""))
     return row, column
 
 

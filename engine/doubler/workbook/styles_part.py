@@ -73,7 +73,6 @@ def read_number_formats(package: Package, workbook_part: str) -> list[str]:
     if styles is None:
         return ["General"]
     numbers = [
-        int(number) if (number := style.get("numFmtId", "0")).isdigit() else 0
-        for style in children(styles, "xf")
+        int(number) if (number := style.get("numFmtId", "0")).isdigit() else 0 for style in children(styles, "xf")
     ]
     return [own.get(number) or BUILT_IN_FORMATS.get(number, "General") for number in numbers] or ["General"]

@@ -124,11 +124,15 @@ class Template:
         found = self.inputs.get(heading.casefold()) or self._by_address(heading) or self._by_label(heading, where)
         if found is None:
             if heading.casefold() in self.outputs:
-                raise InputError(f"{where}: {heading!r} is an output of the template (it holds a formula); drop the column")
+                raise InputError(
+                    f"{where}: {heading!r} is an output of the template (it holds a formula); drop the column"
+                )
             raise InputError(f"{where}: the template has no input {heading!r}{_near(heading, self.inputs)}")
         cell = self.cell(found)
         if cell is not None and cell.formula is not None:
-            raise InputError(f"{where}: {found.place} holds a formula (={cell.formula}); a case never overwrites a formula")
+            raise InputError(
+                f"{where}: {found.place} holds a formula (={cell.formula}); a case never overwrites a formula"
+            )
         return found
 
     def _by_address(self, heading: str) -> Port | None:

@@ -49,9 +49,7 @@ def is_true(text: str | None) -> bool:
 
 def relationship_id(element: _Element) -> str | None:
     """Return an element's ``r:id``, in either namespace."""
-    return next(
-        (value for key, value in element.attrib.items() if key.startswith("{") and key.endswith("}id")), None
-    )
+    return next((value for key, value in element.attrib.items() if key.startswith("{") and key.endswith("}id")), None)
 
 
 def parse_part(data: bytes, where: str) -> _Element:
@@ -159,9 +157,7 @@ def refuse_doctype(head: bytes, where: str) -> None:
             "spreadsheet program, which writes UTF-8"
         )
     if not rest.startswith("<"):
-        raise InputError(
-            f"{where} is not XML; the workbook is damaged, save it again in a spreadsheet program"
-        )
+        raise InputError(f"{where} is not XML; the workbook is damaged, save it again in a spreadsheet program")
 
 
 def _decode_head(head: bytes) -> str:
@@ -176,8 +172,7 @@ def _decode_head(head: bytes) -> str:
 
 def _malformed(where: str, error: Exception) -> InputError:
     return InputError(
-        f"{where} is not well-formed XML ({error}); the workbook is damaged, save it again in a "
-        "spreadsheet program"
+        f"{where} is not well-formed XML ({error}); the workbook is damaged, save it again in a spreadsheet program"
     )
 
 

@@ -267,9 +267,7 @@ def count_blank(area: Any) -> Any:
 @native("SUMPRODUCT", arguments="a*a", units="sumproduct")
 def sum_of_products(*arguments: Any) -> Any:
     """Sum of the products of like-placed entries; what is no number counts as 0."""
-    grids = [
-        argument if isinstance(argument, Grid) else Grid(1, 1, cells=[argument]) for argument in arguments
-    ]
+    grids = [argument if isinstance(argument, Grid) else Grid(1, 1, cells=[argument]) for argument in arguments]
     if len({grid.whole for grid in grids}) > 1:
         return ErrorValue.VALUE
     rows, columns = max(grid.rows for grid in grids), max(grid.columns for grid in grids)

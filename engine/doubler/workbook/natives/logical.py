@@ -79,9 +79,7 @@ def branch(test: Any, yes: Later, no: Later) -> Any:
 def _grid_branch(truth: Any, first: Any, second: Any) -> Any:
     grids = [item for item in (first, second) if isinstance(item, Grid)]
     rows, columns = max(g.rows for g in grids), max(g.columns for g in grids)
-    return regrid(
-        select(truth, unwrapped(first, rows, columns), unwrapped(second, rows, columns)), rows, columns
-    )
+    return regrid(select(truth, unwrapped(first, rows, columns), unwrapped(second, rows, columns)), rows, columns)
 
 
 def regrid(value: Any, rows: int, columns: int) -> Grid:

@@ -1,0 +1,476 @@
+"""The unit that a sheet declares for a cell, and where it was read.
+
+In this order: a unit cell at the right; a bracket in the label or header; a unit row under the header; the literal of the
+number format. Then what other habits there are: a unit at the end of a row of numbers, a unit cell or a column of units
+at the left, ``Force / kN`` in a header, a note beside, a comment, a note for the whole sheet; and last, weakly, a label
+that names a pure number.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator
+from dataclasses import dataclass, field
+
+from doubler.units import Unit, parse_unit
+from doubler.workbook.carried import Key
+from doubler.workbook.labels import Label, Labels, Layout
+from doubler.workbook.model import Address, Workbook
+from doubler.workbook.roles import is_difference, is_pure_number
+from doubler.workbook.unit_cells import UnitCells
+from doubler.workbook.unit_text import (
+    UnitText,
+    conversion_unit,
+    format_unit,
+    is_percent_format,
+    phrase_unit,
+    read_unit_text,
+    role_agrees,
+)
+
+
+@dataclass(frozen=True, slots=True)
+class Declared:
+    """A declared unit.
+
+    Attributes
+    ----------
+    unit
+        The unit; for a temperature that is a level its offset counts, see `absolute`.
+    text
+        The text as it stands in the sheet.
+    place
+        Where it was read, in words.
+    cells
+        The cells that say so.
+    weak
+        True where only a label's words say that the number is a pure one.
+    absolute
+        True for a temperature that is a level and not a difference.
+    """
+
+    unit: Unit
+    text: str
+    place: str
+    cells: tuple[Key, ...]
+    weak: bool = False
+    absolute: bool = False
+
+
+@dataclass(frozen=True, slots=True)
+class Unreadable:
+    """A text that stands for a unit and can't be read as one."""
+
+    sheet: str
+    address: Address
+    text: str
+    complaint: str
+    at: Key
+
+
+@dataclass(frozen=True, slots=True)
+class Disagreement:
+    """Two places that declare unlike units for one cell; `first` is the one believed."""
+
+    sheet: str
+    address: Address
+    first: Declared
+    second: Declared
+
+
+@dataclass(slots=True)
+class _Found:
+    """What one place says."""
+
+    unit: Unit
+    text: str
+    place: str
+    at: Key
+    weak: bool = False
+    words: str | None = None
+
+
+_BRACKET = re.compile(r"([\[(])([^\[\]()]*(?:\([^()]*\)[^\[\]()]*)?)[\])]")
+_COMMA = re.compile(r",\s*(\S{1,20}(?:\s\S{1,8})?)\s*[:=]?\s*$")
+_SLASH = re.compile(r"^(?P<label>.*\S)\s*/\s*(?P<unit>\(?[^\s/].*)$")
+_TAIL = re.compile(r"^(?P<label>.*\S)\s+(?:in\s+)?(?P<unit>[^\s()\[\]]+)\s*[:=]?\s*$")
+_SHEET_NOTE = re.compile(
+    r"^(?:note\s*:?\s*)?(?:all\s+)?(?P<what>\w+(?:\s+and\s+\w+)?)\s+(?:are\s+)?(?:given\s+)?in\s+(?P<unit>[^\s,;.]+)"
+    r"(?:\s+(?:unless|u\.?n\.?o).*)?\.?$",
+    re.IGNORECASE,
+)
+
+
+@dataclass(slots=True)
+class Declarations:
+    """The declared units of a workbook's cells, found when asked for and then kept."""
+
+    workbook: Workbook
+    labels: Labels
+    _known: dict[Key, Declared | None] = field(default_factory=dict)
+    _shared: dict[tuple[Key, str, bool, bool], Declared] = field(default_factory=dict)
+    _cells: dict[str, UnitCells] = field(default_factory=dict)
+    _heads: dict[tuple[str, int, int], tuple[_Found | None, _Found | None, _Found | None]] = field(default_factory=dict)
+    _notes: dict[str, list[_Found]] = field(default_factory=dict)
+    _unreadable: dict[Key, Unreadable] = field(default_factory=dict)
+    _disagreements: dict[Key, Disagreement] = field(default_factory=dict)
+    _complete: bool = False
+
+    def label(self, sheet: str, address: Address) -> Label:
+        """Return the words that belong to a cell."""
+        return self.labels.label(sheet, address)
+
+    def unit(self, sheet: str, address: Address) -> Declared | None:
+        """Return the declared unit of a cell, or None."""
+        key = (sheet, address)
+        try:
+            return self._known[key]
+        except KeyError:
+            found = self._known[key] = self._declare(sheet, address)
+            return found
+
+    @property
+    def unreadable(self) -> list[Unreadable]:
+        """Texts that stand where a number's unit stands and can't be read, each once."""
+        self._ask_all()
+        seen: dict[Key, Unreadable] = {}
+        for item in self._unreadable.values():
+            seen.setdefault(item.at, item)
+        return list(seen.values())
+
+    @property
+    def disagreements(self) -> list[Disagreement]:
+        """Cells for which two places declare unlike units."""
+        self._ask_all()
+        return list(self._disagreements.values())
+
+    def head(self, sheet: str, address: Address) -> Key:
+        """Return the cell that stands for a column: its header where there is one, else the cell itself."""
+        row = self.labels.layout(sheet).header_row(address)
+        return (sheet, address) if row is None else (sheet, (row, address[1]))
+
+    def _ask_all(self) -> None:
+        if self._complete:
+            return
+        self._complete = True
+        for sheet in self.workbook.sheets:
+            for address, cell in sheet.cells.items():
+                if cell.formula is not None or isinstance(cell.value, float):
+                    self.unit(sheet.name, address)
+
+    def _declare(self, sheet: str, address: Address) -> Declared | None:
+        layout = self.labels.layout(sheet)
+        finds = self._places(sheet, layout, address)
+        first = next(finds, None)
+        if first is None:
+            return None
+        declared = self._share(sheet, layout, address, first)
+        if not first.weak:
+            for second in finds:
+                if second.weak or second.place.startswith(("note", "comment")):
+                    break
+                if not _alike(first.unit, second.unit) and second.at != first.at:
+                    other = self._share(sheet, layout, address, second)
+                    self._disagreements[sheet, address] = Disagreement(sheet, address, declared, other)
+                    break
+        return declared
+
+    def _share(self, sheet: str, layout: Layout, address: Address, found: _Found) -> Declared:
+        absolute = False
+        unit = found.unit
+        if unit.dimension == _TEMPERATURE():
+            words = found.words if found.words is not None else self.label(sheet, address).words
+            absolute = not is_difference(words)
+        if unit.text == "%" and self._percent(layout, address):
+            unit = parse_unit("1")
+        key = (found.at, found.place, absolute, unit is found.unit)
+        shared = self._shared.get(key)
+        if shared is None:
+            shared = Declared(unit, found.text, found.place, (found.at,), found.weak, absolute)
+            self._shared[key] = shared
+        return shared
+
+    def _percent(self, layout: Layout, address: Address) -> bool:
+        cell = layout.cells.get(address)
+        return cell is not None and is_percent_format(self._format(cell.style))
+
+    def _format(self, style: int) -> str:
+        formats = self.workbook.number_formats
+        return formats[style] if 0 <= style < len(formats) else "General"
+
+    def _unit_cells(self, sheet: str, layout: Layout) -> UnitCells:
+        found = self._cells.get(sheet)
+        if found is None:
+            found = self._cells[sheet] = UnitCells(layout)
+        return found
+
+    def _places(self, sheet: str, layout: Layout, address: Address) -> Iterator[_Found]:
+        row, column = address
+        left = layout.left_texts(address)
+        beside = bool(left) and layout.touches_left(address, left[0])
+        unit_cells = self._unit_cells(sheet, layout)
+        right = (row, column + 1)
+        if right in layout.texts:
+            found = self._unit_cell(sheet, layout, address, right, "unit cell at the right", unit_cells, left)
+            if found is not None:
+                yield found
+        in_label = self._in_label(sheet, layout, address, left)
+        if beside and in_label is not None:
+            yield in_label
+        in_header, unit_row, loose_header = self._in_headers(sheet, layout, address, unit_cells)
+        if in_header is not None:
+            yield in_header
+        if not beside and in_label is not None:
+            yield in_label
+        if unit_row is not None:
+            yield unit_row
+        cell = layout.cells.get(address)
+        if cell is not None and cell.style:
+            found = self._in_format(sheet, address, cell.style)
+            if found is not None:
+                yield found
+        yield from self._other_habits(sheet, layout, address, unit_cells, left, beside, loose_header)
+
+    def _other_habits(
+        self,
+        sheet: str,
+        layout: Layout,
+        address: Address,
+        unit_cells: UnitCells,
+        left: tuple[Address, ...],
+        beside: bool,
+        loose_header: _Found | None,
+    ) -> Iterator[_Found]:
+        row, column = address
+        if len(left) > 1 or (left and unit_cells.headed(left[0])):
+            found = self._unit_at_left(sheet, layout, address, left, unit_cells)
+            if found is not None:
+                yield found
+        end = layout.right_text(address)
+        if end is not None and end[1] > column + 1:
+            found = self._unit_cell(sheet, layout, address, end, "unit cell at the end of the row", unit_cells, left)
+            if found is not None:
+                yield found
+        if beside:
+            for text_at in left:
+                loose = _loose_unit(layout.texts[text_at])
+                if loose is not None:
+                    yield _Found(loose, layout.texts[text_at], "label", (sheet, layout.origin(text_at)))
+        if loose_header is not None:
+            yield loose_header
+        for offset in (1, 2):
+            note = layout.texts.get((row, column + offset))
+            if note is not None:
+                noted = phrase_unit(note)
+                if noted.unit is not None:
+                    yield _Found(noted.unit, note, "note beside", (sheet, (row, column + offset)))
+                break
+        comment = layout.sheet.comments.get(address)
+        if comment:
+            for line in comment.splitlines():
+                noted = phrase_unit(line.split(":", 1)[-1] if line.lower().startswith("unit") else line)
+                whole = read_unit_text(line.split(":", 1)[-1]) if line.lower().startswith("unit") else noted
+                unit = noted.unit or whole.unit
+                if unit is not None:
+                    yield _Found(unit, line.strip(), "comment", (sheet, address))
+                    break
+        yield from self._from_words(sheet, layout, address, left, beside)
+
+    def _from_words(
+        self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...], beside: bool
+    ) -> Iterator[_Found]:
+        headers = layout.headers(address)
+        name = self.labels.names.get((sheet, address), "")
+        places = [*left, *headers[:2]] if beside else [*headers[:2], *left]
+        for at in places:
+            unit = conversion_unit(layout.texts[at])
+            if unit is not None:
+                yield _Found(unit, layout.texts[at], "label", (sheet, layout.origin(at)))
+                return
+        cell = layout.cells.get(address)
+        if cell is not None and cell.style and is_percent_format(self._format(cell.style)):
+            yield _Found(parse_unit("1"), "%", "number format", (sheet, address), weak=True)
+            return
+        own = left if beside else headers[:1]
+        words = " ".join([*(layout.texts[a] for a in reversed(own))])
+        for note in self._sheet_notes(sheet, layout):
+            if role_agrees(note.unit, words) is True and not is_pure_number(words):
+                yield note
+                return
+        if own and any(is_pure_number(layout.texts[a]) for a in own):
+            yield _Found(parse_unit("1"), layout.texts[own[0]], "label", (sheet, address), weak=True)
+        elif name and is_pure_number(name.replace("_", " ")):
+            yield _Found(parse_unit("1"), name, "name", (sheet, address), weak=True)
+
+    def _sheet_notes(self, sheet: str, layout: Layout) -> list[_Found]:
+        notes = self._notes.get(sheet)
+        if notes is None:
+            notes = []
+            for at, text in layout.texts.items():
+                if 10 <= len(text) <= 90 and " in " in text and at not in layout.merged_from:
+                    match = _SHEET_NOTE.match(text)
+                    if match and (text.casefold().startswith(("all", "note")) or "unless" in text.casefold()):
+                        read = read_unit_text(match["unit"])
+                        if read.unit is not None:
+                            notes.append(_Found(read.unit, text, "note on the sheet", (sheet, at)))
+            self._notes[sheet] = notes
+        return notes
+
+    def _unit_cell(
+        self,
+        sheet: str,
+        layout: Layout,
+        address: Address,
+        at: Address,
+        place: str,
+        unit_cells: UnitCells,
+        left: tuple[Address, ...],
+    ) -> _Found | None:
+        text = layout.texts[at]
+        read = unit_cells.accepts(at, " ".join(layout.texts[a] for a in reversed(left)))
+        if read.unit is not None:
+            return _Found(read.unit, text, place, (sheet, layout.origin(at)))
+        if read.complaint:
+            self._cannot_read(sheet, address, text, read.complaint, at)
+        return None
+
+    def _cannot_read(self, sheet: str, address: Address, text: str, complaint: str, at: Address) -> None:
+        self._unreadable[sheet, address] = Unreadable(sheet, address, text, complaint, (sheet, at))
+
+    def _unit_at_left(
+        self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...], unit_cells: UnitCells
+    ) -> _Found | None:
+        at = left[0]
+        if layout.holds_number((at[0], at[1] - 1)):
+            return None  # it is the unit of the number at its left
+        read = unit_cells.accepts(at, " ".join(layout.texts[a] for a in left[1:]), leading=True)
+        if read.unit is None:
+            if read.complaint and unit_cells.headed(at):
+                self._cannot_read(sheet, address, layout.texts[at], read.complaint, at)
+            return None
+        place = "unit cell at the left" if layout.touches_left(address, at) else "column of units"
+        return _Found(read.unit, layout.texts[at], place, (sheet, layout.origin(at)))
+
+    def _in_label(self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...]) -> _Found | None:
+        for at in left:
+            text = layout.texts[at]
+            unit, shown, complaint = bracket_unit(text)
+            if unit is not None:
+                if shown in ("[1]",) and len(left) > 1:
+                    continue
+                return _Found(unit, shown, "bracket in the label", (sheet, layout.origin(at)), words=None)
+            if complaint:
+                self._cannot_read(sheet, address, shown, complaint, at)
+        return None
+
+    def _in_headers(
+        self, sheet: str, layout: Layout, address: Address, unit_cells: UnitCells
+    ) -> tuple[_Found | None, _Found | None, _Found | None]:
+        head = layout.header_row(address)
+        if head is None:
+            return None, None, None
+        key = (sheet, head, address[1])
+        known = self._heads.get(key)
+        if known is None:
+            known = self._heads[key] = self._read_headers(sheet, layout, address, unit_cells)
+        return known
+
+    def _read_headers(
+        self, sheet: str, layout: Layout, address: Address, unit_cells: UnitCells
+    ) -> tuple[_Found | None, _Found | None, _Found | None]:
+        bracket: _Found | None = None
+        unit_row: _Found | None = None
+        loose: _Found | None = None
+        headers = layout.headers(address)
+        words = " ".join(layout.texts[a] for a in reversed(headers))
+        for at in headers:
+            text = layout.texts[at]
+            origin = (sheet, layout.origin(at))
+            read = unit_cells.in_unit_row(at, words)
+            if read.unit is not None:
+                unit_row = unit_row or _Found(read.unit, text, "unit row", origin, words=words)
+                continue
+            if read.complaint:
+                self._cannot_read(sheet, address, text, read.complaint, at)
+            unit, shown, complaint = bracket_unit(text)
+            if unit is not None:
+                bracket = bracket or _Found(unit, shown, "bracket in the header", origin, words=words)
+            elif complaint:
+                self._cannot_read(sheet, address, shown, complaint, at)
+            tail = _loose_unit(text)
+            if tail is not None:
+                loose = loose or _Found(tail, text, "header", origin, words=words)
+        return bracket, unit_row, loose
+
+    def _in_format(self, sheet: str, address: Address, style: int) -> _Found | None:
+        number_format = self._format(style)
+        read = format_unit(number_format)
+        if read.unit is not None:
+            return _Found(read.unit, number_format, "number format", (sheet, address))
+        if read.complaint:
+            self._cannot_read(sheet, address, number_format, read.complaint, address)
+        return None
+
+
+def _TEMPERATURE() -> object:
+    from doubler.units import kind
+
+    return kind("temperature").dimension
+
+
+def _alike(first: Unit, second: Unit) -> bool:
+    return (
+        first.dimension.without_angle() == second.dimension.without_angle()
+        and abs(first.scale / second.scale - 1) < 1e-9
+    )
+
+
+def bracket_unit(text: str) -> tuple[Unit | None, str, str]:
+    """Return the unit in a label's bracket or behind its comma, its text, and what is wrong with a text that is none."""
+    complaint, wrong = "", ""
+    for match in reversed(list(_BRACKET.finditer(text))):
+        inner = match[2].strip()
+        if not inner:
+            continue
+        words = text[: match.start()] + " " + text[match.end() :]
+        read = read_unit_text(inner)
+        if read.unit is not None and _fits(read, words, square=match[1] == "["):
+            return read.unit, match.group(), ""
+        if read.complaint and not complaint:
+            complaint, wrong = read.complaint, match.group()
+        phrase = phrase_unit(inner)
+        if phrase.unit is not None:
+            return phrase.unit, match.group(), ""
+    comma = _COMMA.search(text)
+    if comma is not None:
+        read = read_unit_text(comma[1])
+        if read.unit is not None and comma[1] != "1" and _fits(read, text[: comma.start()], square=False):
+            return read.unit, comma[1], ""
+    return None, wrong, complaint
+
+
+def _fits(read: UnitText, words: str, *, square: bool) -> bool:
+    if not read.doubtful or read.unit is None:
+        return True
+    agrees = role_agrees(read.unit, words)
+    return agrees is not False if square else agrees is True
+
+
+def _loose_unit(text: str) -> Unit | None:
+    """Return the unit at the end of a label that has it without a bracket: ``Force / kN``, ``Stress in MPa``."""
+    for pattern in (_SLASH, _TAIL):
+        match = pattern.match(text)
+        if match is None or len(text) > 60:
+            continue
+        read = read_unit_text(match["unit"])
+        if read.unit is None or match["unit"].casefold() in ("ratio", "-", "1", "–", "%"):
+            continue
+        agrees = role_agrees(read.unit, match["label"])
+        if agrees is True or (agrees is None and not read.doubtful and pattern is _SLASH and len(match["unit"]) > 1):
+            return read.unit
+    return None
+
+
+def declare(workbook: Workbook) -> Declarations:
+    """Return the declared units of a workbook; each is found when it is first asked for."""
+    return Declarations(workbook, Labels(workbook))
