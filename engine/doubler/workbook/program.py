@@ -51,9 +51,11 @@ class Frame:
         Sheet name, row and column of the group's first cell.
     date1904
         Whether the workbook counts days from 1904.
+    refusals
+        Lanes in which one of our functions gave an error value, and why.
     """
 
-    __slots__ = ("cell", "copies", "date1904", "readers", "store", "variables")
+    __slots__ = ("cell", "copies", "date1904", "readers", "refusals", "store", "variables")
 
     def __init__(self, readers: list[Any], store: Any, cell: tuple[str, int, int], copies: int, date1904: bool) -> None:
         self.readers = readers
@@ -62,6 +64,7 @@ class Frame:
         self.cell = cell
         self.copies = copies
         self.date1904 = date1904
+        self.refusals: list[tuple[Any, str]] = []
 
 
 Step: TypeAlias = Callable[[Frame], Any]
@@ -326,7 +329,7 @@ class Compiler:
         steps = [
             self.argument(argument, "o" if isinstance(argument, Omitted) else "a", array) for argument in node.arguments
         ]
-        return lambda frame: rule([step(frame) for step in steps])
+        return lambda frame: rule(frame.refusals, [step(frame) for step in steps])
 
 
 def top_left(value: Any) -> Any:

@@ -109,8 +109,7 @@ def _rows(grid: Grid, cells: list[Any]) -> Rows:
 
 
 def numbers_in(values: tuple[Any, ...]) -> list[float] | ErrorValue:
-    """Return the numbers among a lane's arguments, as the statistical functions take them, or the first
-    error.
+    """Return the numbers among a lane's arguments, as the statistical functions take them, or an error.
 
     In ranges text, logicals and empty cells are passed over; written as arguments they count as numbers.
     """

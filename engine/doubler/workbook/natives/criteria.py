@@ -93,8 +93,8 @@ def _mask(area: Grid, wanted: Any) -> Any:
 
         shape = np.broadcast_shapes(data.shape, wanted.shape)
         cells, tests = scalars(broadcast(data, shape)), scalars(broadcast(wanted, shape))
-        truth = [criterion(test)(cell) for cell, test in zip(cells, tests, strict=True)]
-        return np.array(truth, np.bool_).reshape(shape)
+        each = [criterion(test)(cell) for cell, test in zip(cells, tests, strict=True)]
+        return np.array(each, np.bool_).reshape(shape)
     test = criterion(wanted)
     mixed = as_mixed(data)
     items = np.array([*(test(item) for item in mixed.items), False], np.bool_)
@@ -107,7 +107,7 @@ def _mask(area: Grid, wanted: Any) -> Any:
     if (type(operand) is float and match is not None) or (type(operand) is float and not isinstance(wanted, str)):
         ufunc = {"=": np.equal, "<>": np.not_equal, "<": np.less, "<=": np.less_equal}
         ufunc |= {">": np.greater, ">=": np.greater_equal}
-        truth = ufunc[operator](numbers, operand)
+        truth: Any = ufunc[operator](numbers, operand)
     else:
         truth = np.full(numbers.shape, test(0.0))
     return np.where(mixed.slot >= 0, items[mixed.slot], truth)
@@ -122,9 +122,7 @@ def _masks(pairs: tuple[Any, ...]) -> Any:
         if size is not None and (grid.rows, grid.columns) != size:
             return ErrorValue.VALUE
         size = grid.rows, grid.columns
-        if isinstance(wanted, ErrorValue):
-            wanted = str(wanted)
-        here = _mask(grid, wanted)
+        here = _mask(grid, str(wanted) if isinstance(wanted, ErrorValue) else wanted)
         mask = here if mask is None else mask & here
     return mask
 

@@ -122,7 +122,7 @@ def _floor(number: Any, step: Any) -> Any:
     return refused(_multiple(number, step, np.floor), bad | (np.equal(step, 0.0) & np.not_equal(number, 0.0)))
 
 
-def _floor_fault(number: float, step: float) -> ErrorValue:
+def _floor_fault(_: float, step: float) -> ErrorValue:
     return ErrorValue.DIV0 if step == 0.0 else ErrorValue.NUM
 
 
