@@ -81,9 +81,9 @@ def strength(
     Examples
     --------
     >>> cell('=MARGIN_STRENGTH("200 MPa", "450 MPa", 1.5)')
-    ?
+    0.5
     >>> cell('=MARGIN_STRENGTH("-20 kN", "45 kN", 1.5, 1.15)')
-    ?
+    0.3043478261
     """
     return _margin(applied, allowable, safety_factor * fitting_factor * other_factor, cap)
 
@@ -143,7 +143,7 @@ def yielding(
     Examples
     --------
     >>> cell('=MARGIN_YIELD("200 MPa", "345 MPa", 1.15)')
-    ?
+    0.5
     """
     return _margin(applied, yield_allowable, yield_factor * fitting_factor * other_factor, cap)
 
@@ -205,7 +205,7 @@ def ultimate(
     Examples
     --------
     >>> cell('=MARGIN_ULTIMATE("200 MPa", "450 MPa", 1.5)')
-    ?
+    0.5
     """
     return _margin(applied, ultimate_allowable, ultimate_factor * fitting_factor * other_factor, cap)
 
@@ -259,7 +259,7 @@ def stability(
     Examples
     --------
     >>> cell('=MARGIN_STABILITY("-40 kN", "90 kN", 1.5)')
-    ?
+    0.5
     """
     return _margin(applied, critical, safety_factor * fitting_factor * other_factor, cap)
 
@@ -322,13 +322,13 @@ def by_sign(
     Examples
     --------
     >>> cell('=MARGIN_BY_SIGN({"200 MPa";"-200 MPa"}, "450 MPa", "330 MPa", 1.5)')
-    ?
+    [[0.5], [0.1]]
     """
     chosen = np.where(applied > 0.0, tension_allowable, compression_allowable)
     return _margin(applied, chosen, safety_factor * fitting_factor * other_factor, cap)
 
 
-@worksheet_function("MARGIN_RESERVE_FACTOR", valid=_FACTORS, conditions=_SIGNS)
+@worksheet_function("MARGIN_RESERVE_FACTOR", valid=_FACTORS | {"cap": AT_LEAST_ONE}, conditions=_SIGNS)
 def reserve_factor(
     applied: X,
     allowable: X,
@@ -373,7 +373,7 @@ def reserve_factor(
     Examples
     --------
     >>> cell('=MARGIN_RESERVE_FACTOR("200 MPa", "450 MPa", 1.5)')
-    ?
+    1.5
     """
     reserve = np.abs(allowable) / (safety_factor * fitting_factor * other_factor * np.abs(applied))
     return reserve if cap is None else np.minimum(reserve, cap)
@@ -421,6 +421,6 @@ def stiffness(deflection: X, limit: X, factor: Ratio = 1.0, cap: Ratio | None = 
     Examples
     --------
     >>> cell('=MARGIN_STIFFNESS("1.6 mm", "2 mm")')
-    ?
+    0.25
     """
     return _margin(deflection, limit, factor, cap)

@@ -32,7 +32,8 @@ def envelope(margins: RatioColumn) -> Ratio:
 
     Notes
     -----
-    MIN of a spreadsheet passes over text and empty cells; this one does not.
+    MIN of a spreadsheet passes over text and empty cells; this one does not. A text in the first cell of a column
+    is taken for its heading.
 
     References
     ----------
@@ -41,7 +42,7 @@ def envelope(margins: RatioColumn) -> Ratio:
     Examples
     --------
     >>> cell('=MARGIN_ENVELOPE({0.4;0.15;1.2})')
-    ?
+    0.15
     """
     return np.min(margins, axis=-1)
 
@@ -75,7 +76,7 @@ def governing(margins: RatioColumn, names: TextColumn) -> Text:
     Examples
     --------
     >>> cell('=MARGIN_GOVERNING({0.4;0.15;1.2}, {"net section";"bearing";"shear-out"})')
-    ?
+    'bearing'
     """
     found = np.array(aligned(names, margins.shape[-1], "names"), dtype=object)
     return found[np.argmin(margins, axis=-1)]
@@ -108,6 +109,6 @@ def count_negative(margins: RatioColumn) -> Ratio:
     Examples
     --------
     >>> cell('=MARGIN_COUNT_NEGATIVE({0.4;-0.15;1.2})')
-    ?
+    1.0
     """
     return np.sum(margins < 0.0, axis=-1).astype(np.float64)

@@ -90,7 +90,7 @@ def interaction(ratios: RatioColumn, exponents: RatioColumn, cap: Ratio | None =
     Examples
     --------
     >>> cell('=MARGIN_INTERACTION({0.5;0.5}, {2;3})')
-    ?
+    0.5097553325
     """
     return _capped(factor_on_all(ratios, exponents), cap)
 
@@ -149,7 +149,7 @@ def interaction_constant(
     Examples
     --------
     >>> cell('=MARGIN_INTERACTION_CONSTANT({0.3;0.4}, {0.2;0}, {2;2})')
-    ?
+    0.7342340287
     """
     return _capped(factor_on_scaled(ratios, constant_ratios, exponents), cap)
 
@@ -226,7 +226,7 @@ def constant_load(
     Examples
     --------
     >>> cell('=MARGIN_CONSTANT_LOAD("10 kN", "20 kN", "50 kN", 1.5)')
-    ?
+    1.0
     """
     left = allowable - np.abs(constant) * constant_factor * fitting_factor
     return _capped(left / (safety_factor * fitting_factor * np.abs(applied)), cap)
@@ -280,7 +280,7 @@ def interaction_pair(first: Ratio, second: Ratio, pair: Pair, cap: Ratio | None 
     Examples
     --------
     >>> cell('=MARGIN_INTERACTION_PAIR(0.5, 0.5, "bolt tension and shear")')
-    ?
+    0.5097553325
     """
     shape = np.broadcast(first, second)
     ratios = np.stack([np.broadcast_to(first, shape.shape), np.broadcast_to(second, shape.shape)], axis=-1)
@@ -329,6 +329,6 @@ def interaction_tube(compression: Ratio, bending: Ratio, torsion: Ratio, cap: Ra
     Examples
     --------
     >>> cell('=MARGIN_INTERACTION_TUBE(0.2, 0.3, 0.4)')
-    ?
+    0.4285714286
     """
     return _capped(1.0 / (compression + np.sqrt(bending**2 + torsion**2)), cap)
