@@ -40,7 +40,7 @@ def series(stiffnesses: StiffnessColumn) -> Stiffness:
     Examples
     --------
     >>> cell('=STIFFNESS_SERIES({"300 N/mm";"600 N/mm"}, "N/mm")')
-    ?
+    200.0
     """
     return 1.0 / np.sum(1.0 / stiffnesses, axis=-1)
 
@@ -72,6 +72,6 @@ def parallel(stiffnesses: StiffnessColumn) -> Stiffness:
     Examples
     --------
     >>> cell('=STIFFNESS_PARALLEL({"300 N/mm";"600 N/mm"}, "N/mm")')
-    ?
+    900.0
     """
     return np.sum(stiffnesses, axis=-1)

@@ -50,7 +50,7 @@ def axial(length: Length, area: Area, modulus: Modulus) -> Stiffness:
     Examples
     --------
     >>> cell('=STIFFNESS_AXIAL("500 mm", "100 mm^2", "200 GPa", "N/mm")')
-    ?
+    40000.0
     """
     return modulus * area / length
 
@@ -88,7 +88,7 @@ def elongation(force: Force, length: Length, area: Area, modulus: Modulus) -> Le
     Examples
     --------
     >>> cell('=STIFFNESS_ELONGATION("10 kN", "500 mm", "100 mm^2", "200 GPa", "mm")')
-    ?
+    0.25
     """
     return force * length / (modulus * area)
 
@@ -122,7 +122,7 @@ def bending(second_moment: SecondMoment, modulus: Modulus) -> BendingStiffness:
     Examples
     --------
     >>> cell('=STIFFNESS_BENDING("10000 mm^4", "200 GPa", "N*mm^2")')
-    ?
+    2000000000.0
     """
     return modulus * second_moment
 
@@ -158,7 +158,7 @@ def cantilever(length: Length, second_moment: SecondMoment, modulus: Modulus) ->
     Examples
     --------
     >>> cell('=STIFFNESS_CANTILEVER("100 mm", "1000 mm^4", "200 GPa", "N/mm")')
-    ?
+    600.0
     """
     return 3.0 * modulus * second_moment / length**3
 
@@ -199,7 +199,7 @@ def cantilever_deflection(force: Force, length: Length, second_moment: SecondMom
     Examples
     --------
     >>> cell('=STIFFNESS_CANTILEVER_DEFLECTION("30 N", "100 mm", "1000 mm^4", "200 GPa", "mm")')
-    ?
+    0.05
     """
     return force * length**3 / (3.0 * modulus * second_moment)
 
@@ -235,7 +235,7 @@ def midspan(length: Length, second_moment: SecondMoment, modulus: Modulus) -> St
     Examples
     --------
     >>> cell('=STIFFNESS_MIDSPAN("100 mm", "1000 mm^4", "200 GPa", "N/mm")')
-    ?
+    9600.0
     """
     return 48.0 * modulus * second_moment / length**3
 
@@ -275,7 +275,7 @@ def midspan_deflection(force: Force, length: Length, second_moment: SecondMoment
     Examples
     --------
     >>> cell('=STIFFNESS_MIDSPAN_DEFLECTION("480 N", "100 mm", "1000 mm^4", "200 GPa", "mm")')
-    ?
+    0.05
     """
     return force * length**3 / (48.0 * modulus * second_moment)
 
@@ -313,7 +313,7 @@ def torsional(length: Length, torsion_constant: TorsionConstant, shear_modulus: 
     Examples
     --------
     >>> cell('=STIFFNESS_TORSIONAL("1 m", "10000 mm^4", "80 GPa", "N*m/rad")')
-    ?
+    800.0
     """
     return shear_modulus * torsion_constant / length
 
@@ -353,6 +353,6 @@ def twist(torque: Moment, length: Length, torsion_constant: TorsionConstant, she
     Examples
     --------
     >>> cell('=STIFFNESS_TWIST("800 N*m", "1 m", "1e6 mm^4", "80 GPa", "rad")')
-    ?
+    0.01
     """
     return torque * length / (shear_modulus * torsion_constant)
