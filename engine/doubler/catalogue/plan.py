@@ -146,10 +146,10 @@ def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result
             )
     factors: list[float | None] = []
     offsets: list[float] = []
-    for unit in units:
+    for argument, unit in zip(function.arguments, units, strict=True):
         factor = 1.0 if unit is None else unit_factor(unit, _internal_unit(unit.dimension, system))
         factors.append(None if factor == 1.0 else factor)
-        offsets.append(0.0 if unit is None else unit.offset)
+        offsets.append(0.0 if unit is None or _is_change(argument.quantity) else unit.offset)
     try:
         result_unit = _result_unit(function, result, system, letters, first)
     except InputError as error:
@@ -158,8 +158,13 @@ def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result
     if reasons:
         raise CallError(function.name, reasons)
     scale = 1.0 if result_unit is None else unit_factor(_internal_unit(result_unit.dimension, system), result_unit)
-    offset = 0.0 if result_unit is None else result_unit.offset
+    offset = 0.0 if result_unit is None or _is_change(function.result.quantity) else result_unit.offset
     return Plan(tuple(factors), tuple(offsets), units, scale, offset, result_unit)
+
+
+def _is_change(quantity: Quantity | Alike | None) -> bool:
+    """Return whether a degree of this quantity is a difference, so that the zero of °C or °F plays no part."""
+    return isinstance(quantity, Quantity) and quantity.kind == "temperature_change"
 
 
 def _result_unit(
