@@ -43,7 +43,7 @@ def von_mises(sigma_x: Stress, sigma_y: Stress, tau_xy: Stress) -> Stress:
     Examples
     --------
     >>> cell('=STRESS_VON_MISES("80 MPa", "-40 MPa", "25 MPa", "MPa")')
-    114.3460537
+    114.3459663
     """
     return np.sqrt(sigma_x * (sigma_x - sigma_y) + sigma_y * sigma_y + 3.0 * tau_xy * tau_xy)
 

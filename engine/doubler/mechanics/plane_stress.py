@@ -138,7 +138,7 @@ def principal_angle(sigma_x: Stress, sigma_y: Stress, tau_xy: Stress) -> Angle:
     Examples
     --------
     >>> cell('=STRESS_PRINCIPAL_ANGLE("-20 MPa", "90 MPa", "60 MPa", "deg")')
-    66.25529479
+    66.25522354
     """
     return _direction(sigma_x, sigma_y, tau_xy)
 

@@ -224,7 +224,7 @@ def shear_round(force: Force, outer_diameter: Length, inner_diameter: Length = N
     Examples
     --------
     >>> cell('=STRESS_SHEAR_ROUND("1500 lbf", "4 in", "3.2 in", "psi")')
-    657.7541756
+    657.7541686
     """
     bore = np.zeros_like(outer_diameter) if inner_diameter is None else inner_diameter
     outer, inner = outer_diameter**2, bore**2

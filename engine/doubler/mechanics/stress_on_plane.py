@@ -198,7 +198,7 @@ def on_plane_shear(
     Examples
     --------
     >>> cell('=STRESS_ON_PLANE_SHEAR("80 MPa","60 MPa","20 MPa","20 MPa","10 MPa","40 MPa",1,2,1,"MPa")')
-    28.28427125
+    31.3581462
     """
     normal = _unit(n_x, n_y, n_z)
     vector = _traction(tensor(sigma_x, sigma_y, sigma_z, tau_xy, tau_yz, tau_zx), normal)

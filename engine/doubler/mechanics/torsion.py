@@ -46,7 +46,7 @@ def torsion(torque: Moment, radius: Length, polar_second_moment: TorsionConstant
     Examples
     --------
     >>> cell('=STRESS_TORSION("500 N*m", "25 mm", "245624.2 mm^4", "MPa")')
-    50.89074286
+    50.89075099
     """
     return torque * radius / polar_second_moment
 
