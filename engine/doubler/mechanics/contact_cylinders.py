@@ -6,7 +6,7 @@ import numpy as np
 
 from doubler.catalogue import worksheet_function
 from doubler.catalogue.annotations import Force, Length, Modulus, Pressure, Ratio, Stress
-from doubler.catalogue.limits import NOT_NEGATIVE, POISSON, POSITIVE
+from doubler.catalogue.limits import NOT_NEGATIVE, POISSON, POSITIVE, between
 from doubler.mechanics.contact import CONVEX, plane_modulus, relative_curvature
 
 
@@ -75,7 +75,7 @@ def cylinders(
     Examples
     --------
     >>> cell('=STRESS_HERTZ_CYLINDERS("24.1 kN","40 mm","20 mm","200 GPa",0.29,"200 GPa",0.29,"40 mm","MPa")')
-    ?
+    1447.036746
     """
     contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
     return np.sqrt(force * contact * relative_curvature(radius, other_radius) / (np.pi * length))
@@ -143,46 +143,59 @@ def cylinders_width(
     Examples
     --------
     >>> cell('=STRESS_HERTZ_CYLINDERS_WIDTH("1 kN","40 mm","20 mm","200 GPa",0.29,"200 GPa",0.29,"mm")')
-    ?
+    0.1527193569
     """
     contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
     return np.sqrt(4.0 * force / (np.pi * length * contact * relative_curvature(radius, other_radius)))
 
 
-@worksheet_function("STRESS_HERTZ_CYLINDERS_SHEAR", valid={"contact_pressure": NOT_NEGATIVE})
-def cylinders_shear(contact_pressure: Pressure) -> Stress:
+@worksheet_function(
+    "STRESS_HERTZ_CYLINDERS_SHEAR",
+    valid={"contact_pressure": NOT_NEGATIVE, "poissons_ratio": between(0.0, 0.5)},
+)
+def cylinders_shear(contact_pressure: Pressure, poissons_ratio: Ratio) -> Stress:
     r"""Largest shear stress below the contact of parallel cylinders.
 
-    .. math:: \tau_{max} = p_0 \max_\zeta \left(\zeta - \frac{\zeta^2}{\sqrt{1+\zeta^2}}\right) =
-        0.30028\, p_0, \quad \zeta = \frac{z}{b}
+    .. math:: \tau_{max} = p_0 \max\left(0.30028,\ \frac{w}{1 + w^2} - \nu w\right), \quad w^2 = \frac{2
+        (1 - \nu)}{1 + 2\nu + \sqrt{1 + 8\nu}}
+
+    .. math:: 0.30028 = \max_\zeta \left(\zeta - \frac{\zeta^2}{\sqrt{1+\zeta^2}}\right), \quad \zeta =
+        \frac{z}{b}
 
     Parameters
     ----------
     contact_pressure : pressure
         Largest contact pressure, as STRESS_HERTZ_CYLINDERS gives it.
+    poissons_ratio : ratio
+        Poisson's ratio of the body whose stress is asked for.
 
     Returns
     -------
     stress : stress
-        Shear stress, not negative; it acts at 0.786 of the half width.
+        Shear stress, not negative. From Poisson's ratio 0.244 on it is 0.300 of the pressure, at 0.786 of the
+        half width.
 
     Notes
     -----
     Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
-    pressure beyond yield flattens the surfaces. On the middle plane, where the stress along the cylinders
-    lies between the other two, which holds for a Poisson's ratio of 0.2 and more. Friction raises it and
-    brings it to the surface.
+    pressure beyond yield flattens the surfaces. On the middle plane, in plane strain: with a Poisson's ratio
+    below 0.244 the stress along the cylinders is the smallest in size and the shear on planes inclined to
+    them governs (the second term). Friction raises it and brings it to the surface.
 
     References
     ----------
-    H. Hertz, 1881; K. L. Johnson, Contact Mechanics, chapter 4 (from memory).
+    H. Hertz, 1881; K. L. Johnson, Contact Mechanics, chapter 4 (from memory); the second term is the largest
+    difference of the stresses given there, in closed form.
 
     Examples
     --------
-    >>> cell('=STRESS_HERTZ_CYLINDERS_SHEAR("1000 MPa", "MPa")')
-    ?
+    >>> cell('=STRESS_HERTZ_CYLINDERS_SHEAR("1000 MPa", 0.3, "MPa")')
+    300.283106
     """
-    return 0.3002831060 * contact_pressure
+    square = 2.0 * (1.0 - poissons_ratio) / (1.0 + 2.0 * poissons_ratio + np.sqrt(1.0 + 8.0 * poissons_ratio))
+    root = np.sqrt(square)
+    along = root / (1.0 + square) - poissons_ratio * root
+    return np.maximum(0.3002831060, along) * contact_pressure
 
 
 @worksheet_function("STRESS_HERTZ_SLIDING_TENSION", valid={"contact_pressure": NOT_NEGATIVE, "friction": NOT_NEGATIVE})
@@ -216,6 +229,6 @@ def sliding_tension(contact_pressure: Pressure, friction: Ratio) -> Stress:
     Examples
     --------
     >>> cell('=STRESS_HERTZ_SLIDING_TENSION("1000 MPa", 0.1, "MPa")')
-    ?
+    200.0
     """
     return 2.0 * friction * contact_pressure

@@ -197,5 +197,11 @@ def principal(about_x: Values, about_y: Values, product: Values) -> tuple[Values
 
 
 def principal_angle(about_x: Values, about_y: Values, product: Values) -> Values:
-    """Return the angle from the x axis to the axis of the largest second moment, counter-clockwise, in radians."""
-    return 0.5 * np.arctan2(-2.0 * product, about_x - about_y)
+    """Return the angle from the x axis to the axis of the largest second moment, counter-clockwise, in radians.
+
+    Rounding leaves a trace of product or difference where there is none; below 1e-12 of the moments it counts as none.
+    """
+    trace = 1e-12 * (about_x + about_y)
+    product = np.where(np.abs(product) > trace, product, 0.0)
+    difference = np.where(np.abs(about_x - about_y) > trace, about_x - about_y, 0.0)
+    return 0.5 * np.arctan2(0.0 - 2.0 * product, difference)

@@ -32,13 +32,25 @@ def _unit_twist(areas: Any, lengths: Any, thicknesses: Any, cell: Any, neighbour
     touches = (cell[..., np.newaxis] == numbers).astype(np.float64) - (neighbour[..., np.newaxis] == numbers)
     if not np.all(np.any(touches != 0.0, axis=-2)):
         raise Refusal("a cell has no wall; give each of enclosed_areas its walls")
-    if not np.all(np.any((touches != 0.0).sum(axis=-1) == 1, axis=-1)):
-        raise Refusal("no wall has the outside behind it (wall_neighbours 0); the section is not closed so")
+    if not np.all(_reach_outside(touches)):
+        raise Refusal("a group of cells has no wall with the outside behind it (wall_neighbours 0)")
     slenderness = (lengths / thicknesses)[..., np.newaxis]
     flexibility = np.matmul(np.swapaxes(touches, -1, -2), slenderness * touches)
     cell_flows = np.linalg.solve(flexibility, 2.0 * areas[..., np.newaxis])
     torque = np.sum(2.0 * areas * cell_flows[..., 0], axis=-1)
     return np.matmul(touches, cell_flows)[..., 0], torque
+
+
+def _reach_outside(touches: Any) -> Any:
+    """Return for each cell whether it has an outer wall, or a neighbour that has one, and so on."""
+    belongs = touches != 0.0
+    inner = belongs.sum(axis=-1) == 2
+    reached = np.any(belongs & ~inner[..., np.newaxis], axis=-2)
+    shared = (belongs & inner[..., np.newaxis]).astype(np.int64)
+    beside = np.matmul(np.swapaxes(shared, -1, -2), shared) > 0
+    for _ in range(belongs.shape[-1] - 1):
+        reached = reached | np.any(beside & reached[..., np.newaxis, :], axis=-1)
+    return reached
 
 
 @worksheet_function(
@@ -105,7 +117,7 @@ def torsion_cells(
     Examples
     --------
     >>> cell('=STRESS_TORSION_CELLS("1 Nm",{"mm2";9;9},{"cm";1;1;.3},{"mm";1;1;1},{1;2;1},{0;0;2},1,"kPa")')
-    ?
+    27777.77778
     """
     flows, unit_torque = _unit_twist(enclosed_areas, wall_lengths, wall_thicknesses, wall_cells, wall_neighbours)
     count = wall_thicknesses.shape[-1]
@@ -175,7 +187,7 @@ def torsion_cells_max(
     Examples
     --------
     >>> cell('=STRESS_TORSION_CELLS_MAX("1 Nm",{"mm2";9;9},{"cm";1;1;.3},{"mm";1;1;1},{1;2;1},{0;0;2},"kPa")')
-    ?
+    27777.77778
     """
     flows, unit_torque = _unit_twist(enclosed_areas, wall_lengths, wall_thicknesses, wall_cells, wall_neighbours)
     return np.abs(torque) / unit_torque * np.max(np.abs(flows) / wall_thicknesses, axis=-1)
@@ -242,7 +254,7 @@ def twist_rate_cells(
     Examples
     --------
     >>> cell('=STIFFNESS_TWIST_RATE_CELLS("1 Nm",{"mm2";90},{"mm";38},{"mm";1},{1},{0},"9 GPa")')
-    ?
+    [[7.466528194, 'deg/m']]
     """
     _, unit_torque = _unit_twist(enclosed_areas, wall_lengths, wall_thicknesses, wall_cells, wall_neighbours)
     return torque / (unit_torque * shear_modulus)
