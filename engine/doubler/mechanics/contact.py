@@ -92,7 +92,7 @@ def spheres(
     Examples
     --------
     >>> cell('=STRESS_HERTZ_SPHERES("100 N","10 mm","210 GPa",0.3,"210 GPa",0.3,"MPa")')
-    ?
+    1370.879079
     """
     contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
     return np.cbrt(6.0 * force * (contact * relative_curvature(radius, other_radius)) ** 2 / np.pi**3)
@@ -156,7 +156,7 @@ def spheres_radius(
     Examples
     --------
     >>> cell('=STRESS_HERTZ_SPHERES_RADIUS("100 N","10 mm","210 GPa",0.3,"210 GPa",0.3,"mm")')
-    ?
+    0.1866255578
     """
     contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
     return np.cbrt(0.75 * force / (contact * relative_curvature(radius, other_radius)))
@@ -198,7 +198,7 @@ def spheres_shear(contact_pressure: Pressure, poissons_ratio: Ratio) -> Stress:
     Examples
     --------
     >>> cell('=STRESS_HERTZ_SPHERES_SHEAR("1000 MPa", 0.3, "MPa")')
-    ?
+    310.020502
     """
     depth = np.full_like(poissons_ratio, 0.45)
     for _ in range(8):  # Newton on the slope; from here it settles in five for every stable Poisson's ratio

@@ -140,7 +140,7 @@ def elliptical(
     Examples
     --------
     >>> cell('=STRESS_HERTZ_ELLIPTICAL("1kN","6cm","13cm","8cm","20cm","60°","200GPa",.3,"200GPa",.3,"MPa")')
-    ?
+    998.7989096
     """
     contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
     slow, fast = _relative_curvatures(radius_1, radius_1_across, radius_2, radius_2_across, angle)
@@ -222,7 +222,7 @@ def elliptical_axes(
     Examples
     --------
     >>> cell('=STRESS_HERTZ_ELLIPTICAL_AXES("1kN","6cm","13cm","8cm","2dm","60°","20GPa",.3,"20GPa",.3,"mm")')
-    ?
+    [[1.703951445, 1.302185269]]
     """
     contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
     slow, fast = _relative_curvatures(radius_1, radius_1_across, radius_2, radius_2_across, angle)

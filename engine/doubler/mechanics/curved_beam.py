@@ -110,7 +110,7 @@ def curved_rectangle(
     Examples
     --------
     >>> cell('=STRESS_CURVED_RECTANGLE("0 lbf","-8 kip*in","5.25 in","1.5 in","2.5 in","5.25 in","ksi")')
-    ?
+    -9.305232243
     """
     area, _, inverse, bend = trapezium_integrals(inner_radius, depth, width, width)
     return _stress(force, moment, area, inverse, bend, radius)
@@ -163,7 +163,7 @@ def curved_circle(force: Force, moment: Moment, centroid_radius: Length, diamete
     Examples
     --------
     >>> cell('=STRESS_CURVED_CIRCLE("10 kN","400 N*m","60 mm","30 mm","45 mm","MPa")')
-    ?
+    199.5806657
     """
     area, inverse, bend = circle_integrals(centroid_radius, diameter)
     return _stress(force, moment, area, inverse, bend, radius)
@@ -237,7 +237,7 @@ def curved_trapezium(
     Examples
     --------
     >>> cell('=STRESS_CURVED_TRAPEZIUM("10 kN","900 Nm","5 cm","4 cm","3 cm","1 cm","5 cm","MPa")')
-    ?
+    201.2505685
     """
     area, _, inverse, bend = trapezium_integrals(inner_radius, depth, inner_width, outer_width)
     return _stress(force, moment, area, inverse, bend, radius)
@@ -302,7 +302,7 @@ def curved_general(
     Examples
     --------
     >>> cell('=STRESS_CURVED_GENERAL("0 N","900 Nm","8 cm2","68.3 mm","12.0284 mm","50 mm","MPa")')
-    ?
+    207.4330586
     """
     bend = centroid_radius * area_over_radius - area
     return _stress(force, moment, area, area_over_radius, bend, radius)

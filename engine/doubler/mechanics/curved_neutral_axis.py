@@ -39,7 +39,7 @@ def offset_rectangle(inner_radius: Length, depth: Length) -> Length:
     Examples
     --------
     >>> cell('=SECTION_CURVED_OFFSET_RECTANGLE("5.25 in","1.5 in","in")')
-    ?
+    0.03138128495
     """
     _, _, inverse, bend = trapezium_integrals(inner_radius, depth, depth, depth)
     return bend / inverse
@@ -80,7 +80,7 @@ def offset_circle(centroid_radius: Length, diameter: Length) -> Length:
     Examples
     --------
     >>> cell('=SECTION_CURVED_OFFSET_CIRCLE("60 mm","30 mm","mm")')
-    ?
+    0.9526249034
     """
     _, inverse, bend = circle_integrals(centroid_radius, diameter)
     return bend / inverse
@@ -135,7 +135,7 @@ def offset_trapezium(inner_radius: Length, depth: Length, inner_width: Length, o
     Examples
     --------
     >>> cell('=SECTION_CURVED_OFFSET_TRAPEZIUM("50 mm","40 mm","30 mm","10 mm","mm")')
-    ?
+    1.775143152
     """
     _, _, inverse, bend = trapezium_integrals(inner_radius, depth, inner_width, outer_width)
     return bend / inverse

@@ -86,7 +86,7 @@ def interference_pressure(
     Examples
     --------
     >>> cell('=STRESS_INTERFERENCE_PRESSURE("0.02 mm","20 mm","40 mm","207 GPa",0.29,"207 GPa",0.29)')
-    ?
+    [[77.625, 'MPa']]
     """
     joint, outer = interface_radius**2, outer_radius**2
     bore = 0.0 if inner_radius is None else inner_radius**2

@@ -49,7 +49,7 @@ def thin_cylinder_hoop(pressure: Pressure, radius: Length, thickness: Length) ->
     Examples
     --------
     >>> cell('=STRESS_THIN_CYLINDER_HOOP("1.5 MPa", "1000 mm", "20 mm", "MPa")')
-    ?
+    75.0
     """
     return pressure * radius / thickness
 
@@ -91,7 +91,7 @@ def thin_cylinder_axial(pressure: Pressure, radius: Length, thickness: Length) -
     Examples
     --------
     >>> cell('=STRESS_THIN_CYLINDER_AXIAL("1.5 MPa", "1000 mm", "20 mm", "MPa")')
-    ?
+    37.5
     """
     return 0.5 * pressure * radius / thickness
 
@@ -133,7 +133,7 @@ def thin_sphere(pressure: Pressure, radius: Length, thickness: Length) -> Stress
     Examples
     --------
     >>> cell('=STRESS_THIN_SPHERE("0.8 MPa", "1000 mm", "10 mm", "MPa")')
-    ?
+    40.0
     """
     return 0.5 * pressure * radius / thickness
 
@@ -187,7 +187,7 @@ def cylinder_growth(
     Examples
     --------
     >>> cell('=STIFFNESS_CYLINDER_GROWTH("0.8 MPa", "1000 mm", "10 mm", "200 GPa", 0.25, "mm")')
-    ?
+    0.35
     """
     return pressure * radius**2 / (modulus * thickness) * (1.0 - 0.5 * poissons_ratio)
 
@@ -241,6 +241,6 @@ def sphere_growth(
     Examples
     --------
     >>> cell('=STIFFNESS_SPHERE_GROWTH("0.8 MPa", "1000 mm", "10 mm", "200 GPa", 0.25, "mm")')
-    ?
+    0.15
     """
     return 0.5 * pressure * radius**2 / (modulus * thickness) * (1.0 - poissons_ratio)

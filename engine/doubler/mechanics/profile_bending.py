@@ -92,7 +92,7 @@ def section_modulus(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_MODULUS("I", "200 mm", "100 mm", "5.6 mm", "8.5 mm", , , "12 mm", "x", "cm^3")')
-    ?
+    194.3167141
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     section = section if axis == "x" else section.quarter_turn()
@@ -160,7 +160,7 @@ def plastic_modulus(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_PLASTIC_MODULUS("I", "200 mm", "100 mm", "5.6 mm", "8.5 mm", , , "12 mm", "x", "cm^3")')
-    ?
+    220.6385775
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     section = section if axis == "x" else section.quarter_turn()
@@ -232,7 +232,7 @@ def first_moment(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_FIRST_MOMENT("tee", "60 mm", "90 mm", "30 mm", "20 mm", , , , "40 mm", "mm^3")')
-    ?
+    21600.0
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     level = plane.centroid(section)[1] if at is None else at
@@ -292,7 +292,7 @@ def principal(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_PRINCIPAL("angle", "200 mm", "160 mm", "30 mm", , , , , "cm^4")')
-    ?
+    [[4724.073447, 1119.881099]]
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     return np.stack(plane.principal(*plane.second_moments(section)), axis=-1)
@@ -353,7 +353,7 @@ def principal_angle(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_PRINCIPAL_ANGLE("angle", "200 mm", "160 mm", "30 mm", , , , , "deg")')
-    ?
+    31.5558975
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     return plane.principal_angle(*plane.second_moments(section))

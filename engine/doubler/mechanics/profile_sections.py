@@ -87,7 +87,7 @@ def area(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_AREA("I", "200 mm", "100 mm", "5.6 mm", "8.5 mm", , , "12 mm", "cm^2")')
-    ?
+    28.48410658
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     return plane.area(section)
@@ -149,7 +149,7 @@ def centroid(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_CENTROID("tee", "60 mm", "90 mm", "30 mm", "20 mm", , , , "mm")')
-    ?
+    [[0.0, 38.0]]
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     return np.stack(plane.centroid(section), axis=-1)
@@ -214,7 +214,7 @@ def second_moment(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_SECOND_MOMENT("I", "200 mm", "100 mm", "5.6 mm", "8.5 mm", , , "12 mm", "x", "cm^4")')
-    ?
+    1943.167141
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     about_x, about_y, _ = plane.second_moments(section)
@@ -277,7 +277,7 @@ def product(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_PRODUCT("angle", "200 mm", "160 mm", "30 mm", , , , , "cm^4")')
-    ?
+    -1607.272727
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     return plane.second_moments(section)[2]
@@ -341,7 +341,7 @@ def radius_of_gyration(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_RADIUS("I", "200 mm", "100 mm", "5.6 mm", "8.5 mm", , , "12 mm", "x", "mm")')
-    ?
+    82.59500387
     """
     section = outline(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
     about_x, about_y, _ = plane.second_moments(section)

@@ -97,7 +97,7 @@ def torsion_constant(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_TORSION_CONSTANT("box", "103 mm", "53 mm", "3 mm", "3 mm", , , , "cm^4")')
-    ?
+    100.0
     """
     return profile_walls.torsion_constant(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
 
@@ -156,7 +156,7 @@ def warping_constant(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_WARPING_CONSTANT("I", "77.5 mm", "37.5 mm", "2.5 mm", "2.5 mm", , , , "mm^6")')
-    ?
+    30899047.85
     """
     return profile_walls.warping_constant(shape, given(depth, width, web, flange, bottom_width, bottom_flange, fillet))
 
@@ -217,7 +217,7 @@ def shear_area(
     Examples
     --------
     >>> cell('=SECTION_PROFILE_SHEAR_AREA("I", "200 mm", "100 mm", "5.6 mm", "8.5 mm", , , "12 mm", "y", "mm^2")')
-    ?
+    1134.692688
     """
     if shape in ("angle", "zee"):
         return profile_walls.parallel_walls(

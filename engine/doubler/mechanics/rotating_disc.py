@@ -89,7 +89,7 @@ def disc_radial(
     Examples
     --------
     >>> cell('=STRESS_DISC_RADIAL("1000 rad/s","300 mm","0 mm","7850 kg/m^3",0.29,"MPa")')
-    ?
+    290.548125
     """
     bore, term = _bore_terms(radius, outer_radius, inner_radius)
     return 0.125 * (3.0 + poissons_ratio) * density * angular_speed**2 * (bore + outer_radius**2 - term - radius**2)
@@ -155,7 +155,7 @@ def disc_hoop(
     Examples
     --------
     >>> cell('=STRESS_DISC_HOOP("1000 rad/s","300 mm","100 mm","7850 kg/m^3",0.29,"100 mm","MPa")')
-    ?
+    595.03
     """
     bore, term = _bore_terms(radius, outer_radius, inner_radius)
     inside = (3.0 + poissons_ratio) * (bore + outer_radius**2 + term) - (1.0 + 3.0 * poissons_ratio) * radius**2
@@ -204,7 +204,7 @@ def disc_hoop_mean(
     Examples
     --------
     >>> cell('=STRESS_DISC_HOOP_MEAN("1350 rad/s","300 mm","7850 kg/m^3","100 mm","MPa")')
-    ?
+    619.95375
     """
     bore = np.zeros_like(outer_radius) if inner_radius is None else inner_radius
     return density * angular_speed**2 * (outer_radius**2 + outer_radius * bore + bore**2) / 3.0

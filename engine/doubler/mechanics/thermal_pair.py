@@ -69,7 +69,7 @@ def pair(
     Examples
     --------
     >>> cell('=STRESS_THERMAL_PAIR("60 K","1 cm2","2 cm2","200 GPa","100 GPa","12e-6 1/K","20e-6 1/K","MPa")')
-    ?
+    48.0
     """
     flexibility = 1.0 / (modulus * area) + 1.0 / (other_modulus * other_area)
     return (other_expansion - expansion) * temperature_change / (flexibility * area)
@@ -145,7 +145,7 @@ def bimetal_curvature(
     Examples
     --------
     >>> cell('=STIFFNESS_BIMETAL_CURVATURE("90 K","1 mm","1 mm","9 GPa","9 GPa","1 ppm/K","19 ppm/K","1/m")')
-    ?
+    1.215
     """
     mismatch = other_expansion - expansion
     return _strip_curvature(temperature_change, thickness, other_thickness, modulus, other_modulus, mismatch)
@@ -210,7 +210,7 @@ def bimetal_strip(
     Examples
     --------
     >>> cell('=STRESS_BIMETAL_STRIP("90 K","1 mm","1 mm","9 GPa","9 GPa","1 ppm/K","19 ppm/K","MPa")')
-    ?
+    7.29
     """
     mismatch = other_expansion - expansion
     bend = _strip_curvature(temperature_change, thickness, other_thickness, modulus, other_modulus, mismatch)

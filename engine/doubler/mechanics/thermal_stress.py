@@ -47,7 +47,7 @@ def restrained(temperature_change: TemperatureChange, modulus: Modulus, expansio
     Examples
     --------
     >>> cell('=STRESS_THERMAL_RESTRAINED("-40 °C","200 GPa","11.7e-6 1/K","MPa")')
-    ?
+    93.6
     """
     return -modulus * expansion * temperature_change
 
@@ -94,7 +94,7 @@ def gap(
     Examples
     --------
     >>> cell('=STRESS_THERMAL_GAP("80 °C","2.5 m","0.5 mm","200 GPa","12e-6 1/K","MPa")')
-    ?
+    -152.0
     """
     # Adding 0.0 turns -0.0 into 0.0.
     return -modulus * np.maximum(expansion * temperature_change - gap / length, 0.0) + 0.0
@@ -143,7 +143,7 @@ def yielding(
     Examples
     --------
     >>> cell('=STRESS_THERMAL_YIELDING("-40 °C","2.5 m","0.5 mm","200 GPa","11.7e-6 1/K","MPa")')
-    ?
+    53.6
     """
     strain = expansion * temperature_change
     return -np.sign(strain) * modulus * np.maximum(np.abs(strain) - give / length, 0.0) + 0.0
@@ -187,7 +187,7 @@ def plate(
     Examples
     --------
     >>> cell('=STRESS_THERMAL_PLATE("50 °C","70 GPa","23e-6 1/K",0.3,"MPa")')
-    ?
+    -115.0
     """
     return -modulus * expansion * temperature_change / (1.0 - poissons_ratio)
 
@@ -233,6 +233,6 @@ def plate_gradient(
     Examples
     --------
     >>> cell('=STRESS_THERMAL_PLATE_GRADIENT("60 °C","70 GPa","23e-6 1/K",0.3,"MPa")')
-    ?
+    -69.0
     """
     return -0.5 * modulus * expansion * temperature_difference / (1.0 - poissons_ratio)

@@ -76,7 +76,7 @@ def radial(
     Examples
     --------
     >>> cell('=STRESS_THICK_CYLINDER_RADIAL("300 MPa","0 MPa","10 mm","50 mm","25 mm","MPa")')
-    ?
+    -37.5
     """
     mean, swing = _constants(inner_pressure, outer_pressure, inner_radius, outer_radius)
     return mean - swing / radius**2
@@ -137,7 +137,7 @@ def hoop(
     Examples
     --------
     >>> cell('=STRESS_THICK_CYLINDER_HOOP("300 MPa","0 MPa","10 mm","50 mm","10 mm","MPa")')
-    ?
+    325.0
     """
     mean, swing = _constants(inner_pressure, outer_pressure, inner_radius, outer_radius)
     return mean + swing / radius**2
@@ -211,7 +211,7 @@ def axial(
     Examples
     --------
     >>> cell('=STRESS_THICK_CYLINDER_AXIAL("300 MPa","0 MPa","10 mm","50 mm",0.3,"closed","MPa")')
-    ?
+    12.5
     """
     mean, _ = _constants(inner_pressure, outer_pressure, inner_radius, outer_radius)
     share = {"closed": 1.0, "open": 0.0, "held": 2.0 * poissons_ratio}[ends]
@@ -273,7 +273,7 @@ def sphere_radial(
     Examples
     --------
     >>> cell('=STRESS_THICK_SPHERE_RADIAL("100 MPa","0 MPa","10 mm","20 mm","10 mm","MPa")')
-    ?
+    -100.0
     """
     inner, outer = inner_radius**3, outer_radius**3
     swing = (inner_pressure - outer_pressure) * inner * outer / radius**3
@@ -335,7 +335,7 @@ def sphere_hoop(
     Examples
     --------
     >>> cell('=STRESS_THICK_SPHERE_HOOP("100 MPa","0 MPa","10 mm","20 mm","10 mm","MPa")')
-    ?
+    71.42857143
     """
     inner, outer = inner_radius**3, outer_radius**3
     swing = (inner_pressure - outer_pressure) * inner * outer / radius**3

@@ -62,7 +62,7 @@ def torsion_rectangle(torque: Moment, width: Length, thickness: Length) -> Stres
     Examples
     --------
     >>> cell('=STRESS_TORSION_RECTANGLE("400 N*m", "40 mm", "30 mm", "MPa")')
-    ?
+    49.44286621
     """
     longer, shorter = np.maximum(width, thickness), np.minimum(width, thickness)
     ratio = longer / shorter
@@ -106,7 +106,7 @@ def torsion_rectangle_side(torque: Moment, width: Length, thickness: Length) -> 
     Examples
     --------
     >>> cell('=STRESS_TORSION_RECTANGLE_SIDE("400 N*m", "40 mm", "30 mm", "MPa")')
-    ?
+    44.22331166
     """
     longer, shorter = np.maximum(width, thickness), np.minimum(width, thickness)
     ratio = longer / shorter
@@ -152,6 +152,6 @@ def twist_rate_rectangle(torque: Moment, width: Length, thickness: Length, shear
     Examples
     --------
     >>> cell('=STIFFNESS_TWIST_RATE_RECTANGLE("400 N*m", "40 mm", "30 mm", "77.5 GPa", "rad/m")')
-    ?
+    0.02648257032
     """
     return torque / (shear_modulus * torsion_constant(width, thickness))

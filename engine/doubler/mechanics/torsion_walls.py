@@ -77,7 +77,7 @@ def torsion_open(torque: Moment, wall_lengths: Lengths, wall_thicknesses: Length
     Examples
     --------
     >>> cell('=STRESS_TORSION_OPEN("10 N*m",{"mm";25;50;25},{"mm";1.5;2.5;1.5},"MPa")')
-    ?
+    78.94736842
     """
     constant = open_constant(wall_lengths, wall_thicknesses)
     return torque * np.max(wall_thicknesses, axis=-1) / constant
@@ -124,7 +124,7 @@ def twist_rate_open(
     Examples
     --------
     >>> cell('=STIFFNESS_TWIST_RATE_OPEN("10 N*m",{"mm";25;50;25},{"mm";1.5;2.5;1.5},"70 GPa","rad/m")')
-    ?
+    0.4511278195
     """
     return torque / (shear_modulus * open_constant(wall_lengths, wall_thicknesses))
 
@@ -178,7 +178,7 @@ def twist_rate_closed(
     Examples
     --------
     >>> cell('=STIFFNESS_TWIST_RATE_CLOSED("1 kN*m","80 cm2",{"mm";100;80;100;80},{"mm";2;2;2;2},"27 GPa")')
-    ?
+    [[1.492077591, 'deg/m']]
     """
     alike_columns(wall_lengths=wall_lengths, wall_thicknesses=wall_thicknesses)
     slenderness = np.sum(wall_lengths / wall_thicknesses, axis=-1)
