@@ -5,9 +5,12 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from doubler import mechanics
 from doubler.catalogue.formula_text import evaluate_text
 from doubler.errors import ErrorValue, InputError
 from doubler.mechanics import margins
+
+mechanics.load()
 
 SIZES = st.floats(1.0, 1e3)
 FACTORS = st.floats(1.0, 4.0)

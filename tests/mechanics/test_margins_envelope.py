@@ -5,10 +5,13 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from doubler import mechanics
 from doubler.catalogue import call_cells, lookup
 from doubler.catalogue.formula_text import evaluate_text
 from doubler.errors import ErrorValue
 from doubler.mechanics import margins_envelope
+
+mechanics.load()
 
 MARGINS = st.lists(st.floats(-1.0, 20.0), min_size=1, max_size=12)
 NAMES = [["Check"], ["net section"], ["bearing"], ["shear-out"]]

@@ -6,9 +6,12 @@ from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 from scipy.optimize import brentq
 
+from doubler import mechanics
 from doubler.catalogue.formula_text import evaluate_text
 from doubler.errors import ErrorValue, InputError
 from doubler.mechanics import margins_interaction as module
+
+mechanics.load()
 
 PAIRS = sorted(module._EXPONENTS)
 RATIO = st.floats(0.001, 3.0)
@@ -47,7 +50,7 @@ def test_every_named_pair_scales_exactly_with_the_loads(first, second, pair, by)
 def test_beside_constant_loads_the_factor_is_the_root_that_a_bracketing_solver_finds(terms) -> None:
     ratios, constant, exponents = np.array(terms).T
     assume(np.sum(constant**exponents) < 0.99)
-    root = brentq(lambda k: np.sum((constant + k * ratios) ** exponents) - 1.0, 0.0, 1.0 / ratios.min(), xtol=1e-14)
+    root = brentq(lambda k: np.sum((constant + k * ratios) ** exponents) - 1.0, 0.0, 1.1 / ratios.min(), xtol=1e-14)
     assert 1.0 + module.interaction_constant(ratios, constant, exponents) == pytest.approx(root, rel=1e-7, abs=1e-10)
 
 
