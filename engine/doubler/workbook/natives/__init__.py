@@ -48,10 +48,10 @@ none                no unit rule: the result is not traced
 ==================  ====================================================================================
 """
 
-from doubler.workbook.natives import aggregates, criteria, logical, lookup, mathematics, rounding
+from doubler.workbook.natives import aggregates, criteria, information, logical, lookup, mathematics, rounding
 from doubler.workbook.natives.registry import NATIVES, OMITTED, Native, native
 
-TOPICS = (aggregates, criteria, logical, lookup, mathematics, rounding)
+TOPICS = (aggregates, criteria, information, logical, lookup, mathematics, rounding)
 """The modules that declare native functions."""
 
 __all__ = ["NATIVES", "OMITTED", "TOPICS", "Native", "native"]
