@@ -11,11 +11,13 @@ ROOT = Path(doubler.__file__).parent
 # From the ground up; a layer may import itself and what stands before it. Names are first parts below doubler.
 LAYERS = [
     {"errors"},
+    {"demo_data"},
     {"units"},
     {"catalogue"},
     {"mechanics"},
     {"workbook"},
-    {"cases", "summary"},
+    {"cases", "outcome"},
+    {"summary"},
     {"fill", "sweep", "size", "explain", "check"},
     {"hosts", "cli", "__main__", "demo"},
 ]

@@ -2,102 +2,52 @@
 
 from __future__ import annotations
 
-import os
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from doubler.errors import ErrorValue, InputError
+import numpy as np
+
+from doubler.cases import CaseBatch
+from doubler.errors import ErrorValue
+from doubler.outcome import EnvelopeLine
 from doubler.workbook.model import Scalar
+from doubler.workbook.output import write_file
 from doubler.workbook.template import Port
 
 INK, TEAL, PALE, RUST, BLUSH, GREY = "1D3244", "1F6F6B", "E4EFEE", "A63A24", "F9E3DC", "6B7780"
 """Our colours: headings, what holds, its ground, what is below zero, its ground, remarks."""
 
 
-@dataclass(frozen=True, slots=True)
-class Extreme:
-    """The lowest or highest value of an output over all cases.
-
-    Attributes
-    ----------
-    value
-        A number, or the error value of the first case that has one: what could not be computed governs.
-    case
-        The name of the case that gives it.
-    """
-
-    value: Scalar
-    case: str
-
-
-@dataclass(frozen=True, slots=True)
-class EnvelopeLine:
-    """One output over all cases."""
-
-    port: Port
-    lowest: Extreme
-    highest: Extreme
-    below_zero: int
-    not_computed: int
-
-
-def envelope(
-    outputs: Sequence[Port], results: Mapping[str, Sequence[Scalar]], names: Sequence[str]
-) -> list[EnvelopeLine]:
-    """Return lowest and highest value of every numeric output, with the governing cases.
+class SummaryRows:
+    """Collects what the sheet of cases shows: names, inputs and outputs, one row a case.
 
     Parameters
     ----------
-    outputs : sequence of Port
-    results : mapping
-        By the port's name: one value a case.
-    names : sequence of str
-        The cases' names, in the same order.
-
-    Returns
-    -------
-    list of EnvelopeLine
-        Outputs that give text only have no line. Margins come first, the lowest of them on top.
+    inputs, outputs : sequence of Port
     """
-    lines = []
-    for port in outputs:
-        values = results[port.name]
-        faults = [i for i, value in enumerate(values) if isinstance(value, ErrorValue)]
-        numbers = [i for i, value in enumerate(values) if isinstance(value, float) and not isinstance(value, bool)]
-        if faults:
-            lost = Extreme(values[faults[0]], names[faults[0]])
-            low = high = lost
-        elif numbers:
-            least = min(numbers, key=lambda i: values[i])  # type: ignore[arg-type, return-value]  # floats only
-            most = max(numbers, key=lambda i: values[i])  # type: ignore[arg-type, return-value]  # floats only
-            low, high = Extreme(values[least], names[least]), Extreme(values[most], names[most])
-        else:
-            continue
-        below = sum(1 for i in numbers if values[i] < 0) if port.is_margin else 0  # type: ignore[operator]
-        lines.append(EnvelopeLine(port, low, high, below, len(faults)))
-    return sorted(lines, key=_order)
+
+    def __init__(self, inputs: Sequence[Port], outputs: Sequence[Port]) -> None:
+        self.inputs, self.outputs = list(inputs), list(outputs)
+        self.names: list[str] = []
+        self.columns: dict[Port, list[Scalar]] = {port: [] for port in (*inputs, *outputs)}
+
+    def take(self, batch: CaseBatch, results: Mapping[str, Any]) -> None:
+        """Add a batch of cases with their results by output."""
+        self.names += batch.names
+        for port in self.inputs:
+            self.columns[port] += list(_listed(batch.values[port], len(batch.names)))
+        for port in self.outputs:
+            self.columns[port] += _listed(results[port.name], len(batch.names))
 
 
-def _order(line: EnvelopeLine) -> tuple[bool, bool, float]:
-    value = line.lowest.value
-    number = value if isinstance(value, float) else float("-inf")
-    return (
-        not line.port.is_margin,
-        line.port.is_margin and isinstance(value, float),
-        number if line.port.is_margin else 0,
-    )
+def _listed(values: Any, count: int) -> list[Scalar]:
+    if isinstance(values, list):
+        return values
+    return list(values.tolist()) if isinstance(values, np.ndarray) else [values] * count
 
 
-def write_summary(
-    target: Path,
-    title: str,
-    inputs: Mapping[Port, Sequence[Scalar]],
-    outputs: Sequence[Port],
-    results: Mapping[str, Sequence[Scalar]],
-    names: Sequence[str],
-) -> list[EnvelopeLine]:
+def write_summary(target: Path, title: str, rows: SummaryRows, lines: Sequence[EnvelopeLine]) -> None:
     """Write the summary workbook, in full or not at all.
 
     Parameters
@@ -106,36 +56,28 @@ def write_summary(
         The ``.xlsx`` file to write.
     title : str
         What was filled, for the head of the sheet.
-    inputs : mapping of Port to values
-        The inputs that the cases set, one value a case.
-    outputs, results, names
-        As `envelope` takes them.
-
-    Returns
-    -------
-    list of EnvelopeLine
-        The envelope as written.
+    rows : SummaryRows
+        All cases.
+    lines : sequence of EnvelopeLine
+        The envelope over them.
     """
+    import io
+
     from openpyxl import Workbook
 
-    lines = envelope(outputs, results, names)
     book = Workbook()
     sheet = book.active
+    assert sheet is not None
     sheet.title = "Envelope"
     cases = book.create_sheet("Cases")
     margins = [line.port for line in lines if line.port.is_margin]
-    lowest_column = _write_cases(cases, inputs, outputs, results, names, margins)
-    _write_envelope(sheet, title, lines, len(names))
+    chart_column = _write_cases(cases, rows, margins)
+    _write_envelope(sheet, title, lines, len(rows.names))
     if margins:
-        _add_chart(sheet, cases, lowest_column, len(names), len(lines) + 8)
-    part = target.with_name(f".{target.name}.part")
-    try:
-        book.save(part)
-        os.replace(part, target)
-    except OSError as error:
-        part.unlink(missing_ok=True)
-        raise InputError(f"{target}: cannot be written ({error.strerror or error})") from error
-    return lines
+        _add_chart(sheet, cases, chart_column, len(rows.names), len(lines) + 8)
+    stream = io.BytesIO()
+    book.save(stream)
+    write_file(target, [stream.getvalue()])
 
 
 def _put(sheet: Any, row: int, column: int, value: Scalar, **style: Any) -> Any:
@@ -193,32 +135,31 @@ def _write_envelope(sheet: Any, title: str, lines: Sequence[EnvelopeLine], count
     for letter, width in zip("ABCDEFGH", (22, 34, 9, 12, 18, 12, 18, 12), strict=True):
         sheet.column_dimensions[letter].width = width
     sheet.freeze_panes = "A6"
-    _set_up_page(sheet, "A1")
+    _set_up_page(sheet)
 
 
-def _write_cases(
-    sheet: Any,
-    inputs: Mapping[Port, Sequence[Scalar]],
-    outputs: Sequence[Port],
-    results: Mapping[str, Sequence[Scalar]],
-    names: Sequence[str],
-    margins: Sequence[Port],
-) -> int:
-    """Write one row a case; return the column of the lowest margin (0 where there is no margin)."""
+def _write_cases(sheet: Any, rows: SummaryRows, margins: Sequence[Port]) -> int:
+    """Write one row a case; return the first of the two columns for the chart (0 where there is no margin)."""
     from openpyxl.formatting.rule import CellIsRule
     from openpyxl.styles import Font, PatternFill
     from openpyxl.utils import get_column_letter
 
-    columns = [("Case", "", list(names), None)]
-    columns += [(p.name, p.unit.text if p.unit else "", list(values), p) for p, values in inputs.items()]
-    columns += [(p.name, p.unit.text if p.unit else "", list(results[p.name]), p) for p in outputs]
-    lowest_column = 0
+    names = rows.names
+    columns: list[tuple[str, str, list[Scalar], Port | None]] = [("Case", "", list(names), None)]
+    columns += [
+        (port.name, port.unit.text if port.unit else "", rows.columns[port], port)
+        for port in (*rows.inputs, *rows.outputs)
+    ]
+    chart_column = 0
     if margins:
-        worst, which = _lowest_margin(margins, results, len(names))
+        worst, which = _lowest_margin(margins, rows)
+        above: list[Scalar] = [v if isinstance(v, float) and v >= 0 else None for v in worst]
+        below: list[Scalar] = [v if isinstance(v, float) and v < 0 else None for v in worst]
         columns += [("Lowest margin", "", worst, margins[0]), ("Which", "", which, None)]
-        lowest_column = len(columns) - 1
+        columns += [("Zero or above", "", above, margins[0]), ("Below zero", "", below, margins[0])]
+        chart_column = len(columns) - 1
     for column, (head, unit, values, port) in enumerate(columns, start=1):
-        ground = TEAL if 1 < column <= 1 + len(inputs) else INK
+        ground = TEAL if 1 < column <= 1 + len(rows.inputs) else INK
         _put(sheet, 1, column, head, bold=True, color="FFFFFF", fill=ground)
         _put(sheet, 2, column, unit, color=GREY, fill="F2F4F5", size=9)
         shown = _number_format(port) if port else "General"
@@ -226,7 +167,7 @@ def _write_cases(
             _put(sheet, row, column, value, format=shown)
         longest = max(len(head), len(unit), max((len(str(v)) for v in values[:50] if isinstance(v, str)), default=0))
         sheet.column_dimensions[get_column_letter(column)].width = min(max(longest + 3, 10), 30)
-        if port is not None and port.is_margin and column > 1 + len(inputs):
+        if port is not None and port.is_margin and column > 1 + len(rows.inputs):
             letter = get_column_letter(column)
             red = {"font": Font(color=RUST, bold=True), "fill": PatternFill(bgColor=BLUSH)}
             sheet.conditional_formatting.add(
@@ -235,18 +176,16 @@ def _write_cases(
     sheet.freeze_panes = "B3"
     sheet.auto_filter.ref = f"A2:{get_column_letter(len(columns))}{len(names) + 2}"
     sheet.print_title_rows = "1:2"
-    _set_up_page(sheet, None)
-    return lowest_column
+    _set_up_page(sheet)
+    return chart_column
 
 
-def _lowest_margin(
-    margins: Sequence[Port], results: Mapping[str, Sequence[Scalar]], count: int
-) -> tuple[list[Scalar], list[Scalar]]:
-    """For each case the lowest of its margins and its name; an error governs."""
+def _lowest_margin(margins: Sequence[Port], rows: SummaryRows) -> tuple[list[Scalar], list[Scalar]]:
+    """Return for each case the lowest of its margins and which it is; an error governs."""
     worst: list[Scalar] = []
     which: list[Scalar] = []
-    for index in range(count):
-        found = [(results[port.name][index], port.name) for port in margins]
+    for index in range(len(rows.names)):
+        found = [(rows.columns[port][index], port.name) for port in margins]
         lost = next(((v, n) for v, n in found if isinstance(v, ErrorValue)), None)
         numbers = [(v, n) for v, n in found if isinstance(v, float)]
         value, name = lost or min(numbers, default=(None, ""))
@@ -266,12 +205,15 @@ def _add_chart(sheet: Any, cases: Any, column: int, count: int, row: int) -> Non
     chart.style = 10
     chart.height, chart.width = 9.5, 30
     chart.gapWidth = 30
-    chart.legend = None
-    chart.add_data(Reference(cases, min_col=column, min_row=3, max_row=count + 2))
-    chart.set_categories(Reference(cases, min_col=1, min_row=3, max_row=count + 2))
-    series = chart.series[0]
-    series.graphicalProperties = GraphicalProperties(solidFill=TEAL)
-    series.invertIfNegative = False
+    chart.overlap = 100
+    chart.legend.position = "t"
+    chart.add_data(
+        Reference(cases, min_col=column, max_col=column + 1, min_row=1, max_row=count + 2), titles_from_data=True
+    )
+    chart.set_categories(Reference(cases, min_col=1, min_row=2, max_row=count + 2))
+    for series, colour in zip(chart.series, (TEAL, RUST), strict=True):
+        series.graphicalProperties = GraphicalProperties(solidFill=colour)
+        series.invertIfNegative = False
     chart.y_axis.title = "margin of safety"
     chart.y_axis.number_format = "0.0"
     chart.y_axis.delete = False
@@ -288,7 +230,7 @@ def _thin_line(color: str) -> Any:
     return LineProperties(solidFill=color, w=6350)
 
 
-def _set_up_page(sheet: Any, _anchor: str | None) -> None:
+def _set_up_page(sheet: Any) -> None:
     sheet.page_setup.orientation = "landscape"
     sheet.page_setup.fitToWidth = 1
     sheet.page_setup.fitToHeight = 0
