@@ -1,4 +1,4 @@
-"""Hooke's law of isotropic material, strain to stress: uniaxial, shear, plane stress, plane strain, three dimensions."""
+"""Hooke's law of isotropic material, strain to stress: one axis, shear, plane stress, plane strain, all six."""
 
 from __future__ import annotations
 
