@@ -2,14 +2,15 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field
 from typing import Any
 
 import numpy as np
 
+from doubler.catalogue.evaluation import Outcome, evaluate, scaled_values, shift
 from doubler.catalogue.forms import OMITTED, ArgumentError, Bound, bind
-from doubler.catalogue.plan import CallError, Outcome, Plan, evaluate, plan_for, run_kernel, within_limits
+from doubler.catalogue.plan import CallError, Plan, plan_for
 from doubler.catalogue.record import WorksheetFunction
 from doubler.errors import ErrorValue
 from doubler.units import ConsistentSet, Unit, UnitError, consistent_set, parse_unit
@@ -18,7 +19,7 @@ MEMO_SIZE = 4096
 """Calls of one function with texts only whose reading is kept; then the memory is begun anew."""
 
 
-@dataclass(frozen=True, slots=True)
+@dataclass(slots=True)
 class CellResult:
     """What a cell shows.
 
@@ -40,7 +41,19 @@ class CellResult:
     failures: tuple[Any, ...] = field(default=())
 
 
-_memo: dict[str, dict[tuple[Any, ...], tuple[Plan, list[Any], bool]]] = {}
+@dataclass(slots=True)
+class Reading:
+    """How a call whose arguments are all text was read: all that its next evaluation needs.
+
+    It is kept only for a call that gives one finite number and raises no floating-point flag on the way.
+    """
+
+    kernel: Callable[..., Any]
+    arguments: tuple[Any, ...]
+    factor: float
+    shift: float
+    unit: Unit | None
+    shown_unit: str | None
 
 
 def call_cells(function: WorksheetFunction, arguments: Sequence[Any]) -> CellResult:
@@ -58,11 +71,14 @@ def call_cells(function: WorksheetFunction, arguments: Sequence[Any]) -> CellRes
     CellResult
         Never raises for bad arguments: the grid then holds one error value and `reasons` says why.
     """
-    key = tuple(arguments) if all(type(a) is str for a in arguments) else None
-    known = _memo.setdefault(function.name, {})
-    if key is not None and key in known:
-        plan, scaled, show_unit = known[key]
-        return _layout(function, run_kernel(function, plan, scaled), plan, (1, 1), show_unit)
+    try:  # only calls whose arguments are all text are kept, so that no other can be found
+        reading = function.readings.get(tuple(arguments))
+    except TypeError:  # a list of rows is no key
+        reading = None
+    if reading is not None:
+        value = reading.kernel(*reading.arguments).item() * reading.factor - reading.shift
+        shown = reading.shown_unit
+        return CellResult([[value]] if shown is None else [[value, shown]], (), reading.unit)
     try:
         bound, wanted = bind_all(function, arguments)
         plan = plan_for(function, tuple(b.unit for b in bound), wanted)
@@ -70,29 +86,31 @@ def call_cells(function: WorksheetFunction, arguments: Sequence[Any]) -> CellRes
         outcome = evaluate(function, plan, values)
     except CallError as error:
         return CellResult([[error.value]], error.reasons)
-    if key is not None and shape == (1, 1) and not outcome.failures:
-        _remember(function, known, key, plan, values, wanted is None)
+    if shape == (1, 1) and not outcome.failures and all(type(a) is str for a in arguments):
+        _remember(function, tuple(arguments), plan, values, wanted is None)
     result = _layout(function, outcome, plan, shape, wanted is None)
     return _with_blanks(result, bound, shape, wanted is None)
 
 
 def _remember(
-    function: WorksheetFunction,
-    known: dict[tuple[Any, ...], tuple[Plan, list[Any], bool]],
-    key: tuple[Any, ...],
-    plan: Plan,
-    values: Sequence[Any],
-    show_unit: bool,
+    function: WorksheetFunction, key: tuple[str, ...], plan: Plan, values: Sequence[Any], show_unit: bool
 ) -> None:
     """Keep the reading of a call whose arguments are all text (not its result) for the next time it is met."""
-    scaled = list(values)
-    for index, factor in enumerate(plan.factors):
-        if scaled[index] is not None and isinstance(scaled[index], np.ndarray):
-            scaled[index] = scaled[index] * (1.0 if factor is None else factor) + plan.offsets[index]
-    if within_limits(function, scaled):
-        if len(known) >= MEMO_SIZE:
-            known.clear()
-        known[key] = (plan, scaled, show_unit)
+    if function.result.quantity is None or function.result.extra_axes:
+        return
+    scaled = tuple(scaled_values(plan, values))
+    try:
+        with np.errstate(all="raise"):
+            raw = function.kernel(*scaled)
+    except FloatingPointError:
+        return
+    if not isinstance(raw, np.ndarray | np.float64) or raw.size != 1:
+        return
+    if len(function.readings) >= MEMO_SIZE:
+        function.readings.clear()
+    unit = plan.result_unit
+    shown = unit.text if show_unit and unit is not None else None
+    function.readings[key] = Reading(function.kernel, scaled, plan.result_factor, shift(plan), unit, shown)
 
 
 def bind_all(
@@ -225,6 +243,8 @@ def _layout(
         value = values.reshape(-1)[0] if values.dtype == object else values.item()
         return CellResult([[value, unit.text]] if show_unit and unit is not None else [[value]], (), unit)
     count = shape[0] * shape[1]
+    if not extra and not outcome.failures and not show_unit and values.size == count:
+        return CellResult(values.reshape(shape).tolist(), (), unit)
     flat = np.broadcast_to(values, (count, *values.shape[values.ndim - extra :])).astype(object)
     for failure in outcome.failures:
         flat[np.broadcast_to(failure.lanes, (count,))] = failure.value

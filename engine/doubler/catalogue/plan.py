@@ -1,4 +1,4 @@
-"""Factors resolved once for a combination of units, and the numbers put through a kernel with them.
+"""Factors resolved once for a combination of units.
 
 Everything here is about one call shape: a function, the unit of each argument, and the unit wanted of the result. The
 plan of such a shape is kept, so that a warm call costs the factors and the kernel.
@@ -7,21 +7,14 @@ plan of such a shape is kept, so that a warm call costs the factors and the kern
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
-from typing import Any
 
-import numpy as np
-
-from doubler.catalogue.annotations import Alike, Array, Quantity
-from doubler.catalogue.limits import Refusal
+from doubler.catalogue.annotations import Alike, Quantity
 from doubler.catalogue.record import Argument, WorksheetFunction
 from doubler.errors import ErrorValue, InputError
 from doubler.units import ConsistentSet, Dimension, Unit, consistent_set, kind, parse_unit
 from doubler.units import factor as unit_factor
-
-BLOCK = 8192
-"""Lanes evaluated at a time, so that the live arrays stay in cache."""
 
 
 class CallError(InputError):
@@ -40,33 +33,6 @@ class CallError(InputError):
 
 
 @dataclass(frozen=True, slots=True)
-class Failure:
-    """Lanes without a result, and why.
-
-    Attributes
-    ----------
-    lanes
-        True where there is no result; one element stands for all.
-    value
-        The error value of those lanes.
-    reason
-        One sentence, with the first offending value.
-    """
-
-    lanes: Any
-    value: ErrorValue
-    reason: str
-
-
-@dataclass(frozen=True, slots=True)
-class Outcome:
-    """What a kernel gave: values in the result's unit (NaN where failed), and the failures."""
-
-    values: Any
-    failures: tuple[Failure, ...] = ()
-
-
-@dataclass(frozen=True, slots=True)
 class Plan:
     """Factors into the kernel's consistent units and out of them.
 
@@ -80,6 +46,8 @@ class Plan:
         Multiply the kernel's result, after taking off the offset.
     result_unit
         Unit of the result; None where it is a pure number or text.
+    system
+        ``"metric"`` or ``"us"``: the set in which the kernel computes.
     """
 
     factors: tuple[float | None, ...]
@@ -88,6 +56,7 @@ class Plan:
     result_factor: float
     result_offset: float
     result_unit: Unit | None
+    system: str = "metric"
 
 
 @lru_cache(maxsize=1024)
@@ -96,6 +65,42 @@ def _internal_unit(dimension: Dimension, system: str) -> Unit:
     chosen = consistent_set("lbf-in" if system == "us" else "N-mm")
     assert chosen is not None
     return chosen.unit_for(dimension)
+
+
+_FORCES = {"metric": ("mm", "K", ("N", "kN", "MN")), "us": ("in", "Δ°F", ("lbf", "kip"))}
+
+
+@lru_cache(maxsize=8)
+def _set_with(force: str, length: str, temperature: str) -> ConsistentSet:
+    return ConsistentSet(f"{force}-{length}", length, force, temperature)
+
+
+@lru_cache(maxsize=1024)
+def folded(plan: Plan) -> Plan:
+    """Return a plan with the same result and as few factors as a choice of the force unit allows.
+
+    A formula holds in every consistent set: with forces in kN and lengths in mm a stress comes out in kN/mm², and one
+    factor on the result replaces those on the arguments. On long arrays each factor left out is a pass saved; the last
+    digit may differ.
+    """
+    given = [unit for unit, factor in zip(plan.units, plan.factors, strict=True) if unit is not None and factor]
+    if not given:
+        return plan
+    length, temperature, forces = _FORCES["us" if plan.system == "us" else "metric"]
+    best = plan
+    for force in forces[1:]:
+        chosen = _set_with(force, length, temperature)
+        factors = tuple(_factor_in(unit, chosen) for unit in plan.units)
+        if sum(f is not None for f in factors) < sum(f is not None for f in best.factors):
+            result = plan.result_unit
+            scale = 1.0 if result is None else unit_factor(chosen.unit_for(result.dimension), result)
+            best = replace(plan, factors=factors, result_factor=scale)
+    return best
+
+
+def _factor_in(unit: Unit | None, chosen: ConsistentSet) -> float | None:
+    factor = 1.0 if unit is None else unit_factor(unit, chosen.unit_for(unit.dimension))
+    return None if factor == 1.0 else factor
 
 
 def resolve_dimension(quantity: Quantity | Alike, letters: dict[str, Dimension]) -> Dimension | None:
@@ -159,7 +164,7 @@ def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result
         raise CallError(function.name, reasons)
     scale = 1.0 if result_unit is None else unit_factor(_internal_unit(result_unit.dimension, system), result_unit)
     offset = 0.0 if result_unit is None or _is_change(function.result.quantity) else result_unit.offset
-    return Plan(tuple(factors), tuple(offsets), units, scale, offset, result_unit)
+    return Plan(tuple(factors), tuple(offsets), units, scale, offset, result_unit, system)
 
 
 def _is_change(quantity: Quantity | Alike | None) -> bool:
@@ -211,161 +216,3 @@ def _unit_in_set(chosen: ConsistentSet, quantity: Quantity | Alike, dimension: D
     if dimension is None or (isinstance(quantity, Quantity) and quantity.kind == "ratio"):
         return None
     return chosen.unit_for(dimension)
-
-
-def evaluate(function: WorksheetFunction, plan: Plan, values: Sequence[Any]) -> Outcome:
-    """Put values through the kernel: scale, check the limits, compute, scale back.
-
-    Parameters
-    ----------
-    function : WorksheetFunction
-    plan : Plan
-    values : sequence
-        One an argument: a float64 array of at least one axis (lanes first; a column argument has its entries on the
-        last axis), text (or a list of texts) for a text argument, None where omitted.
-
-    Returns
-    -------
-    Outcome
-        Values in the result's unit. A lane outside the limits has NaN and its reason.
-    """
-    lanes = _long_lanes(function, values)
-    if lanes:
-        out = np.empty(lanes)
-        failures: list[Failure] = []
-        for start in range(0, lanes, BLOCK):
-            piece = slice(start, start + BLOCK)
-            part = [v[piece] if isinstance(v, np.ndarray) and v.size > 1 else v for v in values]
-            outcome = _evaluate_block(function, plan, part, out[piece])
-            for failure in outcome.failures:
-                where = np.zeros(lanes, dtype=bool)
-                where[piece] = failure.lanes
-                failures.append(Failure(where, failure.value, failure.reason))
-        return Outcome(out, tuple(failures))
-    return _evaluate_block(function, plan, values, None)
-
-
-def _long_lanes(function: WorksheetFunction, values: Sequence[Any]) -> int:
-    """Return how many lanes there are where evaluating in blocks pays and is possible, else 0."""
-    if function.result.extra_axes or function.result.quantity is None:
-        return 0
-    longest = 0
-    for argument, value in zip(function.arguments, values, strict=True):
-        if isinstance(value, np.ndarray) and value.size > 1:
-            if value.ndim != 1 or argument.entries or longest not in (0, value.size):
-                return 0
-            longest = value.size
-    return longest if longest > 2 * BLOCK else 0
-
-
-def _evaluate_block(function: WorksheetFunction, plan: Plan, values: Sequence[Any], out: Array | None) -> Outcome:
-    scaled = list(values)
-    for index, factor in enumerate(plan.factors):
-        if factor is not None and scaled[index] is not None:
-            scaled[index] = scaled[index] * factor
-        if plan.offsets[index] and scaled[index] is not None:
-            scaled[index] = scaled[index] + plan.offsets[index]
-    if not within_limits(function, scaled):
-        return _evaluate_valid_lanes(function, plan, scaled, values)
-    return run_kernel(function, plan, scaled, out)
-
-
-def within_limits(function: WorksheetFunction, scaled: Sequence[Any]) -> bool:
-    """Return whether every argument, in the kernel's units, meets its limit and every condition holds."""
-    arguments = function.arguments
-    for argument, value in zip(arguments, scaled, strict=True):
-        if argument.limit is not None and value is not None and not argument.limit.all_within(value):
-            return False
-    if function.conditions:
-        named = {argument.name: value for argument, value in zip(arguments, scaled, strict=True)}
-        return all(bool(np.all(rule.check(named))) for rule in function.conditions)
-    return True
-
-
-def run_kernel(function: WorksheetFunction, plan: Plan, scaled: Sequence[Any], out: Array | None = None) -> Outcome:
-    """Compute with arguments that meet their limits, and scale the result."""
-    try:
-        with np.errstate(all="ignore"):
-            raw = function.kernel(*scaled)
-    except Refusal as refusal:
-        raise CallError(function.name, [str(refusal)]) from refusal
-    if function.result.quantity is None:
-        return Outcome(np.asarray(raw, dtype=object))
-    values = np.multiply(raw, plan.result_factor, out=out) if plan.result_factor != 1.0 or out is not None else raw
-    values = np.asarray(values, dtype=np.float64)
-    if plan.result_offset:
-        values = values - plan.result_offset / (plan.result_unit.scale if plan.result_unit else 1.0)
-    finite = np.isfinite(values)
-    if finite.all():
-        return Outcome(values)
-    for _ in range(function.result.extra_axes):
-        finite = finite.all(axis=-1)
-    lost = Failure(~finite, ErrorValue.NUM, "there is no finite result for these values")
-    return Outcome(np.where(np.isfinite(values), values, np.nan), (lost,))
-
-
-def _evaluate_valid_lanes(
-    function: WorksheetFunction, plan: Plan, scaled: Sequence[Any], given: Sequence[Any]
-) -> Outcome:
-    """Evaluate the lanes that meet every limit; the others get NaN and a reason."""
-    arguments = function.arguments
-    shape = np.broadcast_shapes(
-        *(
-            value.shape[:-1] if argument.entries else value.shape
-            for argument, value in zip(arguments, scaled, strict=True)
-            if isinstance(value, np.ndarray)
-        )
-    )
-    good = np.ones(shape, dtype=bool)
-    failures: list[Failure] = []
-
-    def fail(where: Any, value: ErrorValue, reason: str) -> None:
-        nonlocal good
-        fresh = good & np.broadcast_to(where, shape)
-        if fresh.any():
-            failures.append(Failure(fresh, value, reason))
-            good = good & ~fresh
-
-    for index, argument in enumerate(arguments):
-        value = scaled[index]
-        if argument.limit is None or value is None:
-            continue
-        outside = ~argument.limit.within(value)
-        if outside.any():
-            shown = f"{np.broadcast_to(given[index], outside.shape)[outside][0]:.6g}"
-            unit = plan.units[index]
-            shown += f" {unit.text}" if unit is not None and unit.text not in ("", "1") else ""
-            where = outside.any(axis=-1) if argument.entries else outside
-            fail(where, ErrorValue.NUM, f"{argument.name} {argument.limit.words}; it is {shown}")
-    named = {argument.name: value for argument, value in zip(arguments, scaled, strict=True)}
-    for rule in function.conditions:
-        with np.errstate(all="ignore"):
-            fail(~np.asarray(rule.check(named), dtype=bool), ErrorValue.NUM, rule.words)
-
-    blank = np.full(shape + _result_shape(function), np.nan)
-    if function.result.quantity is None:
-        blank = np.full(shape, "", dtype=object)
-    if good.any():
-        kept = [
-            _lanes_of(value, good, shape, argument.entries) for argument, value in zip(arguments, scaled, strict=True)
-        ]
-        outcome = run_kernel(function, plan, kept)
-        blank[good] = outcome.values
-        for failure in outcome.failures:
-            where = np.zeros(shape, dtype=bool)
-            where[good] = failure.lanes
-            failures.append(Failure(where, failure.value, failure.reason))
-    return Outcome(blank, tuple(failures))
-
-
-def _result_shape(function: WorksheetFunction) -> tuple[int, ...]:
-    if function.result.names:
-        return (len(function.result.names),)
-    return (function.result.size, function.result.size) if function.result.size else ()
-
-
-def _lanes_of(value: Any, good: Any, shape: tuple[int, ...], entries: bool) -> Any:
-    if not isinstance(value, np.ndarray):
-        return value
-    whole = (*shape, value.shape[-1]) if entries else shape
-    return np.broadcast_to(value, whole)[good]

@@ -9,7 +9,8 @@ from typing import Any
 import numpy as np
 
 from doubler.catalogue.annotations import Alike, Quantity
-from doubler.catalogue.plan import CallError, Outcome, Plan, evaluate, plan_for
+from doubler.catalogue.evaluation import Outcome, evaluate
+from doubler.catalogue.plan import CallError, Plan, plan_for
 from doubler.catalogue.record import Argument, WorksheetFunction
 from doubler.errors import InputError
 from doubler.units import Unit, from_pint, is_pint_quantity, kind, to_pint

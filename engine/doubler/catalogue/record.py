@@ -6,6 +6,7 @@ page and the table of check values.
 
 from __future__ import annotations
 
+import importlib
 import inspect
 import types
 import typing
@@ -122,6 +123,8 @@ class WorksheetFunction:
         Read from the kernel's signature and docstring.
     conditions
         Limits between arguments.
+    readings
+        How calls whose arguments are all text were read, so that a sheet's next recalculation need not read them again.
     """
 
     def __init__(
@@ -139,6 +142,10 @@ class WorksheetFunction:
         self.__doc__ = kernel.__doc__
         self.__module__ = kernel.__module__
         self.__wrapped__ = kernel
+        self.readings: dict[tuple[str, ...], Any] = {}
+
+    def __reduce__(self) -> tuple[Any, ...]:
+        return _restored, (self.__module__, self.name)
 
     @property
     def category(self) -> str:
@@ -224,6 +231,13 @@ class WorksheetFunction:
 
     def __repr__(self) -> str:
         return f"<worksheet function {self.name}>"
+
+
+def _restored(module: str, name: str) -> WorksheetFunction:
+    """Find a function that was pickled: it is declared anew where it is not yet, never copied."""
+    if name not in _REGISTERED:
+        importlib.import_module(module)
+    return _REGISTERED[name]
 
 
 _REGISTERED: dict[str, WorksheetFunction] = {}

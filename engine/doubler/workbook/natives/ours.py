@@ -13,8 +13,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from doubler.catalogue.cells import CellResult, bind_all, call_cells
+from doubler.catalogue.evaluation import Outcome, evaluate
 from doubler.catalogue.forms import Bound
-from doubler.catalogue.plan import CallError, Outcome, evaluate, plan_for
+from doubler.catalogue.plan import CallError, plan_for
 from doubler.catalogue.record import WorksheetFunction, lookup
 from doubler.errors import ErrorValue
 from doubler.workbook.lanes import (

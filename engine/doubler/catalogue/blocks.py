@@ -1,0 +1,112 @@
+"""Long arrays worked through in blocks that stay in cache, shared over the processor's cores.
+
+NumPy lets go of the interpreter's lock inside its loops, so that plain threads run side by side. A kernel is a pure
+function of its arrays; blocks are independent of one another: the result is the same however many threads there are.
+"""
+
+from __future__ import annotations
+
+import itertools
+import os
+import threading
+from collections.abc import Callable
+from concurrent.futures import Future, ThreadPoolExecutor
+from typing import TypeVar
+
+BLOCK = 32768
+"""Lanes evaluated at a time: large against the cost of a NumPy call, small enough for a core's own cache."""
+
+SHARED = 262144
+"""From how many lanes on the blocks are shared over threads; below, waking a thread costs more than it brings."""
+
+SHARED_BLOCK = 131072
+"""Lanes at a time where threads share the work: they pass the interpreter's lock on between blocks' steps, and each
+passing costs about as much as 10,000 lanes of a step."""
+
+MOST_THREADS = 4
+"""More threads than these wait for the memory, not for one another."""
+
+Found = TypeVar("Found")
+_lock = threading.Lock()
+_pool: ThreadPoolExecutor | None = None
+
+
+def cores() -> int:
+    """Return how many cores this process may use."""
+    if hasattr(os, "sched_getaffinity"):
+        return len(os.sched_getaffinity(0))
+    return os.cpu_count() or 1
+
+
+def threads_for(lanes: int) -> int:
+    """Return over how many threads an array of that length is shared."""
+    return min(cores(), MOST_THREADS) if lanes >= SHARED else 1
+
+
+def size_for(lanes: int) -> int:
+    """Return how many lanes to evaluate at a time."""
+    return BLOCK if threads_for(lanes) == 1 else SHARED_BLOCK
+
+
+def in_shares(lanes: int, work: Callable[[int, int], list[Found]]) -> list[Found]:
+    """Call ``work(start, stop)`` so that every lane is met once, and return what it found, in order of the lanes.
+
+    Parameters
+    ----------
+    lanes : int
+    work : callable
+        Evaluates the lanes from `start` to before `stop`, and returns a list; called from several threads at once.
+
+    Returns
+    -------
+    list
+
+    Raises
+    ------
+    Exception
+        The first that `work` raised, after all shares have ended.
+    """
+    count = threads_for(lanes)
+    if count < 2:
+        return work(0, lanes)
+    ends = [lanes * k // count for k in range(count + 1)]
+    waiting: list[Future[list[Found]] | None] = [
+        _submitted(work, start, stop) for start, stop in itertools.pairwise(ends[1:])
+    ]
+    found: list[Found] = []
+    fault: BaseException | None = None
+    try:
+        found += work(ends[0], ends[1])
+    except BaseException as error:  # raised again below, when no thread writes any more
+        fault = error
+    for k, future in enumerate(waiting, start=1):
+        try:
+            found += work(ends[k], ends[k + 1]) if future is None else future.result()
+        except BaseException as error:
+            fault = fault or error
+    if fault is not None:
+        raise fault
+    return found
+
+
+def _submitted(work: Callable[[int, int], list[Found]], start: int, stop: int) -> Future[list[Found]] | None:
+    """Hand a share to the pool; None where no thread can be had (the interpreter is ending)."""
+    global _pool  # noqa: PLW0603  # one pool for the process, made when first needed
+    with _lock:
+        if _pool is None:
+            _pool = ThreadPoolExecutor(MOST_THREADS, thread_name_prefix="doubler-block")
+        pool = _pool
+    try:
+        return pool.submit(work, start, stop)
+    except RuntimeError:
+        return None
+
+
+def _forget_pool() -> None:
+    """Begin without threads in a forked process: those of the parent did not come along."""
+    global _pool, _lock
+    _pool, _lock = None, threading.Lock()
+
+
+if hasattr(os, "register_at_fork"):
+    os.register_at_fork(after_in_child=_forget_pool)
