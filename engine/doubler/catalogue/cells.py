@@ -243,8 +243,9 @@ def _layout(
         value = values.reshape(-1)[0] if values.dtype == object else values.item()
         return CellResult([[value, unit.text]] if show_unit and unit is not None else [[value]], (), unit)
     count = shape[0] * shape[1]
-    if not extra and not outcome.failures and not show_unit and values.size == count:
-        return CellResult(values.reshape(shape).tolist(), (), unit)
+    if not extra and not outcome.failures and values.size == count:
+        grid = values.reshape(shape).tolist()
+        return CellResult(_add_units(grid, unit.text, shape) if show_unit and unit is not None else grid, (), unit)
     flat = np.broadcast_to(values, (count, *values.shape[values.ndim - extra :])).astype(object)
     for failure in outcome.failures:
         flat[np.broadcast_to(failure.lanes, (count,))] = failure.value

@@ -152,9 +152,14 @@ def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result
     factors: list[float | None] = []
     offsets: list[float] = []
     for argument, unit in zip(function.arguments, units, strict=True):
-        factor = 1.0 if unit is None else unit_factor(unit, _internal_unit(unit.dimension, system))
+        if unit is None:
+            factors.append(None)
+            offsets.append(0.0)
+            continue
+        internal = _internal_unit(unit.dimension, system)
+        factor = unit_factor(unit, internal)
         factors.append(None if factor == 1.0 else factor)
-        offsets.append(0.0 if unit is None or _is_change(argument.quantity) else unit.offset)
+        offsets.append(0.0 if _is_change(argument.quantity) else unit.offset / internal.scale)
     try:
         result_unit = _result_unit(function, result, system, letters, first)
     except InputError as error:
