@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Iterator
 from typing import Any
 
 import numpy as np
@@ -16,11 +17,19 @@ _SUM_ALTERNATING_SQUARES = 0.9159655941772190  # Catalan's constant
 _TERMS = (1, 3, 5, 7, 9, 11)  # the rest falls as exp(−nπ): below 1e-17 after the sixth
 
 
+def _odd_powers(first: Any, odd: tuple[int, ...]) -> Iterator[tuple[int, Any]]:
+    """Yield n and first**n for n = 1, 3, 5 …, each from the one before."""
+    square, power = first * first, first
+    for n in odd:
+        yield n, power
+        power = power * square
+
+
 def torsion_constant(width: Any, thickness: Any) -> Any:
     """Return the torsion constant of a rectangle; which side is longer does not matter."""
     longer, shorter = np.maximum(width, thickness), np.minimum(width, thickness)
     ratio = longer / shorter
-    tails = sum((2.0 / n**5) / (np.exp(n * np.pi * ratio) + 1.0) for n in _TERMS)
+    tails = sum((2.0 / n**5) * small / (1.0 + small) for n, small in _odd_powers(np.exp(-np.pi * ratio), _TERMS))
     series = (64.0 / np.pi**5) * (_SUM_INVERSE_FIFTHS - tails) / ratio
     return longer * shorter**3 * (1.0 / 3.0 - series)
 
@@ -67,7 +76,7 @@ def torsion_rectangle(torque: Moment, width: Length, thickness: Length) -> Stres
     longer, shorter = np.maximum(width, thickness), np.minimum(width, thickness)
     ratio = longer / shorter
     # 1/cosh written with a falling exponential, which cannot overflow however thin the bar.
-    falling = [(n, np.exp(-0.5 * n * np.pi * ratio)) for n in (*_TERMS, 13, 15, 17, 19, 21, 23)]
+    falling = _odd_powers(np.exp(-0.5 * np.pi * ratio), (*_TERMS, 13, 15, 17, 19, 21, 23))
     series = sum((2.0 / n**2) * small / (1.0 + small * small) for n, small in falling)
     return torque * shorter / torsion_constant(width, thickness) * (1.0 - (8.0 / np.pi**2) * series)
 
@@ -110,7 +119,8 @@ def torsion_rectangle_side(torque: Moment, width: Length, thickness: Length) -> 
     """
     longer, shorter = np.maximum(width, thickness), np.minimum(width, thickness)
     ratio = longer / shorter
-    tails = sum((2.0 * (2 - n % 4) / n**2) / (np.exp(n * np.pi * ratio) + 1.0) for n in _TERMS)
+    powers = _odd_powers(np.exp(-np.pi * ratio), _TERMS)
+    tails = sum((2.0 * (2 - n % 4) / n**2) * small / (1.0 + small) for n, small in powers)
     series = _SUM_ALTERNATING_SQUARES - tails
     return torque * shorter / torsion_constant(width, thickness) * (8.0 / np.pi**2) * series
 
