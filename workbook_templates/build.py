@@ -12,7 +12,9 @@ from pathlib import Path
 
 from openpyxl import Workbook
 
+import constants
 import demo_cases
+import shaft
 import strap
 from doubler import mechanics
 from doubler.errors import ErrorValue
@@ -24,7 +26,11 @@ from doubler.workbook.writer import write_filled
 
 HERE = Path(__file__).parent
 STAMP = (2024, 1, 1, 0, 0, 0)
-TEMPLATES = {"tension_strap.xlsx": strap.build}
+TEMPLATES = {
+    "tension_strap.xlsx": strap.build,
+    "shaft.xlsx": shaft.build,
+    "elastic_constants.xlsx": constants.build,
+}
 
 
 def save_fixed(book: Workbook, target: Path) -> None:

@@ -10,6 +10,7 @@ validations. Formulas are written with the names of other rows in braces:
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 
 from openpyxl import Workbook
@@ -21,12 +22,15 @@ from openpyxl.worksheet.properties import PageSetupProperties
 
 PINE, SAND, SAGE, MIST, CLAY, INK, SLATE = "24413F", "F3E9D6", "DCE7DF", "F4F6F4", "EBC0A9", "1F2A2A", "4E6264"
 FACE = "Arial"
-WIDTHS = {"A": 11, "B": 33, "C": 12.5, "D": 10, "E": 12.5, "F": 10, "G": 11, "H": 40}
+WIDTHS = {"A": 11, "B": 33, "C": 15, "D": 10, "E": 15, "F": 10, "G": 11, "H": 42}
 HEAD = ("Symbol", "Description", "Value", "Unit", "Native value", "Unit", "Difference [-]", "In words; source")
 CAUTION = (
     "Caution: these checks aid licensed engineering judgement and local codes, and never replace them. Whoever signs "
     "answers for the loads, the allowables, the factors and the fitness of each formula for the part."
 )
+
+
+OURS = re.compile(r"(?:STRESS|SECTION|STIFFNESS|MARGIN|MODULUS)_[A-Z_0-9]+\(")
 
 
 @dataclass(frozen=True)
@@ -237,21 +241,24 @@ class CalcSheet:
 
     def _result(self, item: Result) -> None:
         row = self.row
-        mine = item.native is not None
+        mine = OURS.search(item.ours) is not None
         text = item.ours.format_map({name: _Pair(number) for name, number in self.rows.items()})
         self._put(f"C{row}", text, _font(10, bold=item.margin, italic=not mine), side="right", indent=1)
         self.sheet[f"C{row}"].number_format = item.form
-        if not mine:
-            self.sheet[f"C{row}"].fill = _fill(MIST)
+        self.sheet[f"C{row}"].fill = _fill(SAGE if mine else MIST)
+        if item.native is None:
             return
-        self.sheet[f"C{row}"].fill = _fill(SAGE)
         chain = {name: name if name in self.given else f"E{number}" for name, number in self.rows.items()}
         self._put(f"E{row}", item.native.format_map(chain), _font(10, SLATE, italic=True), side="right", indent=1)
         self.sheet[f"E{row}"].number_format = item.form
         self._put(f"F{row}", item.unit, _font(9, SLATE), indent=1)
         if item.difference == "none":
             return
-        gap = f"=ROUND(E{row}-C{row},12)" if item.difference == "absolute" else f"=ROUND(E{row}/C{row}-1,12)"
+        gap = (
+            f"=ROUND(E{row}-C{row},12)"
+            if item.difference == "absolute"
+            else f"=IF(E{row}=C{row},0,ROUND(E{row}/C{row}-1,12))"
+        )
         self._put(f"G{row}", gap, _font(9, SLATE), side="right", indent=1)
         self.sheet[f"G{row}"].number_format = "0.0E+00;-0.0E+00;0"
 

@@ -81,7 +81,7 @@ _INPUTS: list[Row] = [
         205.0,
         "MPa",
         POSITIVE,
-        "F_ty ÷ √3, rounded up to 5 MPa",
+        "F_ty ÷ √3, rounded",
         "0.0",
     ),
     Given(
