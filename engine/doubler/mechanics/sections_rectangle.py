@@ -376,7 +376,7 @@ def torsion_constant(height: Length, width: Length) -> TorsionConstant:
     Examples
     --------
     >>> cell('=SECTION_RECTANGLE_TORSION_CONSTANT("10 mm", "10 mm", "mm^4")')
-    1405.770719
+    1405.77015
     """
     long, short = np.maximum(height, width), np.minimum(height, width)
     ratio = long / short

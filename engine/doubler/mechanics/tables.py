@@ -19,6 +19,16 @@ XColumn: Any = column(X)
 YColumn: Any = column(Y)
 ZColumn: Any = column(Z)
 
+_SLACK = 1e-12
+"""What rounding may add to a value at the table's end, such as 212 °F in a table that ends at 100 °C."""
+
+
+def _within(column: Values, value: Values) -> Values:
+    """Return whether a value lies in the range of a column, rounding apart."""
+    low, high = np.min(column, axis=-1), np.max(column, axis=-1)
+    slack = _SLACK * np.maximum(np.abs(low), np.abs(high))
+    return (value >= low - slack) & (value <= high + slack)
+
 
 _RISING = condition(
     "the table's first column must rise or fall throughout, without a value twice",
@@ -26,7 +36,7 @@ _RISING = condition(
 )
 _INSIDE = condition(
     "the value lies outside the table, and there is no extrapolation; extend the table from its source",
-    lambda value, table_x: (value >= np.min(table_x, axis=-1)) & (value <= np.max(table_x, axis=-1)),
+    lambda value, table_x: _within(table_x, value),
 )
 
 
@@ -245,16 +255,12 @@ def interpolate(value: X, table_x: XColumn, table_y: YColumn) -> Y:
         condition(
             "the first argument lies outside the table, and there is no extrapolation; extend the "
             "table from its source",
-            lambda first, table_first: (
-                (first >= np.min(table_first, axis=-1)) & (first <= np.max(table_first, axis=-1))
-            ),
+            lambda first, table_first: _within(table_first, first),
         ),
         condition(
             "the second argument lies outside the table, and there is no extrapolation; extend the "
             "table from its source",
-            lambda second, table_second: (
-                (second >= np.min(table_second, axis=-1)) & (second <= np.max(table_second, axis=-1))
-            ),
+            lambda second, table_second: _within(table_second, second),
         ),
     ),
 )
