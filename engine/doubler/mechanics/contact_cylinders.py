@@ -195,7 +195,7 @@ def cylinders_shear(contact_pressure: Pressure, poissons_ratio: Ratio) -> Stress
     square = 2.0 * (1.0 - poissons_ratio) / (1.0 + 2.0 * poissons_ratio + np.sqrt(1.0 + 8.0 * poissons_ratio))
     root = np.sqrt(square)
     along = root / (1.0 + square) - poissons_ratio * root
-    return np.maximum(0.3002831060, along) * contact_pressure
+    return np.maximum(0.3002831060007776, along) * contact_pressure
 
 
 @worksheet_function("STRESS_HERTZ_SLIDING_TENSION", valid={"contact_pressure": NOT_NEGATIVE, "friction": NOT_NEGATIVE})
