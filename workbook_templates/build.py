@@ -14,6 +14,7 @@ from openpyxl import Workbook
 
 import constants
 import demo_cases
+import demo_colleague
 import shaft
 import strap
 from doubler import mechanics
@@ -81,6 +82,7 @@ def build(folder: Path) -> None:
     """Build all templates and the demo's data into a folder."""
     (folder / "demo").mkdir(exist_ok=True)
     demo_cases.build(folder / "demo")
+    _colleague(folder / "demo")
     for name, make in TEMPLATES.items():
         raw = folder / f".raw-{name}"
         save_fixed(make().book, raw)
@@ -97,6 +99,22 @@ def build(folder: Path) -> None:
         ]
         if errors:
             raise SystemExit(f"{name}: shipped with error values:\n" + "\n".join(errors))
+
+
+def _colleague(folder: Path) -> None:
+    """Build the colleague's workbook, one stored value of it stale on purpose, and the list of its faults."""
+    raw, target = folder / ".raw-colleague.xlsx", folder / demo_colleague.NAME
+    save_fixed(demo_colleague.build(), raw)
+    sheet, row, column = demo_colleague.STALE_AT
+    try:
+        store_values(raw, target)
+        right = read_workbook(target).sheet(sheet).cells[row, column].value
+        missing = store_values(raw, target, keep={demo_colleague.STALE_AT: demo_colleague.STALE_SHARE * right})
+    finally:
+        raw.unlink()
+    if missing:
+        raise SystemExit(f"{target.name}: not evaluated:\n" + "\n".join(missing))
+    write_file(folder / "colleague_faults.yaml", [demo_colleague.faults_text().encode("utf-8")])
 
 
 if __name__ == "__main__":

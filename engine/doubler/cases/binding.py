@@ -162,6 +162,10 @@ def bind_cases(table: CaseTable, template: Template) -> BoundCases:
     taken: dict[tuple[str, Address], Heading] = {}
     for index, heading in enumerate(table.headings):
         if index == table.case_column:
+            title = _case_title(template)
+            if title is not None:
+                taken[title.sheet, title.address] = heading
+                columns.append(_Bound(index, heading, title, "text"))
             continue
         where = f"{table.path}, column {heading.text!r}"
         port = template.find_input(heading.name, where)
@@ -180,6 +184,15 @@ def bind_cases(table: CaseTable, template: Template) -> BoundCases:
             f"{table.path} has no column for {names}, and the template's cell is empty; add the column or fill the cell"
         )
     return BoundCases(table, template, columns)
+
+
+def _case_title(template: Template) -> Port | None:
+    """Return the input named ``case`` where it holds text or nothing: the sheet's own line for the case's name."""
+    port = template.inputs.get("case")
+    if port is None or port.unit is not None:
+        return None
+    cell = template.cell(port)
+    return port if cell is None or cell.value is None or isinstance(cell.value, str) else None
 
 
 def _is_blank(template: Template, port: Port) -> bool:
