@@ -105,6 +105,16 @@ def test_properties_of_a_tube_agree_with_one_another(diameter, share) -> None:
     assert 0.5 * area < round_.shear_area(*sizes) <= 6.0 / 7.0 * area * (1.0 + 1e-12)
 
 
+@pytest.mark.parametrize("bore", [0.0, 0.2, 0.5, 0.8, 0.99])
+def test_the_shear_area_of_a_tube_is_that_of_the_flexure_function_of_an_annulus(bore: float) -> None:
+    """Cowper's integral at a Poisson's ratio of zero, with the harmonic function that frees both walls."""
+    first, second = -0.75 * (1.0 + bore**2), -0.75 * bore**2
+    inertia, area = np.pi / 4.0 * (1.0 - bore**4), np.pi * (1.0 - bore**2)
+    integral = np.pi * (first * (1.0 - bore**4) / 4.0 + second * (1.0 - bore**2) / 2.0 + (1.0 - bore**6) / 24.0)
+    coefficient = 2.0 * inertia / (-area / inertia * integral)
+    assert round_.shear_area(2.0, 2.0 * bore) == pytest.approx(coefficient * area, rel=1e-9)
+
+
 @given(height=SIZE, width=SIZE)
 @FEW
 def test_the_torsion_constant_does_not_depend_on_which_side_is_named_first(height, width) -> None:
