@@ -57,10 +57,10 @@ def known_units_of(dimension: Dimension) -> list[Unit]:
 
 
 _SHOWN = (
-    "MPa", "GPa", "kPa", "Pa", "psi", "ksi", "Msi", "N", "kN", "MN", "lbf", "kip", "mm", "m", "cm", "in", "ft", "µm", "N·m", "kN·m",
-    "N·mm", "kN·mm", "lbf·in", "lbf·ft", "kip·in", "kip·ft", "mm^2", "cm^2", "m^2", "in^2", "ft^2", "mm^3", "cm^3", "m^3", "in^3",
-    "mm^4", "cm^4", "m^4", "in^4", "N/mm", "kN/m", "N/m", "kN/mm", "lbf/in", "lbf/ft", "kip/in", "kg", "t", "lb", "s", "K", "rad", "deg",
-    "1/K", "kg/m^3", "lb/in^3", "mm/mm", "µε", "%",
+    "MPa", "GPa", "kPa", "Pa", "psi", "ksi", "Msi", "N", "kN", "MN", "lbf", "kip", "mm", "m", "cm", "in", "ft",
+    "µm", "N·m", "kN·m", "N·mm", "kN·mm", "lbf·in", "lbf·ft", "kip·in", "kip·ft", "mm^2", "cm^2", "m^2", "in^2",
+    "ft^2", "mm^3", "cm^3", "m^3", "in^3", "mm^4", "cm^4", "m^4", "in^4", "N/mm", "kN/m", "N/m", "kN/mm", "lbf/in",
+    "lbf/ft", "kip/in", "kg", "t", "lb", "s", "K", "rad", "deg", "1/K", "kg/m^3", "lb/in^3", "mm/mm", "µε", "%",
 )  # fmt: skip
 
 

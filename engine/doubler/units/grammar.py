@@ -8,7 +8,7 @@ from functools import lru_cache
 
 from doubler.units.dimension import Dimension
 from doubler.units.refusals import refuse_atom, refuse_whole
-from doubler.units.table import atoms
+from doubler.units.table import TEMPERATURE, atoms
 from doubler.units.unit import Unit, UnitError
 
 ONE = Unit("1", Dimension.none(), Fraction(1))
@@ -19,6 +19,12 @@ _TOKEN = re.compile(
     r"\s*(?:(?P<sqrt>sqrt\s*\(|√)|(?P<power>\^|\*\*)|(?P<times>[·⋅∙•*×])|(?P<over>/|÷)|(?P<open>\()|(?P<close>\))"
     r"|(?P<number>[+-]?\d+(?:\.\d+)?)|(?P<atom>Δ?\s?[°º℃℉]\s?[CF]?|Δ?[A-Za-zµμΩΩε%‰_]+(?:\d(?=_))?)|(?P<dash>[-‐‑–.]))"
 )
+
+_POWER_OF_TEN = re.compile(r"(?<![\w.])(?:[x×*·]\s*)?(?:10\s*(?:\^|\*\*|[⁻⁰¹²³⁴⁵⁶⁷⁸⁹])|1?[eE][+\-−]?\d)")
+_BARE_FRACTION = re.compile(r"(?:\^|\*\*)\s*(-?\d+/\d+)")
+_DEGREE_OF = re.compile(r"[°º]\s?([ABD-EG-Za-z])")
+_DEGREES = {"K": "write K", "R": "write °F or K", "c": "write °C", "f": "write °F"}
+_DOTTED = re.compile(r"\b(in|ft|yd|lb|lbs|lbf|sq|cu|sec|min|hr|rev)\.(?=$|[\s\-/^²³⁴)*·])")
 
 
 @lru_cache(maxsize=8192)
@@ -50,11 +56,33 @@ def parse_unit(text: str) -> Unit:
     if stripped in DIMENSIONLESS_TEXTS:
         return ONE
     refuse_whole(stripped)
-    known = atoms().get(stripped) or atoms().get(stripped.replace("μ", "µ"))
+    known = atoms().get(stripped) or atoms().get(_normal(stripped))
     if known is not None:
         return known
-    unit = _Reader(_normal(stripped), text).read()
+    if stripped.startswith("(") and stripped.endswith(")") and not set("()") & set(stripped[1:-1]):
+        return parse_unit(stripped[1:-1])
+    _refuse_written(stripped)
+    reader = _Reader(_normal(stripped), text)
+    unit = reader.read()
+    if reader.degrees and unit.dimension == TEMPERATURE:
+        raise UnitError(f"{text!r} reads two ways; write °C or °F for a temperature, K for a difference")
     return Unit(stripped, unit.dimension, _scale(unit), system=unit.system, kind=unit.kind)
+
+
+def _refuse_written(text: str) -> None:
+    """Refuse what the trade writes in place of a unit, and a unit alone cannot mean."""
+    if _POWER_OF_TEN.search(text):
+        raise UnitError(
+            f"{text!r} holds a power of ten, which is part of the number; write a unit with a prefix, such as ppm/K or "
+            f"µm/m/K for 10^-6/K, kN for 10^3 N"
+        )
+    half = _BARE_FRACTION.search(text)
+    if half:
+        raise UnitError(f"{text!r} reads two ways; write the power in brackets, ^({half[1]})")
+    wrong = _DEGREE_OF.search(text)
+    if wrong:
+        where = f"{text!r}" if wrong[0] == text else f"{wrong[0]!r} in {text!r}"
+        raise UnitError(f"{where} is refused as a unit: {_DEGREES.get(wrong[1], 'write deg or °C')}")
 
 
 def _scale(unit: Unit) -> Fraction | float:
@@ -62,6 +90,7 @@ def _scale(unit: Unit) -> Fraction | float:
 
 
 def _normal(text: str) -> str:
+    text = _DOTTED.sub(r"\1", text.replace("−", "-"))
     text = text.replace("μ", "µ").replace("º", "°").replace("Ω", "Ω").replace("²", "^2").replace("³", "^3")
     text = text.replace("¹", "^1") if "⁻¹" not in text else text
     text = re.sub(r"⁻\^([23])", r"^-\1", text)
@@ -76,12 +105,15 @@ class _Reader:
     def __init__(self, text: str, given: str) -> None:
         self.given = given
         self.tokens: list[tuple[str, str]] = []
+        self.apart: list[bool] = []
+        self.degrees = False
         position = 0
         while position < len(text):
             match = _TOKEN.match(text, position)
             if match is None or match.end() == position:
                 raise UnitError(f"{given!r} is no unit: {text[position:].strip()[:1]!r} cannot stand in one")
             self.tokens.append((str(match.lastgroup), match[0].strip()))
+            self.apart.append(match[0][:1].isspace())
             position = match.end()
         self.at = 0
 
@@ -160,6 +192,7 @@ class _Reader:
         if known.offset:  # inside a compound a degree is a difference
             if len(self.tokens) == 1:
                 return known
+            self.degrees = True
             return Unit(known.text, known.dimension, known.exact or known.scale, system=known.system)
         return known
 
@@ -169,6 +202,8 @@ class _Reader:
             self.take()
             return unit ** self.exponent()
         if kind == "number" and self.at and self.tokens[self.at - 1][0] in ("atom", "close"):
+            if self.apart[self.at]:
+                raise UnitError(f"{self.given!r} is no unit: {text} stands apart; write a power as ^{text}")
             self.take()
             return unit ** Fraction(text)
         if (

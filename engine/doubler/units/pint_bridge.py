@@ -2,19 +2,20 @@
 
 from __future__ import annotations
 
+import re
 import sys
 import threading
 from fractions import Fraction
-from functools import lru_cache
+from functools import cache, lru_cache
 from typing import Any
 
-from doubler.units.dimension import Dimension
+from doubler.units.grammar import parse_unit
+from doubler.units.table import PREFIX_WORDS, PREFIXES, atoms, pint_names
 from doubler.units.unit import Unit, UnitError
 
 _lock = threading.Lock()
 _registry: Any = None
 _BASE_UNITS = ("meter", "kilogram", "second", "kelvin", "ampere", "radian")
-_AXES = {"[length]": 0, "[mass]": 1, "[time]": 2, "[temperature]": 3, "[current]": 4}
 
 
 def registry() -> Any:
@@ -45,59 +46,67 @@ def from_pint(quantity: Any) -> tuple[Any, Unit]:
     -------
     value : float or array
     unit : Unit
-        With the factor that pint's own registry gives; °C and °F keep their zero.
+        With the factor of our own table, whatever the registry or the release holds; °C and °F keep their zero.
 
     Raises
     ------
     UnitError
-        The quantity has a dimension that the trade does not use.
+        The quantity is in a unit that our table does not hold.
     """
-    own = quantity._REGISTRY
-    return quantity.magnitude, _unit_of(own, str(quantity.units), quantity.units)
+    return quantity.magnitude, _unit_of(tuple(quantity.unit_items()))
 
 
 @lru_cache(maxsize=1024)
-def _unit_of(own: Any, text: str, units: Any) -> Unit:
-    zero, one = own.Quantity(0.0, units).to_base_units(), own.Quantity(1.0, units).to_base_units()
-    exponents: list[Fraction | int] = [0] * 6
-    for name, power in one.dimensionality.items():
-        if name not in _AXES:
-            raise UnitError(f"{text} has the dimension {name}, which no formula here takes")
-        exponents[_AXES[name]] = Fraction(power).limit_denominator(12)
-    for name, power in units._units.items():
-        if name in _ANGLES:
-            exponents[5] += Fraction(power).limit_denominator(12)
-    dimension = Dimension(tuple(exponents))
-    scale = float(one.magnitude - zero.magnitude)
-    change = text.startswith("delta_")
-    kind = "change" if change else "energy" if "joule" in text else ""
-    return Unit(_shown(text), dimension, scale, offset=float(zero.magnitude), system=_system(text), kind=kind)
+def _unit_of(items: tuple[tuple[str, Any], ...]) -> Unit:
+    if not items:
+        return parse_unit("1")
+    parts = [(_known(name), Fraction(power).limit_denominator(12)) for name, power in items]
+    if len(parts) == 1 and parts[0][1] == 1:
+        return parts[0][0]
+    whole = parse_unit("1")
+    for part, power in sorted(parts, key=lambda pair: pair[1] < 0):
+        change = Unit(part.text, part.dimension, part.exact or part.scale, system=part.system, kind=part.kind)
+        whole = whole * change**power if power > 0 else whole / change**-power
+    return whole
 
 
-_ANGLES = frozenset({"radian", "degree", "arcminute", "arcsecond", "turn", "revolution", "milliradian", "gradian"})
-_US = (
-    "inch",
-    "foot",
-    "pound",
-    "psi",
-    "kip",
-    "slug",
-    "degree_Fahrenheit",
-    "ksi",
-    "force_pound",
-    "slinch",
-    "thou",
-)
+def _known(name: str) -> Unit:
+    """Return our unit of pint's name for it, prefixes included."""
+    symbol = _symbols().get(name)
+    if symbol is not None:
+        return atoms()[symbol]
+    for word, prefix in PREFIX_WORDS.items():
+        symbol = _symbols().get(name.removeprefix(word)) if name.startswith(word) else None
+        if symbol is not None:
+            unit = atoms()[symbol]
+            scale = PREFIXES[prefix] * unit.exact if unit.exact is not None else float(PREFIXES[prefix]) * unit.scale
+            return Unit(prefix + symbol, unit.dimension, scale, system=unit.system, kind=unit.kind)
+    raise UnitError(
+        f"doubler has no factor of its own for pint's {name}; convert the quantity first, as in "
+        f'quantity.to("mm"), or quantity.to_base_units()'
+    )
 
 
-def _system(text: str) -> Any:
-    us = any(word in text for word in _US)
-    metric = any(word in text for word in ("meter", "newton", "pascal", "gram", "joule", "watt", "bar"))
-    return "us" if us and not metric else "metric" if metric else ""
+@cache
+def _symbols() -> dict[str, str]:
+    found = {name: symbol for symbol, name in pint_names().items()}
+    return found | _OTHER_NAMES
 
 
-def _shown(text: str) -> str:
-    return text.replace(" ** ", "^").replace(" * ", "·").replace(" / ", "/")
+_OTHER_NAMES = {
+    "force_pound": "lbf",
+    "force_ounce": "ozf",
+    "force_kilogram": "kgf",
+    "pound_force_per_square_inch": "psi",
+    "kip_per_square_inch": "ksi",
+    "turn": "rev",
+    "revolutions_per_minute": "rpm",
+    "degree_Celsius": "°C",
+    "degree_Fahrenheit": "°F",
+    "delta_degree_Celsius": "Δ°C",
+    "delta_degree_Fahrenheit": "Δ°F",
+}
+"""What pint's releases call units that our table names otherwise."""
 
 
 def to_pint(value: Any, unit: Unit) -> Any:
@@ -127,26 +136,25 @@ def to_pint(value: Any, unit: Unit) -> Any:
 @lru_cache(maxsize=1024)
 def _pint_unit(unit: Unit) -> Any:
     """Return pint's unit for ours, but only where pint's factor is the same as ours."""
-    from doubler.units.table import pint_names
-
     own = registry()
     if unit.offset:
         return own.Unit("degree_Celsius" if "C" in unit.text else "degree_Fahrenheit")
     if unit.kind == "change":
         return own.Unit({"Δ°C": "delta_degree_Celsius", "Δ°F": "delta_degree_Fahrenheit"}.get(unit.text, "kelvin"))
-    names = pint_names()
-    words = unit.text.replace("²", "^2").replace("·", " * ").replace("^", " ** ")
-    for symbol in sorted(names, key=len, reverse=True):
-        words = _replace_symbol(words, symbol, names[symbol])
     try:
-        found = own.Unit(words)
-        same = abs(float(own.Quantity(1.0, found).to_base_units().magnitude) - unit.scale) <= 1e-9 * unit.scale
-        return found if same and _unit_of(own, str(found), found).dimension == unit.dimension else None
+        found = own.Unit(_WORD.sub(_pint_word, unit.text.translate(_WRITTEN)))
+        quantity = own.Quantity(1.0, found)
+        same = abs(float(quantity.to_base_units().magnitude) - unit.scale) <= 1e-9 * unit.scale
+        return found if same and _unit_of(tuple(quantity.unit_items())).dimension == unit.dimension else None
     except Exception:  # whatever pint cannot read is given in base units, which it can
         return None
 
 
-def _replace_symbol(words: str, symbol: str, name: str) -> str:
-    import re
+_WRITTEN = str.maketrans({"²": "2", "³": "3", "⁴": "4", "⁶": "6", "·": "*", "-": "*", "^": None})
+_WORD = re.compile(r"(?P<symbol>[A-Za-zµ%Ω]+)(?P<power>\d+)?")
 
-    return re.sub(rf"(?<![A-Za-zµ_°]){re.escape(symbol)}(?![A-Za-zµ_°])", name, words)
+
+def _pint_word(match: re.Match[str]) -> str:
+    unit = atoms()[match["symbol"]]
+    power = f" ** {match['power']}" if match["power"] else ""
+    return f"{pint_names()[unit.text]}{power}"

@@ -6,6 +6,7 @@ an angle no ratio, a rotational speed no frequency.
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 from fractions import Fraction
 
@@ -85,14 +86,14 @@ class QuantityKind:
             return f"{unit.text} is an energy and {self.article_name} is due; write {self.metric}"
         if self.name == "temperature" and unit.kind == "change":
             return f"{unit.text} is a temperature difference and a temperature is due; write {unit.text.lstrip('Δ')}"
-        if self.name == "frequency" and unit.text == "Hz":
-            return None
         return None
 
     def _mend(self, unit: Unit) -> str:
+        if self.name == "acceleration" and unit.text == "g":
+            return "g0 for the acceleration of free fall, else m/s^2"
         if unit.dimension == self.dimension / _WEIGHT * Dimension.none() or unit.dimension * _WEIGHT == self.dimension:
-            if unit.system == "us" and "lb" in unit.text:
-                return unit.text.replace("lbm", "lbf").replace("lb", "lbf") if "lbf" not in unit.text else self.us
+            if unit.system == "us":
+                return _POUNDS.sub("lbf", unit.text) if _POUNDS.search(unit.text) else self.us
             return f"{self.metric} (the weight of 1 kg is 9.80665 N)" if self.name == "force" else self.metric
         if self.name == "frequency" and unit.dimension == ANGLE / TIME:
             return f"Hz (1 {unit.text} is {unit.scale / 6.283185307179586:.6g} Hz)"
@@ -118,6 +119,7 @@ def _with_article(unit: Unit) -> str:
     return f"{'an' if name[0] in 'aeiou' else 'a'} {name.replace('_', ' ')}"
 
 
+_POUNDS = re.compile(r"(?<![A-Za-z])(?:lbs|lbm|lb|pounds|pound)(?![A-Za-z])")
 _ANGLE_OR_NOT = frozenset(
     {
         "shear_strain",
@@ -292,9 +294,9 @@ def _powered(name: str, power: Fraction) -> str:
 
 
 _FAMILIAR = (
-    "N", "mm", "MPa", "N·mm", "t", "s", "K", "A", "rad", "mm^2", "mm^3", "mm^4", "t/mm^3", "N/mm", "m", "Pa", "kg", "N·m",
-    "m^2", "m^3", "m^4", "kg/m^3", "N/m", "lbf", "in", "psi", "lbf·in", "slinch", "in^2", "in^3", "in^4", "lbf/in", "kip",
-    "ksi", "kip·in", "kip/in", "Δ°F", "Hz", "rad/s", "1",
+    "N", "mm", "MPa", "N·mm", "t", "s", "K", "A", "rad", "mm^2", "mm^3", "mm^4", "t/mm^3", "N/mm", "m", "Pa", "kg",
+    "N·m", "m^2", "m^3", "m^4", "kg/m^3", "N/m", "lbf", "in", "psi", "lbf·in", "slinch", "in^2", "in^3", "in^4",
+    "lbf/in", "kip", "ksi", "kip·in", "kip/in", "Δ°F", "Hz", "rad/s", "1",
 )  # fmt: skip
 _SETS = {
     "N-mm": ("mm", "N", "K"),

@@ -32,7 +32,7 @@ INCH, FOOT, POUND, GRAVITY = (
 )
 LBF = POUND * GRAVITY
 PSI = LBF / INCH**2
-_PREFIX = {
+PREFIXES = {
     "T": Fraction(10**12),
     "G": Fraction(10**9),
     "M": Fraction(10**6),
@@ -45,6 +45,20 @@ _PREFIX = {
     "µ": Fraction(1, 10**6),
     "n": Fraction(1, 10**9),
 }
+PREFIX_WORDS = {
+    "tera": "T",
+    "giga": "G",
+    "mega": "M",
+    "kilo": "k",
+    "hecto": "h",
+    "deca": "da",
+    "deci": "d",
+    "centi": "c",
+    "milli": "m",
+    "micro": "µ",
+    "nano": "n",
+}
+"""The prefixes as words, as pint spells them."""
 _PREFIX_WORD = {"G": "giga", "M": "mega", "k": "kilo", "c": "centi", "m": "milli", "µ": "micro", "": ""}
 
 
@@ -87,10 +101,10 @@ _ROWS = (
     _Row("%", Fraction(1, 100), NONE, "", "", "percent pct", "percent"),
     _Row("‰", Fraction(1, 1000), NONE, "", "", "", ""),
     _Row("ppm", Fraction(1, 10**6), NONE, "", "", "", "ppm"),
-    _Row("µε", Fraction(1, 10**6), NONE, "", "", "ue ustrain µstrain microstrain microstrains ustr", ""),
+    _Row("µε", Fraction(1, 10**6), NONE, "", "", "ue uε ustrain µstrain microstrain microstrains ustr", ""),
     _Row("mε", Fraction(1, 1000), NONE, "", "", "mstrain millistrain", ""),
     _Row("strain", Fraction(1), NONE, "", "", "ε", ""),
-    _Row("in", INCH, LENGTH, "us", "", "inch inches", "inch"),
+    _Row("in", INCH, LENGTH, "us", "µ", "inch inches", "inch"),
     _Row("ft", FOOT, LENGTH, "us", "", "foot feet", "foot"),
     _Row("yd", 3 * FOOT, LENGTH, "us", "", "yard yards", "yard"),
     _Row("mil", INCH / 1000, LENGTH, "us", "", "mils thou", "thou"),
@@ -103,7 +117,7 @@ _ROWS = (
     _Row("kip", 1000 * LBF, FORCE, "us", "", "kips klbf", "kip"),
     _Row("psi", PSI, PRESSURE, "us", "", "", "psi"),
     _Row("ksi", 1000 * PSI, PRESSURE, "us", "", "kpsi", "ksi"),
-    _Row("Msi", 10**6 * PSI, PRESSURE, "us", "", "Mpsi", ""),
+    _Row("Msi", 10**6 * PSI, PRESSURE, "us", "", "Mpsi", "megapsi"),
     _Row("psf", LBF / FOOT**2, PRESSURE, "us", "", "", ""),
     _Row("ksf", 1000 * LBF / FOOT**2, PRESSURE, "us", "", "", ""),
     _Row("pcf", POUND / FOOT**3, MASS / LENGTH**3, "us", "", "", ""),
@@ -136,7 +150,7 @@ def atoms() -> dict[str, Unit]:
         for prefix in row.prefixes.split():
             assert isinstance(row.factor, Fraction)
             prefixed = Unit(
-                prefix + row.symbol, row.dimension, _PREFIX[prefix] * row.factor, system=row.system, kind=kind
+                prefix + row.symbol, row.dimension, PREFIXES[prefix] * row.factor, system=row.system, kind=kind
             )
             spellings = [prefix + row.symbol]
             if prefix == "µ":
@@ -171,8 +185,7 @@ def _system(name: str) -> System:
 @cache
 def pint_names() -> dict[str, str]:
     """Return pint's name for each symbol that pint knows under some name, prefixes spelled as pint spells them."""
-    words = {"T": "tera", "G": "giga", "M": "mega", "k": "kilo", "h": "hecto", "da": "deca", "d": "deci"}
-    words |= {"c": "centi", "m": "milli", "µ": "micro", "n": "nano"}
+    words = {prefix: word for word, prefix in PREFIX_WORDS.items()}
     found: dict[str, str] = {}
     for row in _ROWS:
         if row.pint:
