@@ -137,7 +137,7 @@ def together(
         state = State.KNOWN if all(n.state is State.KNOWN for n in loose) else State.UNKNOWN
         return Carried(state, one.dimension, one.readings, factors, exact, sources, hidden)
     reference, readings, extra = _agree(sure, what, bool(signs))
-    readings = _with_literals(reference, readings, literals, bool(signs), what)
+    readings = _with_literals(reference, readings, literals)
     if signs:
         readings = tuple(_shifted(r, literals) for r in readings)
     system = next((s.system for s in sources if s.system), "")
@@ -246,8 +246,6 @@ def _with_literals(
     reference: Carried,
     readings: tuple[Reading, ...],
     literals: list[tuple[Carried, int]],
-    summed: bool,
-    what: str,
 ) -> tuple[Reading, ...]:
     """A number beside a ratio means that the ratio is a plain one."""
     counts = [n for n, _ in literals if n.value != 0.0]
@@ -322,7 +320,7 @@ def hidden_literal(node: Carried, dimension: Dimension, scale: float) -> Hidden 
         if not factor.exponent or is_simple_coefficient(factor.value, factor.text):
             continue
         found = conversion(factor.value, factor.text)
-        if found is not None and not _physical(factor.value):
+        if found is not None and not _physical(factor.value) and not _plain_decimal(factor.value):
             continue
         exponent = 1 / factor.exponent
         return Hidden(
@@ -331,6 +329,14 @@ def hidden_literal(node: Carried, dimension: Dimension, scale: float) -> Hidden 
             (scale / node.readings[0].scale) ** float(exponent),
         )
     return None
+
+
+def _plain_decimal(value: float) -> bool:
+    """Return whether a decimal below 1 is the inverse of a whole number, as 0.0625 is of 16: seldom a conversion."""
+    if value >= 1.0:
+        return False
+    inverse, power = 1 / value, -math.log10(value)
+    return math.isclose(inverse, round(inverse), rel_tol=1e-12) and abs(power - round(power)) > 1e-12
 
 
 def _physical(value: float) -> bool:

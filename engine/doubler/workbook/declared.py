@@ -1,25 +1,24 @@
 """The unit that a sheet declares for a cell, and where it was read.
 
-In this order: a unit cell at the right; a bracket in the label or header; a unit row under the header; the literal of the
-number format. Then what other habits there are: a unit at the end of a row of numbers, a unit cell or a column of units
-at the left, ``Force / kN`` in a header, a note beside, a comment, a note for the whole sheet; and last, weakly, a label
-that names a pure number.
+In this order: a unit cell at the right; a bracket in the label or header; a unit row under the header; the literal of
+the number format. Then what other habits there are: a unit at the end of a row of numbers, a unit cell or a column of
+units at the left, ``Force / kN`` in a header, a note beside, a comment, a note for the whole sheet; and last, weakly, a
+label that names a pure number.
 """
 
 from __future__ import annotations
 
-import re
 from collections.abc import Iterator
 from dataclasses import dataclass, field
 
 from doubler.units import Unit, parse_unit
 from doubler.workbook.carried import Key
+from doubler.workbook.label_units import bracket_unit, loose_unit, sheet_note_unit
 from doubler.workbook.labels import Label, Labels, Layout
 from doubler.workbook.model import Address, Workbook
 from doubler.workbook.roles import is_difference, is_pure_number
 from doubler.workbook.unit_cells import UnitCells
 from doubler.workbook.unit_text import (
-    UnitText,
     conversion_unit,
     format_unit,
     is_percent_format,
@@ -90,17 +89,6 @@ class _Found:
     words: str | None = None
 
 
-_BRACKET = re.compile(r"([\[(])([^\[\]()]*(?:\([^()]*\)[^\[\]()]*)?)[\])]")
-_COMMA = re.compile(r",\s*(\S{1,20}(?:\s\S{1,8})?)\s*[:=]?\s*$")
-_SLASH = re.compile(r"^(?P<label>.*\S)\s*/\s*(?P<unit>\(?[^\s/].*)$")
-_TAIL = re.compile(r"^(?P<label>.*\S)\s+(?:in\s+)?(?P<unit>[^\s()\[\]]+)\s*[:=]?\s*$")
-_SHEET_NOTE = re.compile(
-    r"^(?:note\s*:?\s*)?(?:all\s+)?(?P<what>\w+(?:\s+and\s+\w+)?)\s+(?:are\s+)?(?:given\s+)?in\s+(?P<unit>[^\s,;.]+)"
-    r"(?:\s+(?:unless|u\.?n\.?o).*)?\.?$",
-    re.IGNORECASE,
-)
-
-
 @dataclass(slots=True)
 class Declarations:
     """The declared units of a workbook's cells, found when asked for and then kept."""
@@ -114,6 +102,7 @@ class Declarations:
     _notes: dict[str, list[_Found]] = field(default_factory=dict)
     _unreadable: dict[Key, Unreadable] = field(default_factory=dict)
     _disagreements: dict[Key, Disagreement] = field(default_factory=dict)
+    _columns: dict[tuple[str, int, int, int], Declared] = field(default_factory=dict)
     _complete: bool = False
 
     def label(self, sheet: str, address: Address) -> Label:
@@ -160,6 +149,11 @@ class Declarations:
 
     def _declare(self, sheet: str, address: Address) -> Declared | None:
         layout = self.labels.layout(sheet)
+        quick = self._under_header(sheet, layout, address)
+        if quick is not None:
+            held = self._columns.get(quick)
+            if held is not None:
+                return held
         finds = self._places(sheet, layout, address)
         first = next(finds, None)
         if first is None:
@@ -169,16 +163,32 @@ class Declarations:
             for second in finds:
                 if second.weak or second.place.startswith(("note", "comment")):
                     break
+                if _row_against_column(first, second):
+                    continue
                 if not _alike(first.unit, second.unit) and second.at != first.at:
                     other = self._share(sheet, layout, address, second)
                     self._disagreements[sheet, address] = Disagreement(sheet, address, declared, other)
                     break
+        if quick is not None and first.place in ("bracket in the header", "unit row"):
+            self._columns[quick] = declared
         return declared
+
+    def _under_header(self, sheet: str, layout: Layout, address: Address) -> tuple[str, int, int, int] | None:
+        """Return the column in which a cell has its unit from the header alone: no text stands beside it."""
+        row, column = address
+        if (row, column + 1) in layout.texts or address in layout.sheet.comments:
+            return None
+        left = layout.left_texts(address)
+        if left and layout.touches_left(address, left[0]):
+            return None
+        head = layout.header_row(address)
+        cell = layout.cells.get(address)
+        return None if head is None or cell is None else (sheet, head, column, cell.style)
 
     def _share(self, sheet: str, layout: Layout, address: Address, found: _Found) -> Declared:
         absolute = False
         unit = found.unit
-        if unit.dimension == _TEMPERATURE():
+        if unit.dimension == _temperature():
             words = found.words if found.words is not None else self.label(sheet, address).words
             absolute = not is_difference(words)
         if unit.text == "%" and self._percent(layout, address):
@@ -253,7 +263,7 @@ class Declarations:
                 yield found
         if beside:
             for text_at in left:
-                loose = _loose_unit(layout.texts[text_at])
+                loose = loose_unit(layout.texts[text_at])
                 if loose is not None:
                     yield _Found(loose, layout.texts[text_at], "label", (sheet, layout.origin(text_at)))
         if loose_header is not None:
@@ -298,7 +308,7 @@ class Declarations:
                 yield note
                 return
         if own and any(is_pure_number(layout.texts[a]) for a in own):
-            yield _Found(parse_unit("1"), layout.texts[own[0]], "label", (sheet, address), weak=True)
+            yield _Found(parse_unit("1"), layout.texts[own[0]], "label", (sheet, layout.origin(own[0])), weak=True)
         elif name and is_pure_number(name.replace("_", " ")):
             yield _Found(parse_unit("1"), name, "name", (sheet, address), weak=True)
 
@@ -307,12 +317,9 @@ class Declarations:
         if notes is None:
             notes = []
             for at, text in layout.texts.items():
-                if 10 <= len(text) <= 90 and " in " in text and at not in layout.merged_from:
-                    match = _SHEET_NOTE.match(text)
-                    if match and (text.casefold().startswith(("all", "note")) or "unless" in text.casefold()):
-                        read = read_unit_text(match["unit"])
-                        if read.unit is not None:
-                            notes.append(_Found(read.unit, text, "note on the sheet", (sheet, at)))
+                unit = None if at in layout.merged_from else sheet_note_unit(text)
+                if unit is not None:
+                    notes.append(_Found(unit, text, "note on the sheet", (sheet, at)))
             self._notes[sheet] = notes
         return notes
 
@@ -397,7 +404,7 @@ class Declarations:
                 bracket = bracket or _Found(unit, shown, "bracket in the header", origin, words=words)
             elif complaint:
                 self._cannot_read(sheet, address, shown, complaint, at)
-            tail = _loose_unit(text)
+            tail = loose_unit(text)
             if tail is not None:
                 loose = loose or _Found(tail, text, "header", origin, words=words)
         return bracket, unit_row, loose
@@ -412,10 +419,19 @@ class Declarations:
         return None
 
 
-def _TEMPERATURE() -> object:
+def _temperature() -> object:
     from doubler.units import kind
 
     return kind("temperature").dimension
+
+
+def _row_against_column(first: _Found, second: _Found) -> bool:
+    """Return whether one place belongs to the row and the other to the column: stacked blocks, no quarrel."""
+    by_column = ("header", "unit row")
+    return first.place.endswith(by_column) != second.place.endswith(by_column) and "number format" not in (
+        first.place,
+        second.place,
+    )
 
 
 def _alike(first: Unit, second: Unit) -> bool:
@@ -423,52 +439,6 @@ def _alike(first: Unit, second: Unit) -> bool:
         first.dimension.without_angle() == second.dimension.without_angle()
         and abs(first.scale / second.scale - 1) < 1e-9
     )
-
-
-def bracket_unit(text: str) -> tuple[Unit | None, str, str]:
-    """Return the unit in a label's bracket or behind its comma, its text, and what is wrong with a text that is none."""
-    complaint, wrong = "", ""
-    for match in reversed(list(_BRACKET.finditer(text))):
-        inner = match[2].strip()
-        if not inner:
-            continue
-        words = text[: match.start()] + " " + text[match.end() :]
-        read = read_unit_text(inner)
-        if read.unit is not None and _fits(read, words, square=match[1] == "["):
-            return read.unit, match.group(), ""
-        if read.complaint and not complaint:
-            complaint, wrong = read.complaint, match.group()
-        phrase = phrase_unit(inner)
-        if phrase.unit is not None:
-            return phrase.unit, match.group(), ""
-    comma = _COMMA.search(text)
-    if comma is not None:
-        read = read_unit_text(comma[1])
-        if read.unit is not None and comma[1] != "1" and _fits(read, text[: comma.start()], square=False):
-            return read.unit, comma[1], ""
-    return None, wrong, complaint
-
-
-def _fits(read: UnitText, words: str, *, square: bool) -> bool:
-    if not read.doubtful or read.unit is None:
-        return True
-    agrees = role_agrees(read.unit, words)
-    return agrees is not False if square else agrees is True
-
-
-def _loose_unit(text: str) -> Unit | None:
-    """Return the unit at the end of a label that has it without a bracket: ``Force / kN``, ``Stress in MPa``."""
-    for pattern in (_SLASH, _TAIL):
-        match = pattern.match(text)
-        if match is None or len(text) > 60:
-            continue
-        read = read_unit_text(match["unit"])
-        if read.unit is None or match["unit"].casefold() in ("ratio", "-", "1", "–", "%"):
-            continue
-        agrees = role_agrees(read.unit, match["label"])
-        if agrees is True or (agrees is None and not read.doubtful and pattern is _SLASH and len(match["unit"]) > 1):
-            return read.unit
-    return None
 
 
 def declare(workbook: Workbook) -> Declarations:

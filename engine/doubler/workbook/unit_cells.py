@@ -1,7 +1,7 @@
-"""Cells that hold nothing but a unit: beside a number, in a column of units, in a row of units under headers.
+"""Cells that hold nothing but a unit: beside a number, in a column or a row of units.
 
-A text that looks like a unit is one when its surroundings say so: the column's heading, the other texts of its column or
-row, the words of the label beside the number.
+A text that looks like a unit is one when its surroundings say so: the column's heading, the other texts of its
+column or row, the words of the label beside the number.
 """
 
 from __future__ import annotations
@@ -70,7 +70,9 @@ class UnitCells:
             return read if not (column.titled and column.other > column.firm) else NOTHING
         agrees = role_agrees(read.unit, words)
         if agrees is not None:
-            return read if agrees else NOTHING
+            # In a column of units a wrong one is read for what it says, so that it is found.
+            plainly = column.firm > column.other and text not in _NEVER_ALONE and text.islower() is False
+            return read if agrees or plainly else NOTHING
         if column.firm and column.firm + column.doubtful > column.other:
             return read
         if column.other or column.titled or text in _NEVER_ALONE:
@@ -94,8 +96,8 @@ class UnitCells:
         known = self._columns.get(column)
         if known is None:
             layout = self._layout
-            texts = []
-            heads = []
+            texts: list[str] = []
+            heads: list[str] = []
             for row in layout.rows_of_text.get(column, ()):
                 text = layout.texts[row, column]
                 beside = layout.holds_number((row, column - 1)) or layout.holds_number((row, column + 1))

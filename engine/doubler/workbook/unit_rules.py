@@ -165,6 +165,12 @@ def pi(walk: Walk, call: Call) -> Carried:
     return literal(math.pi, "3.14159265358979", walk.next_position())
 
 
+def not_available(walk: Walk, call: Call) -> Carried:
+    """NA: an error value has no unit and bends to those of the other branches, as an empty cell does."""
+    del walk, call
+    return BLANK
+
+
 def times_pi(walk: Walk, call: Call) -> Carried:
     """SQRTPI: the root of the argument times a pure number."""
     return power(walk.one(call.arguments[0]), Fraction(1, 2))

@@ -1,4 +1,4 @@
-"""Is a text of a sheet a unit, a word that looks like one, or a unit that can't be read?"""
+"""Whether a text of a sheet is a unit, a word that looks like one, or a unit that can't be read."""
 
 from __future__ import annotations
 
@@ -17,11 +17,12 @@ DASHES = frozenset(
 UNIT_HEADS = re.compile(r"^(?:units?|uom|u\.?o\.?m\.?|dim(?:ension)?s?|einheit|units? of measure)\s*:?$", re.IGNORECASE)
 
 _WORDLIKE = frozenset(
-    ["in", "a", "min", "bar", "at", "mil", "oz", "pt", "day", "year", "hand", "mm2", "lb", "at", "as", "pa", "gr", "gal", "rev", "rod", "can", "cal", "dB", "ea", "no", "max", "deg", "tex", "T", "t"]
-) - {"mm2", "lb", "deg"}
+    ("in a min bar at mil oz pt day year hand as pa gr gal rev rod can cal dB ea no max tex T t").split()
+)
 _MISSPELT = re.compile(r"^[A-Za-zµμΩ°%]+[23]?(?:\s?[/·*^.\-]\s?\(?[A-Za-zµμ°]+\)?\^?-?[0-9]*|\^-?[0-9.]+|[²³⁴])*$")
 _PHRASE = re.compile(
-    r"^(?:all\s+)?(?:units?(?:\s+(?:are|is))?(?:\s+in)?|values?\s+in|in|all\s+in|given\s+in)\s*[:=]?\s+(?P<unit>\S+(?:\s\S+)?)$",
+    r"^(?:all\s+)?(?:units?(?:\s+(?:are|is))?(?:\s+in)?|values?\s+in|in|all\s+in|given\s+in)\s*[:=]?\s+"
+    r"(?P<unit>\S+(?:\s\S+)?)$",
     re.IGNORECASE,
 )
 _LEADING = re.compile(r"^(?P<unit>[^\s,;(]+)\s*(?:[,;]\s|\()")
@@ -67,10 +68,9 @@ def read_unit_text(text: str) -> UnitText:
         return NOTHING
     if bare.casefold() in DASHES or bare == "1":
         return UnitText(parse_unit("1"))
-    if bare[0].isdigit() or bare[0] in "=+<>~#'\"" or "?" in bare:
-        # '1/K' is a unit, '10 mm' a quantity.
-        if not bare.startswith("1/"):
-            return NOTHING
+    odd = bare[0].isdigit() or bare[0] in "=+<>~#'\"" or "?" in bare
+    if odd and not bare.startswith("1/"):
+        return NOTHING  # '1/K' is a unit, '10 mm' a quantity
     try:
         unit = parse_unit(bare)
     except UnitError as error:
@@ -80,7 +80,12 @@ def read_unit_text(text: str) -> UnitText:
     return UnitText(unit, doubtful)
 
 
-_BY_CASE = ["mm", "cm", "km", "in", "ft", "N", "kN", "MN", "lbf", "kip", "kips", "Pa", "kPa", "MPa", "GPa", "psi", "ksi", "Msi", "Nm", "kNm", "Nmm", "N/mm2", "N/mm^2", "kN/m", "N/m", "N/mm", "mm2", "mm^2", "mm3", "mm^3", "mm4", "mm^4", "in2", "in^2", "in3", "in^3", "in4", "in^4", "lbf/in", "lb/in", "kg", "g", "Hz", "kHz", "rad", "deg", "°C", "°F", "m/s", "m/s2", "kg/m3", "kg/m^3", "kNm", "N·m", "kN·m", "in-lbf", "ft-lbf", "lbf-in", "lbf-ft", "in-lb", "ft-lb", "rpm", "N/m2", "N/m^2", "kN/m2", "kN/m^2", "kN/mm2", "cm2", "cm3", "cm4", "m2", "m3", "m4", "lbf/in2", "lbf/in^2", "mm/mm", "1/°C", "1/K", "ppm/°C", "J", "kJ", "kW"]
+_BY_CASE = (
+    "mm cm km in ft N kN MN lbf kip kips Pa kPa MPa GPa psi ksi Msi Nm kNm Nmm N/mm2 N/mm^2 kN/m N/m N/mm mm2 "
+    "mm^2 mm3 mm^3 mm4 mm^4 in2 in^2 in3 in^3 in4 in^4 lbf/in lb/in kg g Hz kHz rad deg °C °F m/s m/s2 kg/m3 "
+    "kg/m^3 N·m kN·m in-lbf ft-lbf lbf-in lbf-ft in-lb ft-lb rpm N/m2 N/m^2 kN/m2 kN/m^2 kN/mm2 cm2 cm3 cm4 m2 m3 "
+    "m4 lbf/in2 lbf/in^2 mm/mm 1/°C 1/K ppm/°C J kJ kW"
+).split()
 _FOLDED = {text.casefold(): text for text in _BY_CASE}
 
 
@@ -112,9 +117,7 @@ def role_agrees(unit: Unit, words: str) -> bool | None:
         if name is not None and kind(name).dimension.without_angle() == own:
             return True
     compound = len(str(unit.text)) > 3 or "/" in unit.text
-    return (
-        bool(compound and not is_pure_number(words) and found & {"stress", "mass", "force"} and _related(unit))
-    )
+    return bool(compound and not is_pure_number(words) and found & {"stress", "mass", "force"} and _related(unit))
 
 
 def _related(unit: Unit) -> bool:
@@ -158,7 +161,8 @@ def conversion_unit(label: str) -> Unit | None:
 
 
 _SPELT = {
-    "inch": "in", "inches": "in", "foot": "ft", "feet": "ft", "newton": "N", "newtons": "N", "pound": "lbf", "pounds": "lbf",
+    "inch": "in", "inches": "in", "foot": "ft", "feet": "ft", "newton": "N", "newtons": "N",
+    "pound": "lbf", "pounds": "lbf",
     "millimetre": "mm", "millimetres": "mm", "millimeter": "mm", "millimeters": "mm", "metre": "m", "meter": "m",
     "metres": "m", "meters": "m", "degree": "deg", "degrees": "deg", "radian": "rad", "radians": "rad",
     "hour": "h", "hours": "h", "second": "s", "seconds": "s", "minute": "min", "minutes": "min",

@@ -83,6 +83,9 @@ class Surroundings(Protocol):
     def block_units(self, node: RangeRef, host: Address) -> Block:
         """Return the units of a rectangle."""
 
+    def next_position(self) -> int:
+        """Number the literals, those of unlike formulas apart."""
+
     def constant(self, node: Node, host: Address) -> Scalar:
         """Return the constant that a cell holds, or None; the result then hangs on that value."""
 
@@ -97,10 +100,9 @@ class Walk:
         self.around = around
         self.host = host
         self.constraints = constraints
-        self._position = 0
         self._bound: dict[str, Carried | Block] = {}
 
-    def node(self, node: Node) -> Carried | Block:  # noqa: PLR0911 - one branch a kind of syntax
+    def node(self, node: Node) -> Carried | Block:
         """Return the unit of an expression; of a rectangle the units of its parts."""
         if isinstance(node, Number):
             return literal(node.value, node.text, self.next_position())
@@ -166,8 +168,7 @@ class Walk:
 
     def next_position(self) -> int:
         """Number the formula's literals."""
-        self._position += 1
-        return self._position
+        return self.around.next_position()
 
     def bind(self, name: str, value: Carried | Block) -> None:
         """Give a LET variable its unit."""
