@@ -107,4 +107,4 @@ def _plain(number: float) -> str:
     power = Fraction(rounded).limit_denominator(1)
     if rounded >= 1e7 and power > 0 and set(str(int(rounded)).lstrip("1")) <= {"0"}:
         return f"10^{len(str(int(rounded))) - 1}"
-    return f"{rounded:g}" if rounded < 1e7 else f"{rounded:.6g}"
+    return f"{rounded:.7g}" if rounded < 1e7 else f"{rounded:.6g}"

@@ -17,7 +17,7 @@ _SUPERSCRIPTS = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁻", "0123456789-")
 _SUPERSCRIPT = re.compile(r"[⁻]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+")
 _TOKEN = re.compile(
     r"\s*(?:(?P<sqrt>sqrt\s*\(|√)|(?P<power>\^|\*\*)|(?P<times>[·⋅∙•*×])|(?P<over>/|÷)|(?P<open>\()|(?P<close>\))"
-    r"|(?P<number>[+-]?\d+(?:\.\d+)?)|(?P<atom>Δ?\s?[°º℃℉]\s?[CF]?|Δ?[A-Za-zµμΩΩε%‰_]+(?:\d(?=_))?)|(?P<dash>[-‐‑–.]))"
+    r"|(?P<number>[+-]?\d+(?:\.\d+)?)|(?P<atom>g0(?![A-Za-z0-9])|Δ?\s?[°º℃℉]\s?[CF]?|Δ?[A-Za-zµμΩΩε%‰_]+(?:\d(?=_))?)|(?P<dash>[-‐‑–.]))"
 )
 
 _POWER_OF_TEN = re.compile(r"(?<![\w.])(?:[x×*·]\s*)?(?:10\s*(?:\^|\*\*|[⁻⁰¹²³⁴⁵⁶⁷⁸⁹])|1?[eE][+\-−]?\d)")
@@ -91,7 +91,7 @@ def _scale(unit: Unit) -> Fraction | float:
 
 def _normal(text: str) -> str:
     text = _DOTTED.sub(r"\1", text.replace("−", "-"))
-    text = text.replace("μ", "µ").replace("º", "°").replace("Ω", "Ω").replace("²", "^2").replace("³", "^3")
+    text = text.replace("μ", "µ").replace("º", "°").replace("\u2126", "Ω").replace("²", "^2").replace("³", "^3")
     text = text.replace("¹", "^1") if "⁻¹" not in text else text
     text = re.sub(r"⁻\^([23])", r"^-\1", text)
     text = _SUPERSCRIPT.sub(lambda m: "^" + m[0].translate(_SUPERSCRIPTS), text.replace("⁻¹", "^-1"))
@@ -200,12 +200,12 @@ class _Reader:
         kind, text = self.peek()
         if kind == "power":
             self.take()
-            return unit ** self.exponent()
+            return unit ** self.not_zero(self.exponent())
         if kind == "number" and self.at and self.tokens[self.at - 1][0] in ("atom", "close"):
             if self.apart[self.at]:
                 raise UnitError(f"{self.given!r} is no unit: {text} stands apart; write a power as ^{text}")
             self.take()
-            return unit ** Fraction(text)
+            return unit ** self.not_zero(Fraction(text))
         if (
             kind == "dash"
             and text == "-"
@@ -213,8 +213,15 @@ class _Reader:
             and self.tokens[self.at + 1][0] == "number"
         ):
             self.take()
-            return unit ** -Fraction(self.take()[1])
+            return unit ** -self.not_zero(Fraction(self.take()[1]))
         return unit
+
+    def not_zero(self, power: Fraction) -> Fraction:
+        if power == 0:
+            raise UnitError(
+                f"{self.given!r} is no unit: a power of zero leaves nothing of it; write 1 for a pure number"
+            )
+        return power
 
     def exponent(self) -> Fraction:
         kind, text = self.take()

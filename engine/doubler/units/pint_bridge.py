@@ -151,7 +151,7 @@ def _pint_unit(unit: Unit) -> Any:
 
 
 _WRITTEN = str.maketrans({"²": "2", "³": "3", "⁴": "4", "⁶": "6", "·": "*", "-": "*", "^": None})
-_WORD = re.compile(r"(?P<symbol>[A-Za-zµ%Ω]+)(?P<power>\d+)?")
+_WORD = re.compile(r"(?P<symbol>g0|[A-Za-zµ%Ω]+)(?P<power>\d+)?")
 
 
 def _pint_word(match: re.Match[str]) -> str:

@@ -91,7 +91,7 @@ _ROWS = (
     _Row("K", Fraction(1), TEMPERATURE, "", "", "kelvin kelvins", "kelvin"),
     _Row("A", Fraction(1), CURRENT, "", "m", "ampere amperes", "ampere"),
     _Row("V", Fraction(1), VOLTAGE, "", "µ m k", "volt volts", "volt"),
-    _Row("Ω", Fraction(1), VOLTAGE / CURRENT, "", "m k M", "ohm ohms Ω", "ohm"),
+    _Row("Ω", Fraction(1), VOLTAGE / CURRENT, "", "m k M", "ohm ohms \u2126", "ohm"),
     _Row("rad", Fraction(1), ANGLE, "", "m µ", "radian radians", "radian"),
     _Row("deg", math.pi / 180.0, ANGLE, "", "", "° degree degrees", "degree"),
     _Row("arcmin", math.pi / 10800.0, ANGLE, "", "", "", "arcminute"),
