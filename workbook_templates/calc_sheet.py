@@ -22,7 +22,7 @@ from openpyxl.worksheet.properties import PageSetupProperties
 
 PINE, SAND, SAGE, MIST, CLAY, INK, SLATE = "24413F", "F3E9D6", "DCE7DF", "F4F6F4", "EBC0A9", "1F2A2A", "4E6264"
 FACE = "Arial"
-WIDTHS = {"A": 11, "B": 33, "C": 15, "D": 10, "E": 15, "F": 10, "G": 11, "H": 42}
+WIDTHS = {"A": 9, "B": 34, "C": 14, "D": 9, "E": 14, "F": 9, "G": 11.5, "H": 37}
 HEAD = ("Symbol", "Description", "Value", "Unit", "Native value", "Unit", "Difference [-]", "In words; source")
 CAUTION = (
     "Caution: these checks aid licensed engineering judgement and local codes, and never replace them. Whoever signs "
@@ -139,8 +139,8 @@ class CalcSheet:
         for column in WIDTHS:
             for row in (1, 2):
                 sheet[f"{column}{row}"].fill = _fill(PINE)
-        self._put("A1", title, _font(17, "FFFFFF", bold=True))
-        self._put("A2", scenario, _font(9.5, "DCE7DF"))
+        self._put("A1", title, _font(17, "FFFFFF", bold=True), indent=1)
+        self._put("A2", scenario, _font(9.5, "DCE7DF"), indent=1)
         sheet.row_dimensions[1].height = 28
         sheet.row_dimensions[2].height = 17
         block = (
@@ -162,12 +162,12 @@ class CalcSheet:
         sheet["B4"].fill = _fill(SAND)
         self._put("A5", CAUTION, _font(8, SLATE, italic=True), wrap=True)
         sheet.merge_cells("A5:H5")
-        sheet.row_dimensions[5].height = 25
+        sheet.row_dimensions[5].height = 26
         legend = (
             ("A6:B6", "sand field: an input, yours to fill in", SAND, False),
             ("C6:D6", "sage field: a doubler function", SAGE, False),
-            ("E6:G6", "slanted: the same by native formulas", MIST, True),
-            ("H6:H6", "difference above 1E-9, or a margin below 0: clay", CLAY, False),
+            ("E6:G6", "pale or slanted: native formulas", MIST, True),
+            ("H6:H6", "clay: a difference, or a margin below 0", CLAY, False),
         )
         for area, words, colour, italic in legend:
             first = area.split(":")[0]
@@ -177,9 +177,8 @@ class CalcSheet:
             sheet[first].fill = _fill(colour)
         sheet.row_dimensions[6].height = 16
         for column, words in zip(WIDTHS, HEAD, strict=True):
-            self._put(
-                f"{column}7", words, _font(8.5, SLATE, bold=True), side="right" if column in "CEG" else "left", indent=1
-            )
+            side, indent = ("right" if column in "CEG" else "left"), (0 if column in "AB" else 1)
+            self._put(f"{column}7", words, _font(8.5, SLATE, bold=True), side=side, indent=indent)
             sheet[f"{column}7"].border = Border(bottom=_side(PINE, "medium"))
         sheet.row_dimensions[7].height = 17
         sheet.freeze_panes = "A8"
@@ -212,10 +211,10 @@ class CalcSheet:
     def _words(self, item: Given | Result) -> None:
         row = self.row
         self._put(f"A{row}", item.symbol, _font(9.5, italic=True))
-        self._put(f"B{row}", item.words, _font(9))
+        self._put(f"B{row}", item.words, _font(9.5))
         self._put(f"D{row}", item.unit, _font(9, SLATE), indent=1)
-        self._put(f"H{row}", item.source, _font(8, SLATE), wrap=True, indent=1)
-        long = len(item.source) > 58 or len(item.words) > 42
+        self._put(f"H{row}", item.source, _font(8.5, SLATE), wrap=True, indent=1)
+        long = len(item.source) > 55 or len(item.words) > 46
         self.sheet[f"B{row}"].alignment = Alignment(vertical="center", wrap_text=True)
         self.sheet.row_dimensions[row].height = 25 if long else 18
         for column in WIDTHS:
