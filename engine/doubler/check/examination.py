@@ -1,0 +1,133 @@
+"""The check of one workbook: all rules, findings ranked and folded under their roots, what was covered."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable, Iterator
+from dataclasses import dataclass
+from pathlib import Path
+from typing import Any
+
+from doubler.check import coverage, elastic, margins, structure, units, values
+from doubler.check.examined import Examined
+from doubler.check.finding import FAMILY_OF, SEVERITIES, Finding, rank
+from doubler.check.short_range import short_ranges
+from doubler.workbook.evaluate import NotEvaluated
+
+Rule = Callable[[Examined], Iterable[Finding]]
+
+RULES: tuple[Rule, ...] = (
+    units.unit_findings,
+    values.stale_values,
+    values.error_values,
+    values.text_numbers,
+    values.blank_inputs,
+    structure.filled_lines,
+    short_ranges,
+    structure.circles,
+    structure.external_links,
+    structure.hidden_inputs,
+    structure.unused_inputs,
+    elastic.poisson_ranges,
+    elastic.modulus_mismatches,
+    margins.negative_margins,
+    coverage.not_recalculated,
+    coverage.not_traced,
+    coverage.notes_on_units,
+)
+"""All rules; each looks at the whole workbook and yields what it finds."""
+
+
+@dataclass(frozen=True)
+class CheckReport:
+    """The check of one workbook.
+
+    Attributes
+    ----------
+    path, sha256
+        The file and the hash of its bytes.
+    formulas, recalculated, traced
+        How many formula cells there are, how many were recalculated, and how many were traced through their units.
+    findings
+        Worst first.
+    book
+        The workbook as examined, for the record.
+    """
+
+    path: Path
+    sha256: str
+    formulas: int
+    recalculated: int
+    traced: int
+    findings: list[Finding]
+    book: Examined
+
+    @property
+    def counts(self) -> dict[str, int]:
+        """How many findings there are of each severity."""
+        return {severity: sum(f.severity == severity for f in self.findings) for severity in SEVERITIES}
+
+    def as_object(self) -> dict[str, Any]:
+        """Return the check as the contract's JSON object."""
+        return {
+            "workbook": self.path.name,
+            "sha256": self.sha256,
+            "coverage": {"formulas": self.formulas, "recalculated": self.recalculated, "traced": self.traced},
+            "counts": self.counts,
+            "findings": [finding.as_object() for finding in self.findings],
+        }
+
+
+def check(path: Path | str, rules: Iterable[Rule] = RULES) -> CheckReport:
+    """Check a workbook.
+
+    Parameters
+    ----------
+    path : Path or str
+        An ``.xlsx`` or ``.xlsm`` file; it is only read.
+    rules : iterable of Rule, optional
+        The rules to apply.
+
+    Returns
+    -------
+    CheckReport
+
+    Raises
+    ------
+    InputError
+        The file is no workbook, is damaged, encrypted or hostile.
+    """
+    book = Examined.read(path)
+    return report_on(book, Path(path), rules)
+
+
+def report_on(book: Examined, path: Path, rules: Iterable[Rule] = RULES) -> CheckReport:
+    """Apply the rules to a workbook that has been examined."""
+    found = [finding for rule in rules for finding in rule(book)]
+    total = recalculated = 0
+    for key, _ in book.formulas():
+        total += 1
+        recalculated += not isinstance(book.value(key), NotEvaluated)
+    lost = sum(len(keys) for keys in book.tracing.not_traced().values())
+    findings = sorted(_folded(found), key=rank)
+    return CheckReport(path, book.workbook.sha256, total, recalculated, total - lost, findings, book)
+
+
+def _folded(findings: list[Finding]) -> Iterator[Finding]:
+    """Leave out what another finding on the same cell explains."""
+    blank = {cell for f in findings if f.kind in ("blank-input", "text-number") for cell in f.cells}
+    stale = {(f.sheet, f.cell) for f in findings if f.kind == "stale-value" and f.severity == "error"}
+    pasted = {(f.sheet, f.cell.lstrip("ABCDEFGHIJKLMNOPQRSTUVWXYZ")) for f in findings if f.kind == "pasted-number"}
+    seen: set[tuple[str, str, str]] = set()
+    for finding in findings:
+        where = f"{finding.sheet}!{finding.cell}"
+        if finding.kind == "error-value" and (where in blank or (finding.sheet, finding.cell) in stale):
+            continue
+        if FAMILY_OF[finding.kind] == "units" and where in blank:
+            continue
+        row = finding.cell.lstrip("ABCDEFGHIJKLMNOPQRSTUVWXYZ")
+        if finding.kind == "unused-input" and (finding.sheet, row) in pasted:
+            continue
+        if (finding.sheet, finding.cell, finding.kind) in seen and finding.severity == "note":
+            continue
+        seen.add((finding.sheet, finding.cell, finding.kind))
+        yield finding

@@ -1,0 +1,215 @@
+"""Lines of like formulas, down a column or along a row: what a fill is, and what interrupts it."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from doubler.check.examined import Examined, Key
+from doubler.workbook.evaluate import NotEvaluated, evaluate
+from doubler.workbook.graph import build_graph
+from doubler.workbook.model import Address, Cell, Scalar, Sheet, Workbook
+from doubler.workbook.shift import MovableFormula
+from doubler.workbook.syntax import Axis, Binary, Call, CellRef, Node, Unary
+
+WIDEST_GAP = 3
+"""Cells that may interrupt a fill one after another."""
+
+
+@dataclass(frozen=True, slots=True)
+class Gap:
+    """Cells that stand in a line of like formulas and are unlike them.
+
+    Attributes
+    ----------
+    sheet
+        The sheet.
+    cells
+        The cells, one to three.
+    before, after
+        The formula cells of the line on both sides, nearest first; `after` is empty where the line ends with the gap,
+        `before` where it begins with it.
+    down
+        Whether the line runs down a column.
+    """
+
+    sheet: str
+    cells: tuple[Address, ...]
+    before: tuple[Address, ...]
+    after: tuple[Address, ...]
+    down: bool
+
+    @property
+    def inside(self) -> bool:
+        """Whether the line goes on behind the gap."""
+        return bool(self.before and self.after)
+
+    @property
+    def model(self) -> Address:
+        """The nearest formula of the line."""
+        return (self.before or self.after)[0]
+
+
+class Fills:
+    """The formula trees of a workbook by cell, and the gaps in their lines."""
+
+    def __init__(self, book: Examined) -> None:
+        self.book = book
+        self.trees: dict[str, dict[Address, Node]] = {sheet.name: {} for sheet in book.workbook.sheets}
+        known: dict[Node, Node] = {}
+        for group in book.graph.groups:
+            if group.tree is None:
+                continue
+            tree = known.setdefault(group.tree, group.tree)
+            trees = self.trees[book.workbook.sheets[group.run.sheet].name]
+            for lane in range(group.run.count):
+                trees[group.run.cell(lane)] = tree
+
+    def gaps(self) -> Iterator[Gap]:
+        """Yield every gap of one to three cells between, before or behind like formulas."""
+        for sheet in self.book.workbook.sheets:
+            trees = self.trees[sheet.name]
+            for down in (True, False):
+                yield from self._lines(sheet, trees, down=down)
+
+    def _lines(self, sheet: Sheet, trees: dict[Address, Node], *, down: bool) -> Iterator[Gap]:
+        step = (1, 0) if down else (0, 1)
+        order = sorted(trees, key=lambda a: (a[1], a[0]) if down else a)
+        runs: list[list[Address]] = []
+        for address in order:
+            before = (address[0] - step[0], address[1] - step[1])
+            if runs and runs[-1][-1] == before and trees[before] is trees[address]:
+                runs[-1].append(address)
+            else:
+                runs.append([address])
+        by_start = {run[0]: run for run in runs}
+        for run in runs:
+            yield from self._behind(sheet, trees, run, by_start, step, down=down)
+            yield from self._ahead(sheet, run, step, down=down)
+
+    def _behind(
+        self,
+        sheet: Sheet,
+        trees: dict[Address, Node],
+        run: list[Address],
+        by_start: dict[Address, list[Address]],
+        step: Address,
+        *,
+        down: bool,
+    ) -> Iterator[Gap]:
+        gap: list[Address] = []
+        row, column = run[-1]
+        for _ in range(WIDEST_GAP):
+            row, column = row + step[0], column + step[1]
+            cell = sheet.cells.get((row, column))
+            if cell is None or (cell.formula is None and not _is_number(cell)):
+                break
+            gap.append((row, column))
+            following = by_start.get((row + step[0], column + step[1]))
+            if following is not None and trees[following[0]] is trees[run[0]]:
+                yield Gap(sheet.name, tuple(gap), tuple(reversed(run)), tuple(following), down)
+                return
+        if gap and len(run) >= 3:
+            yield Gap(sheet.name, tuple(gap[:1]), tuple(reversed(run)), (), down)
+
+    @staticmethod
+    def _ahead(sheet: Sheet, run: list[Address], step: Address, *, down: bool) -> Iterator[Gap]:
+        address = (run[0][0] - step[0], run[0][1] - step[1])
+        cell = sheet.cells.get(address)
+        if len(run) >= 3 and cell is not None and cell.formula is None and _is_number(cell):
+            yield Gap(sheet.name, (address,), (), tuple(run), down)
+
+    def same_kind_of_row(self, gap: Gap) -> bool:
+        """Return whether the rest of the gap's row (or column) is filled as that of its neighbour in the line."""
+        sheet = self.book.workbook.sheet(gap.sheet)
+        assert sheet is not None
+        trees = self.trees[gap.sheet]
+        own, model = gap.cells[0], gap.model
+        across = 1 if gap.down else 0
+        others = [a for a in sheet.cells if a[1 - across] == model[1 - across] and a != model]
+        alike = 0
+        for address in others:
+            cell = sheet.cells[address]
+            here = (own[0], address[1]) if gap.down else (address[0], own[1])
+            mine = sheet.cells.get(here)
+            if cell.formula is None and not _is_number(cell):
+                continue
+            if mine is None:
+                return False
+            if cell.formula is not None:
+                if mine.formula is None or trees.get(here) is not trees.get(address):
+                    return False
+                alike += 1
+            elif not _is_number(mine):
+                return False
+            else:
+                alike += 1
+        return alike > 0
+
+    def reads_back(self, gap: Gap) -> bool:
+        """Return whether the line's formula reads the cell before it in the line: the first cell is then its start."""
+        step = (-1, 0) if gap.down else (0, -1)
+        return any(
+            isinstance(node, CellRef)
+            and node.sheet is None
+            and _offset(node.row, step[0], gap.down)
+            and _offset(node.column, step[1], not gap.down)
+            for node in walk(self.trees[gap.sheet][gap.model])
+        )
+
+    def formula_for(self, gap: Gap, address: Address) -> str:
+        """Return the line's formula as it would stand in a cell of the gap, without its leading ``=``."""
+        sheet = self.book.workbook.sheet(gap.sheet)
+        assert sheet is not None
+        model = sheet.cells[gap.model].formula or ""
+        return MovableFormula(model).moved(address[0] - gap.model[0], address[1] - gap.model[1])
+
+    def value_with(self, key: Key, formula: str) -> Scalar | NotEvaluated:
+        """Return what a cell gives with another formula in it."""
+        return value_with(self.book.workbook, key, formula)
+
+
+def value_with(workbook: Workbook, key: Key, formula: str, wanted: Key | None = None) -> Scalar | NotEvaluated:
+    """Return the value of a cell (or of another one) in the workbook with one formula changed; the workbook stays."""
+    changed = with_formulas(workbook, {key: formula})
+    target = wanted or key
+    value: Scalar | NotEvaluated = evaluate(build_graph(changed), None, [target]).value(*target)
+    return value
+
+
+def with_formulas(workbook: Workbook, formulas: dict[Key, str]) -> Workbook:
+    """Return a copy of a workbook with some formulas in place of what stands there."""
+    from dataclasses import replace
+
+    sheets = []
+    for sheet in workbook.sheets:
+        mine = {key[1]: text for key, text in formulas.items() if key[0] == sheet.name}
+        if not mine:
+            sheets.append(sheet)
+            continue
+        cells = dict(sheet.cells)
+        for address, text in mine.items():
+            cells[address] = Cell(None, text, cells[address].style if address in cells else 0)
+        sheets.append(replace(sheet, cells=cells))
+    return replace(workbook, sheets=sheets)
+
+
+def walk(node: Node) -> Iterator[Node]:
+    """Yield a tree's nodes."""
+    yield node
+    if isinstance(node, Unary):
+        yield from walk(node.operand)
+    elif isinstance(node, Binary):
+        yield from walk(node.left)
+        yield from walk(node.right)
+    elif isinstance(node, Call):
+        for argument in node.arguments:
+            yield from walk(argument)
+
+
+def _offset(axis: Axis, number: int, moving: bool) -> bool:
+    return not axis.anchored and axis.number == (number if moving else 0)
+
+
+def _is_number(cell: Cell) -> bool:
+    return isinstance(cell.value, float) and not isinstance(cell.value, bool)

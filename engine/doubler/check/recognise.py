@@ -1,0 +1,104 @@
+"""What a labelled number is, in the trade's terms: Young's modulus, Poisson's ratio, a margin of safety.
+
+Words are matched as words and symbols as symbols, and the declared unit must agree before anything is concluded: a
+cell called E in mm is no modulus.
+"""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator
+from functools import lru_cache
+
+from doubler.check.examined import Examined, Key
+from doubler.units import kind
+
+_YOUNG = (
+    r"young'?s? modulus|young’s modulus|modulus of elasticity|elastic(?:ity)? modulus|elastic mod\.?|"
+    r"tensile modulus|e[- ]modulus"
+)
+_SHEAR = r"shear modulus|modulus of rigidity|rigidity modulus|modulus in shear"
+_BULK = r"bulk modulus|modulus of compression|volumetric modulus"
+_TERMS: tuple[tuple[str, str, str, str], ...] = (
+    # quantity, kind of unit, words, symbols
+    ("shear modulus", "stress", _SHEAR, r"G|G_?xy|G_?12"),
+    ("bulk modulus", "stress", _BULK, r"K"),
+    ("young's modulus", "stress", _YOUNG, r"E|E_?t|E_?c"),
+    ("poisson's ratio", "ratio", r"poisson(?:'s|s|’s)?(?: ratio| number)?", r"ν|nu|n_u|μ|v_?xy|v"),
+    ("margin of safety", "ratio", r"margins?(?: of safety)?|minimum margin|min\.? margin", r"M\.?S\.?|MoS"),
+    ("reserve factor", "ratio", r"reserve factors?", r"R\.?F\.?"),
+)
+_WORDS = {name: re.compile(rf"(?<![\w]){'(?:' + words + ')'}(?![\w])", re.IGNORECASE) for name, _, words, _ in _TERMS}
+_SYMBOLS = {
+    name: re.compile(rf"(?:^|[\s(,=:])(?:{symbols})(?:_\w{{1,12}})?(?=$|[\s),=:\[])") for name, _, _, symbols in _TERMS
+}
+_KINDS = {name: unit for name, unit, _, _ in _TERMS}
+_NO_MARGIN = re.compile(
+    r"\b(?:policy|required|minimum required|target|allowable margin|page|edge margin|negative margins?|count|number of|"
+    r"cases below|governing (?:case|mode|item))\b",
+    re.IGNORECASE,
+)
+_OTHER_MODULUS = re.compile(
+    r"\b(?:section|plastic|secant|tangent|reduced|effective|complex|storage|loss|foundation)\b", re.IGNORECASE
+)
+
+
+@lru_cache(maxsize=65536)
+def quantity_of(words: str) -> str | None:
+    """Return the quantity that a label names; None for none of those known here.
+
+    Examples
+    --------
+    >>> quantity_of("Shear modulus G [MPa]"), quantity_of("ν"), quantity_of("Edge distance E")
+    ('shear modulus', "poisson's ratio", "young's modulus")
+    """
+    if _OTHER_MODULUS.search(words):
+        return None
+    for name, pattern in _WORDS.items():
+        if pattern.search(words):
+            return name
+    for name, pattern in _SYMBOLS.items():
+        if pattern.search(words):
+            return name
+    return None
+
+
+def is_named(words: str, quantity: str) -> bool:
+    """Return whether a label names a quantity by its words and not only by a symbol."""
+    return bool(_WORDS[quantity].search(words))
+
+
+def quantities(book: Examined) -> Iterator[tuple[Key, str]]:
+    """Yield every cell that holds a number whose label and unit say what it is."""
+    for sheet in book.workbook.sheets:
+        for address, cell in sheet.cells.items():
+            if cell.formula is None and not isinstance(cell.value, float):
+                continue
+            key = (sheet.name, address)
+            name = quantity_at(book, key)
+            if name is not None:
+                yield key, name
+
+
+def quantity_at(book: Examined, key: Key) -> str | None:
+    """Return the quantity that a cell holds, or None; label and declared unit must agree."""
+    label = book.label(key)
+    declared = book.declarations.unit(*key)
+    texts = list(dict.fromkeys((" ".join(label.left), *label.above[:3], label.name.replace("_", " "))))
+    for words in texts:
+        name = quantity_of(words) if words else None
+        if name is None:
+            continue
+        if name == "margin of safety" and _NO_MARGIN.search(words):
+            return None
+        if _agrees(declared, name, words):
+            return name
+    return None
+
+
+def _agrees(declared: object, name: str, words: str) -> bool:
+    wanted = kind(_KINDS[name]).dimension
+    if declared is None:
+        return _KINDS[name] == "ratio" or is_named(words, name)
+    unit = declared.unit  # type: ignore[attr-defined]  # a Declared
+    return bool(unit.dimension == wanted)

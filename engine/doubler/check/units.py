@@ -1,0 +1,24 @@
+"""Findings about units, taken from the trace of units through the workbook."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+
+from doubler.check.examined import Examined, cell_name_of
+from doubler.check.finding import Finding
+
+
+def unit_findings(book: Examined) -> Iterator[Finding]:
+    """Turn the faults of the trace into findings."""
+    for fault in book.tracing.findings:
+        yield Finding(
+            fault.sheet,
+            fault.place,
+            fault.kind,
+            fault.severity,
+            fault.message,
+            fault.found,
+            fault.expected,
+            tuple(cell_name_of(key) for key in fault.cells),
+            tuple(cell_name_of(key) for key in fault.follows),
+        )

@@ -1,0 +1,83 @@
+"""The verbs `check` and `explain`."""
+
+from __future__ import annotations
+
+import argparse
+import json
+import sys
+from collections.abc import Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from doubler.cli.progress import progress
+from doubler.cli.terminal import CAUTION, console
+
+if TYPE_CHECKING:
+    from doubler.check.examination import CheckReport
+
+_STYLES = {"error": "bold red", "warning": "yellow", "note": "cyan"}
+
+
+def run_check(options: argparse.Namespace) -> int:
+    """Check workbooks, worst finding first."""
+    from doubler.check.examination import check
+    from doubler.workbook.output import refuse_target, write_file
+
+    paths = [Path(book) for book in options.books]
+    if options.json and options.json != "-":
+        refuse_target(Path(options.json))
+    reports = []
+    with progress("checking", len(paths)) as advance:
+        for path in paths:
+            reports.append(check(path))
+            advance(1)
+    text = json.dumps([report.as_object() for report in reports], ensure_ascii=False, indent=1)
+    if options.json == "-":
+        print(text)
+    else:
+        show_reports(reports)
+    if options.json and options.json != "-":
+        write_file(Path(options.json), [text.encode(), b"\n"])
+        print(f"findings written to {options.json}", file=sys.stderr)
+    return 1 if any(report.counts["error"] for report in reports) else 0
+
+
+def show_reports(reports: Sequence[CheckReport]) -> None:
+    """Print the findings of each workbook as a table, worst first."""
+    from rich import box
+    from rich.table import Table
+    from rich.text import Text
+
+    screen = console()
+    for report in reports:
+        counts = report.counts
+        title = Text(report.path.name, "bold")
+        title.append(
+            f"   {report.formulas} formulas, {report.recalculated} recalculated, {report.traced} traced through "
+            "their units",
+            "dim",
+        )
+        screen.print(title)
+        if not report.findings:
+            screen.print(Text("  Nothing found: every formula was recalculated and every unit traced.", "green"))
+            screen.print()
+            continue
+        table = Table(box=box.SIMPLE_HEAD, show_edge=False, pad_edge=False)
+        table.add_column("", no_wrap=True)
+        table.add_column("cell", no_wrap=True, max_width=28)
+        table.add_column("kind", no_wrap=True)
+        table.add_column("what, and what to write", ratio=1)
+        for finding in report.findings:
+            style = _STYLES[finding.severity]
+            follows = f" ({len(finding.follows)} cells follow from it)" if finding.follows else ""
+            table.add_row(
+                Text(finding.severity, style),
+                f"{finding.sheet}!{finding.cell}",
+                Text(finding.kind, style),
+                finding.message + follows,
+            )
+        screen.print(table)
+        summary = ", ".join(f"{n} {word if n == 1 else word + 's'}" for word, n in counts.items() if n)
+        screen.print(Text(f"  {summary}", "bold"))
+        screen.print()
+    screen.print(Text(CAUTION, "dim"))
