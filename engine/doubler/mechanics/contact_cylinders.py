@@ -172,14 +172,14 @@ def cylinders_shear(contact_pressure: Pressure, poissons_ratio: Ratio) -> Stress
     Returns
     -------
     stress : stress
-        Shear stress, not negative. From Poisson's ratio 0.244 on it is 0.300 of the pressure, at 0.786 of the
+        Shear stress, not negative. From Poisson's ratio 0.243 on it is 0.300 of the pressure, at 0.786 of the
         half width.
 
     Notes
     -----
     Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
     pressure beyond yield flattens the surfaces. On the middle plane, in plane strain: with a Poisson's ratio
-    below 0.244 the stress along the cylinders is the smallest in size and the shear on planes inclined to
+    below 0.243 the stress along the cylinders is the smallest in size and the shear on planes inclined to
     them governs (the second term). Friction raises it and brings it to the surface.
 
     References
