@@ -10,6 +10,7 @@ from dataclasses import dataclass
 
 from openpyxl import Workbook
 from openpyxl.styles import Alignment, Border, Font, PatternFill, Side
+from openpyxl.worksheet.properties import PageSetupProperties
 from openpyxl.worksheet.worksheet import Worksheet
 
 NAME = "colleague_bracket.xlsx"
@@ -143,6 +144,10 @@ def build() -> Workbook:
         cases.cell(row, 7, f"=F{row}/E{row}-1").number_format = "0.00"
         for column in range(1, 8):
             cases.cell(row, column).font = Font(name="Arial", size=10)
+    for sheet in book.worksheets:
+        sheet.sheet_properties.pageSetUpPr = PageSetupProperties(fitToPage=True)
+        sheet.page_setup.fitToWidth, sheet.page_setup.fitToHeight = 1, 0
+        sheet.page_setup.paperSize = 9
     return book
 
 

@@ -108,6 +108,16 @@ def test_impossible_geometry_or_material_has_no_result(name: str, given: dict[st
     assert isinstance(result, ErrorValue)
 
 
+def test_a_changed_unit_cell_shows_as_a_difference() -> None:
+    opened = template("tension_strap.xlsx")
+    port = opened.inputs["load_axial"]
+    row, column = port.address
+    values = evaluate(opened.graph, {(port.sheet, (row, column + 1)): "kip"})
+    stress = opened.outputs["net_stress"].address
+    assert values.value("Strap", stress) == pytest.approx(96 * 4448.2216152605 / (47.8 * 16), rel=1e-12)
+    assert abs(values.value("Strap", (stress[0], 7))) > 0.5
+
+
 def test_no_load_has_the_largest_margin_that_is_reported() -> None:
     opened = template("shaft.xlsx")
     loads = ("load_transverse", "load_axial", "torque")
