@@ -17,7 +17,7 @@ def run(name: str, text: str) -> str:
     """Run the examples in a docstring, and return what differs."""
     test = doctest.DocTestParser().get_doctest(text, {"cell": cell}, name, None, None)
     report: list[str] = []
-    doctest.DocTestRunner(verbose=False).run(test, out=report.append)
+    doctest.DocTestRunner(verbose=False, optionflags=doctest.NORMALIZE_WHITESPACE).run(test, out=report.append)
     return "".join(report)
 
 
