@@ -20,26 +20,40 @@ _STYLES = {"error": "bold red", "warning": "yellow", "note": "cyan"}
 
 def run_check(options: argparse.Namespace) -> int:
     """Check workbooks, worst finding first."""
-    from doubler.check.examination import check
     from doubler.workbook.output import refuse_target, write_file
 
     paths = [Path(book) for book in options.books]
     if options.json and options.json != "-":
         refuse_target(Path(options.json))
-    reports = []
-    with progress("checking", len(paths)) as advance:
-        for path in paths:
-            reports.append(check(path))
-            advance(1)
+    reports = check_books(paths)
+    records = []
+    if options.record:
+        from doubler.check.record import write_record
+
+        records = [write_record(report, Path(options.record)) for report in reports]
     text = json.dumps([report.as_object() for report in reports], ensure_ascii=False, indent=1)
     if options.json == "-":
         print(text)
     else:
         show_reports(reports)
+    for record in records:
+        print(f"check record of {record.name}: {record.html}", file=sys.stderr)
     if options.json and options.json != "-":
         write_file(Path(options.json), [text.encode(), b"\n"])
         print(f"findings written to {options.json}", file=sys.stderr)
     return 1 if any(report.counts["error"] for report in reports) else 0
+
+
+def check_books(paths: Sequence[Path]) -> list[CheckReport]:
+    """Check workbooks one after the other, with a bar on a terminal."""
+    from doubler.check.examination import check
+
+    reports = []
+    with progress("checking", len(paths)) as advance:
+        for path in paths:
+            reports.append(check(path))
+            advance(1)
+    return reports
 
 
 def show_reports(reports: Sequence[CheckReport]) -> None:
