@@ -258,6 +258,7 @@ class Binder:
         area = self._cut(sheet, full)
         rows, columns = area.last_row - area.first_row + 1, area.last_column - area.first_column + 1
         whole = (full.last_row - full.first_row + 1, full.last_column - full.first_column + 1)
+        corner = (area.first_row, area.first_column)
         nodes = self.occupancy[sheet].groups(area)
         if not nodes:
             values = [
@@ -266,7 +267,7 @@ class Binder:
                 for column in range(area.first_column, area.last_column + 1)
             ]
             data = from_scalars(values, (rows, columns, 1, 1))
-            return constant(Grid(rows, columns, data=data, reference=True, whole=whole))
+            return constant(Grid(rows, columns, data=data, reference=True, whole=whole, place=corner))
         if cells_in(area) <= SMALL_AREA:
             readers = [
                 self.single(sheet, row, column)
@@ -275,7 +276,9 @@ class Binder:
             ]
 
             def gather(store: Store) -> Grid:
-                return Grid(rows, columns, cells=[read(store) for read in readers], reference=True, whole=whole)
+                return Grid(
+                    rows, columns, cells=[read(store) for read in readers], reference=True, whole=whole, place=corner
+                )
 
             return self._kept(gather, nodes)
         parts = [
@@ -290,7 +293,7 @@ class Binder:
                 concatenated([broadcast(piece, (piece.shape[0], 1, 1, cases)) for piece in column], 0)
                 for column in pieces
             ]
-            return Grid(rows, columns, data=concatenated(stacked, 1), reference=True, whole=whole)
+            return Grid(rows, columns, data=concatenated(stacked, 1), reference=True, whole=whole, place=corner)
 
         return self._kept(assemble, nodes)
 

@@ -65,8 +65,7 @@ Lanes: TypeAlias = "Scalar | Array"
 
 
 class Grid:
-    """A rectangle of cells: made of one array with axes (rows, columns, copies, cases), or of a list of
-    cells.
+    """A rectangle of cells, made of one array with axes (rows, columns, copies, cases) or of a list of cells.
 
     Attributes
     ----------
@@ -78,9 +77,11 @@ class Grid:
         What functions worked out about the grid and may need again (an order for searching, say).
     reference
         True where it was read from cells of a sheet, so that text and logicals in it are skipped by sums.
+    place
+        Row and column of its first cell, where it was read from a rectangle that does not move.
     """
 
-    __slots__ = ("_cells", "_data", "columns", "memo", "reference", "rows", "whole")
+    __slots__ = ("_cells", "_data", "columns", "memo", "place", "reference", "rows", "whole")
 
     def __init__(
         self,
@@ -91,11 +92,13 @@ class Grid:
         cells: list[Any] | None = None,
         reference: bool = False,
         whole: tuple[int, int] | None = None,
+        place: tuple[int, int] | None = None,
     ) -> None:
         self.rows = rows
         self.columns = columns
         self.reference = reference
         self.whole = whole or (rows, columns)
+        self.place = place
         self._data = data
         self._cells = cells
         self.memo: dict[Any, Any] = {}
@@ -131,14 +134,15 @@ class Grid:
 
     def part(self, row: int, column: int, rows: int, columns: int) -> Grid:
         """Return a rectangle out of this one, its first row and column counted from 0."""
+        place = None if self.place is None else (self.place[0] + row, self.place[1] + column)
         if self._cells is None:
             assert self._data is not None
             cut = (slice(row, row + rows), slice(column, column + columns))
-            return Grid(rows, columns, data=self._data[cut], reference=self.reference)
+            return Grid(rows, columns, data=self._data[cut], reference=self.reference, place=place)
         cells = [
             self._cells[r * self.columns + c] for r in range(row, row + rows) for c in range(column, column + columns)
         ]
-        return Grid(rows, columns, cells=cells, reference=self.reference)
+        return Grid(rows, columns, cells=cells, reference=self.reference, place=place)
 
     def lanes_shape(self) -> tuple[int, int]:
         """Return the shape over which its cells vary."""

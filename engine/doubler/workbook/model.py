@@ -61,6 +61,12 @@ class Area:
         row, column = address
         return self.first_row <= row <= self.last_row and self.first_column <= column <= self.last_column
 
+    def addresses(self) -> Iterator[Address]:
+        """Yield its cells row by row."""
+        for row in range(self.first_row, self.last_row + 1):
+            for column in range(self.first_column, self.last_column + 1):
+                yield row, column
+
 
 @dataclass(frozen=True, slots=True)
 class DefinedName:

@@ -105,8 +105,45 @@ def quotient(left: Any, right: Any) -> Any:
     return divide(left, right)
 
 
+NEAR = 1e-14
+"""Two numbers that differ by less, relative to the larger, may agree in the 15 digits that comparison looks at."""
+
+
+def alike(left: float, right: float) -> bool:
+    """Whether two numbers agree in the 15 significant digits that a spreadsheet program shows and compares.
+
+    Examples
+    --------
+    >>> alike(0.1 + 0.2, 0.3)
+    True
+    """
+    if left == right:
+        return True
+    if abs(left - right) > NEAR * max(abs(left), abs(right)):
+        return False
+    return f"{left:.14e}" == f"{right:.14e}"
+
+
+def _compared(ufunc: Callable[..., Any], left: Any, right: Any) -> Any:
+    """Compare numbers at 15 digits: lanes that differ beyond these count as equal."""
+    truth = ufunc(left, right)
+    with np.errstate(over="ignore"):
+        apart = np.abs(np.subtract(left, right))
+        near = (apart <= NEAR * np.abs(left)) & (apart > 0.0)
+    if near.any():
+        truth = np.array(truth)
+        shape = truth.shape
+        a, b = np.broadcast_to(left, shape), np.broadcast_to(right, shape)
+        for lane in zip(*np.nonzero(near), strict=True):
+            if alike(float(a[lane]), float(b[lane])):
+                truth[lane] = bool(ufunc(0.0, 0.0))
+    return truth
+
+
 def _comparison(ufunc: Callable[..., Any], holds: Callable[[int], bool]) -> Callable[[Any, Any], Any]:
     def single(left: Any, right: Any) -> Any:
+        if type(left) is float and type(right) is float and alike(left, right):
+            return holds(0)
         order = compare(left, right)
         return order if isinstance(order, ErrorValue) else holds(order)
 
@@ -118,8 +155,8 @@ def _comparison(ufunc: Callable[..., Any], holds: Callable[[int], bool]) -> Call
             b is float or (b is np.ndarray and right.dtype is F8)
         ):
             if a is float and b is float:
-                return bool(ufunc(left, right))
-            return ufunc(left, right)
+                return holds(0) if alike(left, right) else bool(ufunc(left, right))
+            return _compared(ufunc, left, right)
         return over_lanes(left, right)
 
     return rule

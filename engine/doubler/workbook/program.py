@@ -12,6 +12,7 @@ from typing import Any, TypeAlias
 
 from doubler.errors import ErrorValue
 from doubler.workbook.coerce import CannotEvaluateError
+from doubler.workbook.given_ranges import cut_at_index, met_by_own_place, over_cells, top_left
 from doubler.workbook.lanes import Grid, from_scalars
 from doubler.workbook.lift import NumericRule, ScalarRule
 from doubler.workbook.natives.registry import NATIVES, OMITTED, Native
@@ -34,6 +35,8 @@ from doubler.workbook.syntax import (
 )
 
 REFERENCE_OPERATORS = {":", ",", " "}
+CHOOSES_A_REFERENCE = {"IF", "IFS", "CHOOSE", "SWITCH"}
+"""Functions that give one of their arguments as it is, a range as a range."""
 
 
 class Frame:
@@ -51,19 +54,30 @@ class Frame:
         Sheet name, row and column of the group's first cell.
     date1904
         Whether the workbook counts days from 1904.
+    steps
+        By how many rows and columns each copy lies beyond the one before.
     refusals
         Lanes in which one of our functions gave an error value, and why.
     """
 
-    __slots__ = ("cell", "copies", "date1904", "readers", "refusals", "store", "variables")
+    __slots__ = ("cell", "copies", "date1904", "readers", "refusals", "steps", "store", "variables")
 
-    def __init__(self, readers: list[Any], store: Any, cell: tuple[str, int, int], copies: int, date1904: bool) -> None:
+    def __init__(
+        self,
+        readers: list[Any],
+        store: Any,
+        cell: tuple[str, int, int],
+        copies: int,
+        date1904: bool,
+        steps: tuple[int, int] = (0, 0),
+    ) -> None:
         self.readers = readers
         self.store = store
         self.variables: dict[int, Any] = {}
         self.cell = cell
         self.copies = copies
         self.date1904 = date1904
+        self.steps = steps
         self.refusals: list[tuple[Any, str]] = []
 
 
@@ -181,7 +195,8 @@ class Compiler:
         if isinstance(node, Binary):
             return self._binary(node, array)
         if isinstance(node, Call):
-            return self._call(node, array)
+            step = self._call(node, array)
+            return met_by_own_place(step) if node.name == "INDEX" and not array else step
         if isinstance(node, ArrayLiteral):
             return self._array(node)
         if isinstance(node, NameRef):
@@ -210,6 +225,22 @@ class Compiler:
         return lambda frame: rule(left(frame), right(frame))
 
     def _joined_reference(self, node: Binary) -> Step:
+        """Return the step of ``A1:INDEX(A1:A9, n)``: the rectangle over both is read, and cut where INDEX points."""
+        call = node.right
+        if (
+            node.operator == ":"
+            and isinstance(node.left, CellRef)
+            and isinstance(call, Call)
+            and call.name == "INDEX"
+            and 2 <= len(call.arguments) <= 3
+            and isinstance(call.arguments[0], RangeRef)
+        ):
+            hull = self.slot(Binary(":", node.left, call.arguments[0]), "grid")
+            start, table = self.slot(node.left, "place"), self.slot(call.arguments[0], "place")
+            numbers = [self.value(argument, False) for argument in call.arguments[1:]]
+            return lambda frame: cut_at_index(
+                hull(frame), start(frame), table(frame), [number(frame) for number in numbers]
+            )
         raise CannotEvaluateError(f"a reference that is computed, joined by {node.operator!r}, is not evaluated here")
 
     def _array(self, node: ArrayLiteral) -> Step:
@@ -237,7 +268,8 @@ class Compiler:
         self.variables[node.name.casefold()] = self.count
         return self.count
 
-    def _call(self, node: Call, array: bool) -> Step:
+    def _call(self, node: Call, array: bool, whole: bool = False) -> Step:
+        """Return the step of a call; `whole` where its result is taken as a range, as in SUM(IF(…))."""
         if node.name == "LET":
             return self._let(node, array)
         if node.name == "LAMBDA":
@@ -251,23 +283,31 @@ class Compiler:
         if kinds is None:
             raise CannotEvaluateError(f"{node.name} takes {function.arity} arguments, not {len(node.arguments)}")
         self.reads_own_place = self.reads_own_place or function.with_frame
-        steps = [self.argument(a, kind, array) for a, kind in zip(node.arguments, kinds, strict=True)]
+        whole = whole and node.name in CHOOSES_A_REFERENCE
+        steps = [self.argument(a, kind, array, whole) for a, kind in zip(node.arguments, kinds, strict=True)]
         return self._invoke(function, kinds, steps)
 
-    def argument(self, node: Node, kind: str, array: bool) -> Step:
+    def argument(self, node: Node, kind: str, array: bool, whole: bool = False) -> Step:
         """Return the step that gives an argument in the way a native function wants it."""
         if kind == "l":
+            if whole and (is_reference(node) or isinstance(node, Call)):
+                chosen = self.argument(node, "r", array)
+                return lambda frame: lambda: chosen(frame)
             inner = self.value(node, array)
             return lambda frame: lambda: inner(frame)
         if kind == "o":
             return (lambda _: OMITTED) if isinstance(node, Omitted) else self.value(node, array)
+        if kind == "b" and isinstance(node, Omitted):
+            return lambda _: OMITTED
         if kind == "p":
             if is_reference(node):
                 return self.slot(node, "place")
             raise CannotEvaluateError("a function that wants a reference is given something that is computed")
-        if kind in "ra" and is_reference(node):
+        if kind in "rab" and is_reference(node):
             return self.slot(node, "grid")
-        return self.value(node, array or kind == "a")
+        if kind in "rab" and isinstance(node, Call) and node.name not in {"LET", "LAMBDA"}:
+            return self._call(node, array or kind in "ab", whole=True)
+        return self.value(node, array or kind in "ab")
 
     def _invoke(self, function: Native, kinds: str, steps: list[Step]) -> Step:
         rule = function.rule
@@ -289,7 +329,7 @@ class Compiler:
         shadowed = dict(self.variables)
         assignments = []
         for at in range(0, len(node.arguments) - 1, 2):
-            step = self.value(node.arguments[at + 1], array)
+            step = self.argument(node.arguments[at + 1], "r", array)
             assignments.append((self.bind(node.arguments[at]), step))
         body = self.value(node.arguments[-1], array)
         self.variables = shadowed
@@ -330,39 +370,3 @@ class Compiler:
             self.argument(argument, "o" if isinstance(argument, Omitted) else "a", array) for argument in node.arguments
         ]
         return lambda frame: rule(frame.refusals, [step(frame) for step in steps])
-
-
-def top_left(value: Any) -> Any:
-    """Return a grid's first cell; anything else as it is."""
-    if isinstance(value, tuple):
-        value = value[0]
-    return value.cell(0, 0) if isinstance(value, Grid) else value
-
-
-def over_cells(rule: Callable[..., Any], kinds: str) -> Callable[..., Any]:
-    """Apply a rule that wants single values to each cell of the grids that are given in their place."""
-
-    def run(*arguments: Any) -> Any:
-        shift = len(arguments) - len(kinds)
-        given = arguments[shift:]
-        grids = [a for a, kind in zip(given, kinds, strict=True) if kind in "vo" and isinstance(a, Grid)]
-        if not grids:
-            return rule(*arguments)
-        rows, columns = max(g.rows for g in grids), max(g.columns for g in grids)
-        cells = []
-        for row in range(rows):
-            for column in range(columns):
-                here = [
-                    _cell_of(a, row, column) if kind in "vo" and isinstance(a, Grid) else a
-                    for a, kind in zip(given, kinds, strict=True)
-                ]
-                cells.append(top_left(rule(*arguments[:shift], *here)))
-        return Grid(rows, columns, cells=cells)
-
-    return run
-
-
-def _cell_of(grid: Grid, row: int, column: int) -> Any:
-    row = 0 if grid.rows == 1 else row
-    column = 0 if grid.columns == 1 else column
-    return grid.cell(row, column) if row < grid.rows and column < grid.columns else ErrorValue.NA

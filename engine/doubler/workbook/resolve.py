@@ -23,6 +23,7 @@ from doubler.workbook.syntax import (
     TableRef,
     Unary,
 )
+from doubler.workbook.written_references import DYNAMIC, constant_reference, sized_like
 
 DEEPEST = 64
 """How deep defined names may stand on other names."""
@@ -95,6 +96,10 @@ class Resolver:
             arguments[-1] = self._node(arguments[-1], sheet, host, bound, depth)
             return Call(node.name, tuple(arguments))
         resolved = tuple(self._node(argument, sheet, host, bound, depth) for argument in arguments)
+        if node.name in DYNAMIC:
+            return self._node(constant_reference(node.name, resolved, host, sheet.name), sheet, host, bound, depth + 1)
+        if node.name in {"SUMIF", "AVERAGEIF"} and len(resolved) == 3:
+            resolved = (resolved[0], resolved[1], sized_like(resolved[2], resolved[0]))
         if node.name.casefold() in bound:
             return Apply(NameRef(node.name), resolved)
         named = self._names.get((node.name.casefold(), None))
@@ -177,5 +182,7 @@ def _holds_names(node: Node) -> bool:
     if isinstance(node, Call):
         from doubler.workbook.natives import NATIVES
 
+        if node.name in DYNAMIC or (node.name in {"SUMIF", "AVERAGEIF"} and len(node.arguments) == 3):
+            return True
         return node.name not in NATIVES or any(_holds_names(argument) for argument in node.arguments)
     return False

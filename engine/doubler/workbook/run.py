@@ -39,7 +39,7 @@ class Plan:
             run = group.run
             readers = [self.binder.reader(slot, run) for slot in group.program.slots]
             cell = (self.graph.workbook.sheets[run.sheet].name, run.row, run.column)
-            frame = Frame(readers, self.store, cell, run.count, self.graph.workbook.date1904)
+            frame = Frame(readers, self.store, cell, run.count, self.graph.workbook.date1904, (run.down, run.across))
             self.frames[index] = frame
         return frame
 
@@ -101,6 +101,10 @@ class CaseRun:
         if outputs is None:
             outputs = [(sheet.name, address) for sheet, address, _ in self.graph.workbook.formulas()]
             outputs += [(self.graph.workbook.sheets[s].name, (r, c)) for s, r, c in self.plan.nodes]
+            for group in self.graph.groups:
+                if group.area is not None:
+                    name = self.graph.workbook.sheets[group.run.sheet].name
+                    outputs += [(name, address) for address in group.area.addresses()]
         found = []
         for sheet, (row, column) in dict.fromkeys(outputs):
             index = self._sheet(sheet)

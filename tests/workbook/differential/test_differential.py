@@ -10,12 +10,12 @@ import numpy as np
 import openpyxl
 import pytest
 import yaml
-from workbook.differential.sheet import CASES, COLUMN, FOLDER, Line, lines, placed, write
 
 from doubler.errors import ErrorValue
 from doubler.workbook.evaluate import Evaluation, NotEvaluated, evaluate
 from doubler.workbook.graph import build_graph
 from doubler.workbook.reader import read_workbook
+from workbook.differential.sheet import CASES, COLUMN, FOLDER, Line, lines, placed, write
 
 TOLERANCE = 1e-12
 
@@ -46,7 +46,6 @@ def recalculated(folder: Path, chosen: list[Line]) -> list[dict[tuple[int, int],
 
 def evaluated(folder: Path, chosen: list[Line]) -> Evaluation:
     """Return what we give, all cases at once."""
-
 
     path = folder / "ours.xlsx"
     write(path, 0, chosen)
@@ -110,6 +109,8 @@ def test_every_formula_gives_what_the_spreadsheet_program_gives(tmp_path: Path) 
     found = {item["formula"]: item for item in compare(tmp_path, chosen)}
     unexplained = [item for text, item in found.items() if text not in known]
     assert not unexplained, "\n".join(map(str, unexplained))
+    reasons = yaml.safe_load((FOLDER / "reasons.yaml").read_text(encoding="utf-8"))
+    assert {item["reason"] for item in known.values()} == set(reasons)
     assert set(known) == set(found), "differences listed that are none any more"
     for text, item in found.items():
         assert item["ours"] == known[text]["ours"], text

@@ -48,10 +48,44 @@ none                no unit rule: the result is not traced
 ==================  ====================================================================================
 """
 
-from doubler.workbook.natives import aggregates, criteria, information, logical, lookup, mathematics, rounding
+from doubler.workbook.natives import (
+    aggregates,
+    conversion,
+    criteria,
+    dates,
+    functional,
+    information,
+    logical,
+    lookup,
+    mathematics,
+    matrices,
+    positions,
+    regression,
+    rounding,
+    statistics,
+    subtotals,
+    texts,
+)
 from doubler.workbook.natives.registry import NATIVES, OMITTED, Native, native
 
-TOPICS = (aggregates, criteria, information, logical, lookup, mathematics, rounding)
+TOPICS = (
+    aggregates,
+    conversion,
+    criteria,
+    dates,
+    functional,
+    information,
+    logical,
+    lookup,
+    mathematics,
+    matrices,
+    positions,
+    regression,
+    rounding,
+    statistics,
+    subtotals,
+    texts,
+)
 """The modules that declare native functions."""
 
 __all__ = ["NATIVES", "OMITTED", "TOPICS", "Native", "native"]

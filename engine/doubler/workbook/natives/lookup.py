@@ -58,6 +58,19 @@ def _position_error(number: Any) -> Any:
     return value // 1.0 if value >= 1.0 else ErrorValue.VALUE
 
 
+def _checked(found: Any, key: Any, number: Any, size: int) -> Any:
+    """Let a column or row number beyond the table be #REF! whether the key is found or not; an error key stands."""
+    if type(number) is float and number <= size:
+        return found
+
+    def single(value: Any, one_key: Any, one_number: Any) -> Any:
+        if isinstance(one_key, ErrorValue) or isinstance(one_number, ErrorValue) or one_number <= size:
+            return value
+        return ErrorValue.REF
+
+    return lane_by_lane(single, [found, key, number])
+
+
 @native("VLOOKUP", arguments="vrv;v", units="lookup:2")
 def vertical(key: Any, table: Any, column: Any, approximate: Any = True) -> Any:
     """Find the key in the first column and return that row's entry of another column."""
@@ -66,9 +79,7 @@ def vertical(key: Any, table: Any, column: Any, approximate: Any = True) -> Any:
     if isinstance(number, ErrorValue):
         return number
     row = _searched(key, _first_line(table, False), _approximate(approximate))
-    if isinstance(row, ErrorValue):
-        return ErrorValue.REF if row is ErrorValue.NA and type(number) is float and number > table.columns else row
-    return pick(table, row, _before(number))
+    return _checked(pick(table, row, _before(number)), key, number, table.columns)
 
 
 @native("HLOOKUP", arguments="vrv;v", units="lookup:2")
@@ -79,9 +90,7 @@ def horizontal(key: Any, table: Any, row: Any, approximate: Any = True) -> Any:
     if isinstance(number, ErrorValue):
         return number
     column = _searched(key, _first_line(table, True), _approximate(approximate))
-    if isinstance(column, ErrorValue):
-        return ErrorValue.REF if column is ErrorValue.NA and type(number) is float and number > table.rows else column
-    return pick(table, _before(number), column)
+    return _checked(pick(table, _before(number), column), key, number, table.rows)
 
 
 _after = NumericRule(lambda place: place + 1.0)

@@ -95,8 +95,8 @@ def native(
         repeats. ``v`` one value (a range meets the formula's own row or column, or is taken cell by cell in
         an array formula); ``o`` the same, and `OMITTED` where it is left out between commas, in place of an
         empty value; ``r`` a range or value, as a `Grid` where it is a range or a cell; ``a`` the same, its
-        expression evaluated as in an array formula; ``p`` the place of a reference; ``l`` unevaluated, as a
-        function of no argument.
+        expression evaluated as in an array formula; ``b`` as ``a``, and `OMITTED` where it is left out; ``p``
+        the place of a reference; ``l`` unevaluated, as a function of no argument.
     units : str
         Name of the unit rule.
     with_frame : bool

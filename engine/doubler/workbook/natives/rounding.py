@@ -10,6 +10,9 @@ from doubler.errors import ErrorValue
 from doubler.workbook.lift import NumericRule, refused
 from doubler.workbook.natives.registry import native
 
+LARGEST_QUOTIENT = 2.0**50
+"""From here on MOD has no result: the remainder would be lost in the quotient's last digits."""
+
 _POWERS = 10.0 ** np.arange(0, 309, dtype=np.float64)
 
 
@@ -86,9 +89,9 @@ native("INT", arguments="v", units="rounded")(NumericRule(np.floor))
 def _remainder(number: Any, divisor: Any) -> Any:
     none = np.equal(divisor, 0.0)
     safe = np.where(none, 1.0, divisor)
-    result = np.fmod(number, safe)
-    result = np.where((result != 0.0) & ((result < 0.0) != (safe < 0.0)), result + safe, result)
-    return refused(_plain_zero(result), none)
+    quotient = np.divide(number, safe)
+    result = number - safe * np.floor(quotient)
+    return refused(_plain_zero(result), none | (np.abs(quotient) >= LARGEST_QUOTIENT))
 
 
 def _division_fault(_: float, divisor: float) -> ErrorValue:
