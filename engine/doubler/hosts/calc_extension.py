@@ -94,9 +94,14 @@ def idl(functions: Sequence[HostFunction]) -> str:
 
 
 def _parameters(function: HostFunction) -> str:
-    """Give the document first (Calc fills it in); `any` takes every form; only a range type lets an error through."""
-    kind = "com::sun::star::table::XCellRange" if function.name == REASON else "any"
-    names = [f"[in] {kind} {key}" for key in parameter_names(function)]
+    """Give the types: the document comes first, and Calc fills it in.
+
+    Calc lets only arguments of type `any` be left out; only an `XCellRange` lets a cell through that holds an error.
+    """
+    kinds = ("sequence< sequence<any> >", "any")
+    known = ["com::sun::star::table::XCellRange"] if function.name == REASON else []
+    known = known or [kinds[argument.optional] for argument in function.arguments]
+    names = [f"[in] {kind} {key}" for kind, key in zip(known, parameter_names(function), strict=True)]
     return ", ".join(["[in] com::sun::star::beans::XPropertySet caller", *names])
 
 

@@ -179,7 +179,7 @@ class Session:
         for index in range(known.getCount()):
             entry = {item.Name: item.Value for item in known.getByIndex(index)}
             if entry["Name"].startswith(prefix):
-                arguments = [[a.Name, a.Description, a.IsOptional] for a in entry["Arguments"]]
+                arguments = [[a.Name, a.Description, a.IsOptional] for a in entry["Arguments"] or ()]
                 found[entry["Name"]] = [entry["Description"], entry["Category"], arguments]
         return found
 

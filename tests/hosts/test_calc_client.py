@@ -1,0 +1,187 @@
+"""The client inside LibreOffice and its worker: values there and back, restart, time-out, versions, no orphan."""
+
+import ast
+import math
+import os
+import struct
+import sys
+import textwrap
+import time
+from pathlib import Path
+
+import pytest
+
+from doubler.hosts import calc_blanks, calc_client
+from doubler.hosts.calc_client import Client, cell_argument, error_number, trimmed
+from doubler.hosts.calc_extension import settings
+
+AXIAL = ("12 kN", "150 mm^2", "MPa")
+
+
+@pytest.fixture
+def client():
+    made = Client(settings())
+    yield made
+    made.stop()
+
+
+def fake(tmp_path, body):
+    """A worker that misbehaves; it greets as the real one does."""
+    own = settings()
+    greeting = {"protocol": 1, "version": own["version"], "digest": own["digest"]}
+    script = tmp_path / "worker.py"
+    script.write_text(
+        f"import sys, json, time, os\nmarker = {str(tmp_path / 'died')!r}\n"
+        f"print(json.dumps({greeting!r}), flush=True)\n{textwrap.dedent(body)}"
+    )
+    return {**own, "command": [sys.executable, str(script)], "timeout": 0.5}
+
+
+def code_of(value):
+    assert math.isnan(value)
+    return struct.unpack("<Q", struct.pack("<d", value))[0] & 0xFFFF
+
+
+def test_a_call_gives_a_grid_and_a_range_is_one_call(client):
+    assert client.call("STRESS_AXIAL", AXIAL) == ((80.0,),)
+    column = (("kN",), (1.0,), (2.0,), ("",), ("",))
+    before = client._serial
+    assert client.call("STRESS_AXIAL", (column, "100 mm^2", "MPa")) == ((10.0,), (20.0,))
+    assert client._serial == before + 1
+
+
+def test_errors_are_true_error_values_and_their_reason_is_told(client):
+    [[value]] = client.call("STRESS_AXIAL", ("12 kN", "0 mm^2", "MPa"))
+    assert code_of(value) == 503
+    assert "area" in client.reason("STRESS_AXIAL", ("12 kN", "0 mm^2", "MPa"))
+    [[value]] = client.call("STRESS_AXIAL", ((("",),), 150.0, "N-mm"))
+    assert code_of(value) == 519
+    assert "empty" in client.reason("STRESS_AXIAL", ((("",),), 150.0, "N-mm"))
+    assert client.reason("STRESS_AXIAL", AXIAL) == ""
+
+
+def test_every_error_value_has_its_own_code():
+    assert len({code_of(error_number(text)) for text in calc_client.CODES}) == len(calc_client.CODES)
+
+
+def test_arguments_are_trimmed_and_empty_cells_stay_empty():
+    assert cell_argument((("",) * 2,) * 5) == [[None, None]]
+    assert cell_argument(((1.0, ""), ("", ""), ("", ""))) == [[1.0, None]]
+    assert cell_argument((("12 kN",),)) == "12 kN"
+    assert cell_argument(3) == 3.0
+    assert trimmed(("12 kN", None, None)) == ["12 kN"]
+
+
+def test_a_killed_worker_is_started_anew_within_the_call(client):
+    client.call("STRESS_AXIAL", AXIAL)
+    first = client._process
+    first.kill()
+    first.wait()
+    assert client.call("STRESS_AXIAL", AXIAL) == ((80.0,),)
+    assert client._process.pid != first.pid
+
+
+def test_a_worker_that_dies_in_a_call_is_asked_once_more(tmp_path):
+    body = """
+        for line in sys.stdin:
+            if not os.path.exists(marker):
+                open(marker, "w").close()
+                os._exit(1)
+            print(json.dumps([json.loads(line)[0], [[[7.0]], []]]), flush=True)
+    """
+    client = Client(fake(tmp_path, body))
+    assert client.call("STRESS_AXIAL", AXIAL) == ((7.0,),)
+    client.stop()
+
+
+def test_a_worker_that_hangs_is_given_up_in_time_and_then_left_alone(tmp_path):
+    client = Client(fake(tmp_path, "time.sleep(60)"))
+    start = time.monotonic()
+    for _ in range(2):
+        [[value]] = client.call("STRESS_AXIAL", AXIAL)
+        assert code_of(value) == 519
+    assert any("no answer within 0.5 s" in reason for reason in client.reasons)
+    client.call("STRESS_AXIAL", AXIAL)
+    assert time.monotonic() - start < 20
+    assert any("twice" in reason for reason in client.reasons)
+    assert client._process is None
+
+
+@pytest.mark.parametrize("rubbish", ["print('hello', flush=True)", "print('[99, [[[1.0]], []]]', flush=True)"])
+def test_rubbish_is_never_taken_for_an_answer(tmp_path, rubbish):
+    client = Client(fake(tmp_path, f"for line in sys.stdin:\n            {rubbish}"))
+    [[value]] = client.call("STRESS_AXIAL", AXIAL)
+    assert code_of(value) == 519
+    client.stop()
+
+
+def test_another_version_answers_nothing(tmp_path):
+    client = Client({**settings(), "version": "0.0.1"})
+    [[value]] = client.call("STRESS_AXIAL", AXIAL)
+    assert code_of(value) == 519
+    assert any("doubler host calc install" in reason for reason in client.reasons)
+    assert client._process is None
+
+
+def test_what_is_printed_by_the_tool_stays_off_the_pipe(tmp_path):
+    script = tmp_path / "noisy.py"
+    script.write_text(
+        "import os, sys\nfrom doubler import catalogue\nfrom doubler.hosts import worker\n"
+        "known = catalogue.call_cells\n"
+        "def noisy(*a):\n    print('stray')\n    os.system('echo stray')\n    return known(*a)\n"
+        "catalogue.call_cells = noisy\nworker.main()\n"
+    )
+    client = Client({**settings(), "command": [sys.executable, "-E", "-P", str(script)]})
+    assert client.call("STRESS_AXIAL", AXIAL) == ((80.0,),)
+    client.stop()
+
+
+def test_the_worker_ends_when_its_pipe_ends(client):
+    client.call("STRESS_AXIAL", AXIAL)
+    process = client._process
+    process.stdin.close()
+    assert process.wait(10) == 0
+
+
+@pytest.mark.skipif(os.name != "posix", reason="parents are watched on POSIX")
+def test_a_busy_worker_ends_with_the_program_that_started_it(tmp_path):
+    import subprocess
+
+    busy = tmp_path / "busy.py"
+    busy.write_text(
+        "import time\nfrom doubler import catalogue\nfrom doubler.hosts import worker\n"
+        "catalogue.call_cells = lambda *a: time.sleep(120)\nworker.main()\n"
+    )
+    note = tmp_path / "pid"
+    owner = (
+        "import subprocess, sys, os\n"
+        f"p = subprocess.Popen([{sys.executable!r}, {str(busy)!r}], stdin=subprocess.PIPE, stdout=subprocess.PIPE)\n"
+        'p.stdout.readline()\np.stdin.write(b\'[1,"call","STRESS_AXIAL",[]]\\n\'); p.stdin.flush()\n'
+        f"open({str(note)!r}, 'w').write(str(p.pid))\nos._exit(0)\n"
+    )
+    subprocess.run([sys.executable, "-c", owner], check=True, timeout=60)
+    pid = int(note.read_text())
+    limit = time.monotonic() + 15
+    while time.monotonic() < limit and _alive(pid):
+        time.sleep(0.2)
+    assert not _alive(pid)
+
+
+def _alive(pid):
+    try:
+        state = Path(f"/proc/{pid}/stat").read_text().rsplit(")", 1)[1].split()[0]
+    except OSError:
+        return False
+    return state != "Z"
+
+
+@pytest.mark.parametrize("module", [calc_client, calc_blanks])
+def test_what_lives_in_libreoffice_reads_as_python_3_8_and_imports_the_standard_library_only(module):
+    tree = ast.parse(Path(module.__file__).read_text(), feature_version=(3, 8))
+    roots = {
+        name.split(".")[0]
+        for node in ast.walk(tree)
+        if isinstance(node, ast.Import | ast.ImportFrom)
+        for name in ([node.module] if isinstance(node, ast.ImportFrom) else [alias.name for alias in node.names])
+    }
+    assert roots <= set(sys.stdlib_module_names)
