@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from doubler.check.examined import Examined, Key, cell_name_of
 from doubler.check.finding import Finding
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.evaluate import NotEvaluated
+from doubler.workbook.examined import Examined, Key, cell_name_of
 
 
 def not_recalculated(book: Examined) -> Iterator[Finding]:

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from doubler.check.examined import Examined, Key, cell_name_of, shown
 from doubler.check.finding import Finding
 from doubler.check.recognise import quantities
 from doubler.workbook.addresses import cell_name
+from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 
 SURE, DOUBTFUL = 0.05, 0.025
 """Disagreement of a modulus with the others from which it is an error, and from which it is a warning: above what

@@ -8,10 +8,10 @@ from pathlib import Path
 from typing import Any
 
 from doubler.check import coverage, elastic, margins, structure, units, values
-from doubler.check.examined import Examined
 from doubler.check.finding import FAMILY_OF, SEVERITIES, Finding, rank
 from doubler.check.short_range import short_ranges
 from doubler.workbook.evaluate import NotEvaluated
+from doubler.workbook.examined import Examined
 
 Rule = Callable[[Examined], Iterable[Finding]]
 

@@ -5,8 +5,8 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from doubler.check.examined import Examined, Key
 from doubler.workbook.evaluate import NotEvaluated, evaluate
+from doubler.workbook.examined import Examined, Key
 from doubler.workbook.graph import build_graph
 from doubler.workbook.model import Address, Cell, Scalar, Sheet, Workbook
 from doubler.workbook.shift import MovableFormula

@@ -4,10 +4,10 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from doubler.check.examined import Examined, Key, cell_name_of, shown
 from doubler.check.finding import Finding
 from doubler.check.recognise import quantities
 from doubler.workbook.addresses import cell_name
+from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 
 
 def negative_margins(book: Examined) -> Iterator[Finding]:

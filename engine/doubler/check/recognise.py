@@ -10,8 +10,8 @@ import re
 from collections.abc import Iterator
 from functools import lru_cache
 
-from doubler.check.examined import Examined, Key
 from doubler.units import kind
+from doubler.workbook.examined import Examined, Key
 
 _YOUNG = (
     r"young'?s? modulus|young’s modulus|modulus of elasticity|elastic(?:ity)? modulus|elastic mod\.?|"

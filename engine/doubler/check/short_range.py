@@ -6,10 +6,10 @@ import math
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from doubler.check.examined import Examined, Key, cell_name_of, shown
 from doubler.check.fills import Fills, value_with, walk
 from doubler.check.finding import Finding
 from doubler.workbook.addresses import area_name, cell_name
+from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 from doubler.workbook.geometry import OutsideError
 from doubler.workbook.graph import Group
 from doubler.workbook.model import Address, Area, Cell, Sheet

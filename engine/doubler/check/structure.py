@@ -6,11 +6,11 @@ import math
 import re
 from collections.abc import Iterator
 
-from doubler.check.examined import Examined, Key, cell_name_of, shown
 from doubler.check.fills import Fills, Gap, walk
 from doubler.check.finding import Finding
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.evaluate import NotEvaluated
+from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 from doubler.workbook.model import Address
 from doubler.workbook.syntax import ExternalRef
 

@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 
-from doubler.check.examined import Examined, cell_name_of
 from doubler.check.finding import Finding
+from doubler.workbook.examined import Examined, cell_name_of
 
 
 def unit_findings(book: Examined) -> Iterator[Finding]:

@@ -7,12 +7,12 @@ import re
 from collections.abc import Iterator
 from typing import Any
 
-from doubler.check.examined import Examined, Key, cell_name_of, shown
 from doubler.check.finding import Finding
 from doubler.check.usage import ARITHMETIC, PASSED, TOTAL, Use, uses_of
 from doubler.errors import ErrorValue
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.evaluate import NotEvaluated, evaluate
+from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 from doubler.workbook.geometry import OutsideError
 from doubler.workbook.graph import Group
 from doubler.workbook.model import Address
