@@ -75,6 +75,16 @@ def test_shear_flow_of_an_angle_is_in_equilibrium_with_its_forces(shear_y, shear
     assert resultants == pytest.approx([shear_y, shear_z], abs=2e-4 * size)
 
 
+@given(st.floats(-1e5, 1e5), MOMENTS, MOMENTS)
+def test_extremes_of_a_rectangle_are_those_of_its_corners(force, moment_y, moment_z) -> None:
+    b, h = 30.0, 50.0
+    y, z = np.array([-b, -b, b, b]) / 2.0, np.array([-h, h, -h, h]) / 2.0
+    corners = bending.axial_biaxial(force, moment_y, moment_z, y, z, b * h, b * h**3 / 12.0, h * b**3 / 12.0)
+    sizes = (force, moment_y, moment_z, b * h, b * h**2 / 6.0, h * b**2 / 6.0)
+    assert bending.axial_biaxial_max(*sizes) == pytest.approx(corners.max(), abs=1e-9)
+    assert bending.axial_biaxial_min(*sizes) == pytest.approx(corners.min(), abs=1e-9)
+
+
 def test_signs_of_bending_moments() -> None:
     assert bending.axial_biaxial(0.0, 1.0, 0.0, 0.0, 1.0, 1.0, 1.0, 1.0) > 0.0
     assert bending.axial_biaxial(0.0, 0.0, 1.0, 1.0, 0.0, 1.0, 1.0, 1.0) < 0.0

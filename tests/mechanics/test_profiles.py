@@ -7,7 +7,7 @@ from hypothesis import strategies as st
 
 from doubler.catalogue.formula_text import evaluate_text
 from doubler.mechanics import outline as plane
-from doubler.mechanics import profile_bending, profile_sections, profile_torsion
+from doubler.mechanics import profile_bending, profile_sections, profile_shear_centre, profile_torsion
 
 PLATES = {
     # Each plate: x and y of its middle, width, depth.
@@ -128,6 +128,33 @@ def test_regular_polygons_are_alike_in_all_directions_wherever_they_lie(turn, x,
     assert plane.area(clockwise) == pytest.approx(area)
 
 
+def test_shear_centre_of_a_channel_balances_the_flow_in_its_flanges() -> None:
+    depth, across, wall = 102.0, 51.0, 2.0
+    h, b = depth - wall, across - wall / 2.0
+    second = wall * h**3 / 12.0 + 2.0 * b * wall * (h / 2.0) ** 2  # about x, of the middle lines
+    s = (np.arange(4000) + 0.5) / 4000.0 * b
+    flange_force = np.sum(wall * s * h / 2.0 / second) * b / 4000.0  # for a unit shear force
+    x, y = profile_shear_centre.shear_centre("channel", depth, across, wall, wall)
+    assert x == pytest.approx(wall / 2.0 - flange_force * h, rel=1e-6)
+    assert y == depth / 2.0
+
+
+@pytest.mark.parametrize(
+    ("shape", "given", "place"),
+    [
+        ("I", {"flange": 4.0}, (0.0, 40.0)),
+        ("I", {"flange": 4.0, "bottom_width": 20.0}, (0.0, 2.0 + 76.0 * 8.0 / 9.0)),
+        ("tee", {"flange": 4.0}, (0.0, 78.0)),
+        ("angle", {"flange": 4.0}, (1.5, 2.0)),
+        ("zee", {"flange": 4.0}, (0.0, 40.0)),
+        ("box", {"flange": 4.0}, (0.0, 40.0)),
+    ],
+)
+def test_shear_centres_by_symmetry_and_by_crossing_walls(shape, given, place) -> None:
+    found = profile_shear_centre.shear_centre(shape, 80.0, 40.0, 3.0, **given)
+    np.testing.assert_allclose(found, place, atol=1e-12)
+
+
 def test_torsion_constants_of_open_and_closed_walls() -> None:
     box = profile_torsion.torsion_constant("box", 103.0, 53.0, 3.0, 3.0)
     assert box == pytest.approx(4.0 * (100.0 * 50.0) ** 2 / (300.0 / 3.0))
@@ -145,6 +172,8 @@ def test_torsion_constants_of_open_and_closed_walls() -> None:
         ('=SECTION_PROFILE_AREA("box", "20 mm", "-100 mm", "5 mm", "2 mm")', "width must be positive"),
         ('=SECTION_PROFILE_FIRST_MOMENT("box","20 mm","30 mm","5 mm","2 mm",,,,"21 mm")', "inside the depth"),
         ('=SECTION_PROFILE_TORSION_CONSTANT("I", "20 mm", "10 mm", "5 mm", "5 mm")', "three times"),
+        ('=SECTION_PROFILE_SHEAR_CENTRE("channel","90 mm","40 mm","2 mm","2 mm","30 mm")', "like flanges"),
+        ('=SECTION_PROFILE_SHEAR_CENTRE("hat","90 mm","40 mm","2 mm","2 mm","30 mm")', "hat"),
         ('=SECTION_PROFILE_WARPING_CONSTANT("zee","90 mm","40 mm","2 mm","2 mm","30 mm")', "like flanges"),
     ],
 )

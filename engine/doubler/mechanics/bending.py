@@ -156,6 +156,110 @@ def axial_biaxial(
     return force / area + moment_y * z / second_moment_y - moment_z * y / second_moment_z
 
 
+_EXTREME_LIMITS = {"area": POSITIVE, "section_modulus_y": POSITIVE, "section_modulus_z": POSITIVE}
+
+
+@worksheet_function("STRESS_AXIAL_BIAXIAL_MAX", valid=_EXTREME_LIMITS)
+def axial_biaxial_max(
+    force: Force,
+    moment_y: Moment,
+    moment_z: Moment,
+    area: Area,
+    section_modulus_y: SectionModulus,
+    section_modulus_z: SectionModulus,
+) -> Stress:
+    r"""Algebraically largest normal stress of a section with corners, under axial force and biaxial bending.
+
+    .. math:: \sigma_{max} = \frac{F}{A} + \frac{|M_y|}{W_y} + \frac{|M_z|}{W_z}
+
+    Parameters
+    ----------
+    force : force
+        Axial force at the centroid, tension positive.
+    moment_y : moment
+        Moment about the principal y axis; its sign does not matter.
+    moment_z : moment
+        Moment about the principal z axis; its sign does not matter.
+    area : area
+        Area of the section.
+    section_modulus_y : volume
+        Elastic section modulus about the y axis.
+    section_modulus_z : volume
+        Elastic section modulus about the z axis.
+
+    Returns
+    -------
+    stress : stress
+        Largest stress, tension positive: negative where the whole section is compressed.
+
+    Notes
+    -----
+    For a section symmetric about both axes that has a corner where both bending stresses are largest:
+    rectangle, box, I. For a round one it is on the safe side. Linear elastic, plane sections; no second-order
+    moment of a compressed beam-column. The other extreme is STRESS_AXIAL_BIAXIAL_MIN.
+
+    References
+    ----------
+    J. M. Gere, Mechanics of Materials, section 8.5 (from memory).
+
+    Examples
+    --------
+    >>> cell('=STRESS_AXIAL_BIAXIAL_MAX("-40 kN","1 kN*m","-2 kN*m","20 cm2","20 cm3","50 cm3","MPa")')
+    70.0
+    """
+    return force / area + np.abs(moment_y) / section_modulus_y + np.abs(moment_z) / section_modulus_z
+
+
+@worksheet_function("STRESS_AXIAL_BIAXIAL_MIN", valid=_EXTREME_LIMITS)
+def axial_biaxial_min(
+    force: Force,
+    moment_y: Moment,
+    moment_z: Moment,
+    area: Area,
+    section_modulus_y: SectionModulus,
+    section_modulus_z: SectionModulus,
+) -> Stress:
+    r"""Algebraically smallest normal stress of a section with corners, under axial force and biaxial bending.
+
+    .. math:: \sigma_{min} = \frac{F}{A} - \frac{|M_y|}{W_y} - \frac{|M_z|}{W_z}
+
+    Parameters
+    ----------
+    force : force
+        Axial force at the centroid, tension positive.
+    moment_y : moment
+        Moment about the principal y axis; its sign does not matter.
+    moment_z : moment
+        Moment about the principal z axis; its sign does not matter.
+    area : area
+        Area of the section.
+    section_modulus_y : volume
+        Elastic section modulus about the y axis.
+    section_modulus_z : volume
+        Elastic section modulus about the z axis.
+
+    Returns
+    -------
+    stress : stress
+        Smallest stress, compression negative: compare with the compressive allowable.
+
+    Notes
+    -----
+    As STRESS_AXIAL_BIAXIAL_MAX: a section symmetric about both axes with a corner where both bending stresses
+    are largest. A compressed part may buckle first.
+
+    References
+    ----------
+    J. M. Gere, Mechanics of Materials, section 8.5 (from memory).
+
+    Examples
+    --------
+    >>> cell('=STRESS_AXIAL_BIAXIAL_MIN("-40 kN","1 kN*m","-2 kN*m","20 cm2","20 cm3","50 cm3","MPa")')
+    -110.0
+    """
+    return force / area - np.abs(moment_y) / section_modulus_y - np.abs(moment_z) / section_modulus_z
+
+
 @worksheet_function(
     "STRESS_BENDING_UNSYMMETRIC",
     valid={"second_moment_y": POSITIVE, "second_moment_z": POSITIVE},

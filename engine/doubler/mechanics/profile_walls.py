@@ -76,6 +76,27 @@ def warping_constant(shape: str, named: dict[str, Values]) -> Values:
     return flange * arm**3 * height**2 / 12.0 * share
 
 
+def shear_centre(shape: str, named: dict[str, Values]) -> tuple[Values, Values]:
+    """Return x and y of the shear centre, in the axes of the profile's outline."""
+    d = dimensions(shape, named)
+    flange, foot, web, depth = d["flange"], d["bottom_flange"], d["web"], d["depth"]
+    nowhere = np.zeros_like(depth)
+    if shape == "tee":
+        return nowhere, depth - flange / 2.0
+    if shape == "angle":
+        return web / 2.0, flange / 2.0
+    if shape == "I":
+        upper, lower = flange * d["width"] ** 3, foot * d["bottom_width"] ** 3
+        return nowhere, foot / 2.0 + (depth - (flange + foot) / 2.0) * upper / (upper + lower)
+    if named["bottom_width"] is not None or named["bottom_flange"] is not None:
+        raise Refusal(f"the shear centre of a {shape} is for like flanges; leave bottom_width and bottom_flange out")
+    if shape != "channel":
+        return nowhere, depth / 2.0
+    arm = d["width"] - web / 2.0
+    out = 3.0 * arm**2 * flange / (6.0 * arm * flange + (depth - flange) * web)
+    return web / 2.0 - out, depth / 2.0
+
+
 def parallel_walls(shape: str, named: dict[str, Values], axis: str) -> Values:
     """Return five sixths of the area of the walls that lie along a shear force."""
     d = dimensions(shape, named)
