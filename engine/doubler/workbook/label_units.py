@@ -7,6 +7,7 @@ import re
 from doubler.units import Unit
 from doubler.workbook.unit_text import UnitText, phrase_unit, read_unit_text, role_agrees
 
+_SYMBOL = re.compile(r"^[A-Za-zΔσετθαβνρδ](?:_?\w{0,3})$")
 _BRACKET = re.compile(r"([\[(])([^\[\]()]*(?:\([^()]*\)[^\[\]()]*)?)[\])]")
 _COMMA = re.compile(r",\s*(\S{1,20}(?:\s\S{1,8})?)\s*[:=]?\s*$")
 _SLASH = re.compile(r"^(?P<label>.*\S)\s*/\s*(?P<unit>\(?[^\s/].*)$")
@@ -64,7 +65,12 @@ def loose_unit(text: str) -> Unit | None:
         if read.unit is None or match["unit"].casefold() in ("ratio", "-", "1", "–", "%"):
             continue
         agrees = role_agrees(read.unit, match["label"])
-        if agrees is True or (agrees is None and not read.doubtful and pattern is _SLASH and len(match["unit"]) > 1):
+        symbol = bool(_SYMBOL.match(match["label"])) and not read.doubtful
+        if (
+            agrees is True
+            or (agrees is None and symbol)
+            or (agrees is None and not read.doubtful and pattern is _SLASH and len(match["unit"]) > 1)
+        ):
             return read.unit
     return None
 

@@ -3,36 +3,27 @@
 from __future__ import annotations
 
 import math
-import re
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 
 from doubler.units import Dimension
 from doubler.workbook.alike import describe, hidden_literal, independent
-from doubler.workbook.carried import NONE, Carried, Factor, Hidden, Key, Reading, State, Use
-from doubler.workbook.conversions import conversion, factor_text, factor_words, is_simple_coefficient
+from doubler.workbook.carried import NONE, Carried, Hidden, Key, Reading, State, Use
+from doubler.workbook.conversions import conversion, factor_text, factor_words
 from doubler.workbook.declared import Declared
 from doubler.workbook.roles import is_margin
+from doubler.workbook.unit_literals import (
+    ACCELERATION,
+    DEGREE,
+    EXPLAINS,
+    carries_scale,
+    gravity,
+    slip,
+    turns,
+    typed_in,
+)
 from doubler.workbook.unit_names import name_unit
 from doubler.workbook.unit_verdicts import Fault
-
-DEGREE = math.pi / 180
-GRAVITY = 9.80665
-_ACCELERATION = Dimension.of(length=1, time=-2)
-
-_EXPLAINS = re.compile(
-    r"\bper (?:thousand|1000|million)\b|\bthousands?\b|\bmillions?\b|\bblocks?\b|\bcycles?\b|\bpercent\w*\b|"
-    r"[x×]\s?10+\b|"
-    r"\blimits?\b|\ballow\w*\b|\bimperfection\b|\btoleranc\w*\b|\bpermissible\b|\bmax(?:imum)?\.? (?:deflection|sag)\b|"
-    r"\binitial\b|\bprecision\b|\bslope\b|\bbow\b|\bout[- ]of\b|\bmesh\b|\bstep\b|\bincrement\b|\bshim\b|"
-    r"\bmisalignment\b|"
-    r"\bL/\d+|\bcriteri\w+\b|\bdrift\b|\bserviceability\b",
-    re.IGNORECASE,
-)
-"""Words of a label that explain a power of 1000 which converts nothing: a limit of span/1000, a number in thousands."""
-
-_NATURAL = (0.02, 50.0)
-"""Between these lie the coefficients of formulas whose numbers carry no unit."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -100,15 +91,18 @@ def _name(carried: Carried, reading: Reading) -> str | None:
 def _other_dimension(carried: Carried, declared: Declared, dimension: Dimension, cell: str, value: object) -> Edge:
     if declared.weak and not is_margin(declared.text):
         return Edge(agrees=False)
-    hidden = _gravity(carried, dimension, declared.unit.scale) or hidden_literal(
-        carried, dimension, declared.unit.scale
+    scale = declared.unit.scale
+    hidden = (
+        gravity(carried, dimension, scale)
+        or hidden_literal(carried, dimension, scale)
+        or typed_in(carried, dimension, scale)
     )
     if isinstance(hidden, Reading):
         weight = replace(carried, dimension=dimension, readings=(hidden,), sources=independent(carried.sources))
         factor = _round(declared.unit.scale / hidden.scale)
         return Edge((_scale_fault(weight, declared, factor, cell, value, hidden),))
-    if hidden is not None and not declared.weak:
-        known_one = hidden.dimension == _ACCELERATION
+    if hidden is not None:
+        known_one = hidden.dimension == ACCELERATION
         return Edge(hidden=(hidden,), notes=() if known_one else notes_of((hidden,), cell))
     found = named(carried)
     name = _name(carried, carried.readings[0])
@@ -146,28 +140,6 @@ def _due(declared: Declared) -> Carried:
     return Carried(State.KNOWN, declared.unit.dimension.without_angle(), (Reading(declared.unit.scale),))
 
 
-def _gravity(carried: Carried, dimension: Dimension, scale: float) -> Hidden | Reading | None:
-    """Take a literal that is the acceleration of gravity for it; a reading is that by which the result misses."""
-    for factor in carried.factors:
-        if not factor.exponent or abs(factor.exponent) != 1:
-            continue
-        lacking = (dimension / carried.dimension) ** (1 / factor.exponent)
-        if lacking != _ACCELERATION:
-            continue
-        for unit_scale, value in ((1.0, 9.80665), (1e-3, 9806.65), (0.3048, 32.17405), (0.0254, 386.0886)):
-            if abs(factor.value / value - 1) > 2e-3:
-                continue
-            sign = 1.0 if factor.exponent > 0 else -1.0
-            own = [r for r in carried.readings if all(u.position != factor.position for u in r.used)]
-            for reading in own:
-                if math.isclose(reading.scale * unit_scale**sign, scale, rel_tol=2e-3):
-                    return Hidden(factor.text or f"{factor.value:g}", _ACCELERATION, unit_scale)
-            if own:
-                best = max(own, key=lambda r: len(r.used))
-                return Reading(best.scale * unit_scale**sign)
-    return None
-
-
 def _fits(carried: Carried, declared: Declared, reading: Reading, words: str, cell: str) -> Edge:
     if declared.absolute and declared.unit.offset != reading.zero and abs(reading.weight - 1) < 1e-6:
         shift = reading.zero - declared.unit.offset
@@ -178,36 +150,19 @@ def _fits(carried: Carried, declared: Declared, reading: Reading, words: str, ce
                 f"elsewhere: add or subtract {size:g}"
             )
             return Edge((Fault("unit-scale", "error", message, None, "", declared.unit.text, source_cells(carried)),))
-    slip = _slip(carried, reading) if not reading.used else None
-    if slip is not None and not _EXPLAINS.search(words):
-        verb = "multiplies" if slip.exponent > 0 else "divides"
+    odd = slip(carried, reading) if not reading.used else None
+    if odd is not None and not EXPLAINS.search(words):
+        verb = "multiplies" if odd.exponent > 0 else "divides"
         message = (
-            f"{cell} is labelled {_shown(declared)}, with which its inputs agree already, but {slip.text} {verb} it "
-            f"and converts nothing: delete {slip.text}, or mend the unit of the input that it is to convert"
+            f"{cell} is labelled {_shown(declared)}, with which its inputs agree already, but {odd.text} {verb} it "
+            f"and converts nothing: delete {odd.text}, or mend the unit of the input that it is to convert"
         )
-        factor = _round(slip.value ** float(slip.exponent))
-        meant = tuple(r for r in carried.readings if any(u.position == slip.position for u in r.used))
+        factor = _round(odd.value ** float(odd.exponent))
+        meant = tuple(r for r in carried.readings if any(u.position == odd.position for u in r.used))
         sides = ((replace(carried, readings=meant), _due(declared)),) if meant else ()
         fault = Fault("unit-scale", "warning", message, factor, "", "", source_cells(carried), sides)
         return Edge((fault,))
     return Edge(uses=reading.used)
-
-
-def _slip(carried: Carried, reading: Reading) -> Factor | None:
-    """Return a literal that looks like a conversion, acts on the whole, and converts nothing."""
-    if carried.dimension == NONE or reading.weight:
-        return None
-    found: Factor | None = None
-    product = 1.0
-    for factor in carried.factors:
-        held = conversion(factor.value, factor.text)
-        if held is None or not held.strong or not factor.common or not factor.exponent or factor.cell is not None:
-            continue
-        if abs(factor.value / GRAVITY - 1) < 2e-3:
-            continue
-        product *= factor.value ** float(factor.exponent)
-        found = found or factor
-    return found if found is not None and abs(product - 1) > 1e-3 else None
 
 
 def _other_scale(carried: Carried, declared: Declared, cell: str, value: object) -> Edge:
@@ -215,7 +170,10 @@ def _other_scale(carried: Carried, declared: Declared, cell: str, value: object)
         return Edge(agrees=False)
     reading = best_reading(carried, declared)
     factor = _round(declared.unit.scale / reading.scale)
-    if _carries_scale(carried, factor):
+    turned = turns(carried, declared.unit.scale, declared.unit.text)
+    if turned is not None:
+        return Edge(uses=turned.used)
+    if carries_scale(carried, factor):
         note = f"{cell} holds only if a literal of its formula carries a factor of {factor_text(1 / factor)}"
         return Edge(notes=(note,))
     return Edge((_scale_fault(carried, declared, factor, cell, value, reading),))
@@ -249,19 +207,6 @@ def best_reading(carried: Carried, declared: Declared) -> Reading:
     return min(carried.readings, key=rank)
 
 
-def _carries_scale(carried: Carried, factor: float) -> bool:
-    """Return whether an empirical literal may have taken a factor up: 0.0125 for 12.5/1000."""
-    for item in carried.factors:
-        if not item.exponent or is_simple_coefficient(item.value, item.text):
-            continue
-        if conversion(item.value, item.text) is not None or _NATURAL[0] <= item.value <= _NATURAL[1]:
-            continue
-        rest = item.value * factor ** float(-1 / item.exponent)
-        if _NATURAL[0] <= rest <= _NATURAL[1]:
-            return True
-    return False
-
-
 def _scale_fault(
     carried: Carried, declared: Declared, factor: float, cell: str, value: object, reading: Reading
 ) -> Fault:
@@ -271,11 +216,11 @@ def _scale_fault(
     mend = f"{'divide' if factor > 1 else 'multiply'} the formula by {factor_text(size)}"
     relabel = f", or label the cell {name}" if name and name not in ("1", declared.unit.text) else ""
     kind = "unit-scale"
-    if carried.dimension == NONE and (
-        math.isclose(size, 180 / math.pi, rel_tol=1e-6) or (carried.angle_mark and declared.unit.scale != 1.0)
-    ):
+    turned = math.isclose(size, 180 / math.pi, rel_tol=1e-6)
+    in_degrees = turned and carried.dimension != NONE and any(s.text in ("deg", "°") for s in carried.sources)
+    if in_degrees or (carried.dimension == NONE and (turned or (carried.angle_mark and declared.unit.scale != 1.0))):
         kind = "angle-unit"
-        given = "radians" if math.isclose(reading.scale, 1.0, rel_tol=1e-9) else "degrees"
+        given = "radians" if math.isclose(reading.scale, 1.0, rel_tol=1e-9) and not in_degrees else "degrees"
         turn = {"radians": "write DEGREES(…)", "degrees": "write RADIANS(…) around the angle"}[given]
         message = (
             f"{cell} is labelled {_shown(declared)}, but its formula gives {given} and is {factor_words(factor)}: "

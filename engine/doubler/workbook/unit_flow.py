@@ -16,7 +16,7 @@ from doubler.workbook.graph import Graph, Group
 from doubler.workbook.model import Address, Workbook
 from doubler.workbook.references import address_text
 from doubler.workbook.roles import is_margin
-from doubler.workbook.syntax import Node
+from doubler.workbook.syntax import Node, RangeRef
 from doubler.workbook.unit_edge import Edge, fault_inside, judge_edge, notes_of
 from doubler.workbook.unit_settle import Settlement, gathered, settle
 from doubler.workbook.unit_sheets import SheetUnits, references_in
@@ -255,6 +255,9 @@ class _Tracer:
 
 def _asked(units: SheetUnits, node: Node, host: Address) -> Hashable:
     """Return what a copy reads as a constant where the judgement hangs on it."""
+    if isinstance(node, RangeRef):
+        ends = (node.first_row, node.first_column, node.last_row, node.last_column)
+        return None if all(axis is None or axis.anchored for axis in ends) else host
     return units.value(node, host), str(units.grid(node, host))
 
 

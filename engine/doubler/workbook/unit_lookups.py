@@ -1,25 +1,36 @@
-"""Unit rules of the functions that look up, pick and fit: the unit of the column they return, keys against keys."""
+"""Unit rules of the functions that look up and pick: the unit of the cell that they return, keys against keys.
+
+A table of mixed quantities, one a row with its unit beside it, is no fault: where the key is a constant, the row that
+it picks is found; where it is not, and the cells that it may pick have unlike units, the result is not traced.
+"""
 
 from __future__ import annotations
 
-from dataclasses import replace
-
-from doubler.workbook.alike import NotTraced, UnitFault, describe, require_ratio
-from doubler.workbook.carried import BLANK, RATIO, Carried, Reading, State, divide, multiply
+from doubler.workbook.alike import NotTraced
+from doubler.workbook.carried import BLANK, RATIO, Carried, State
 from doubler.workbook.syntax import Call, Node, Omitted
 from doubler.workbook.unit_walk import Block, Walk
 
+Line = tuple[Carried, ...]
+
+
+def _units(nodes: list[Carried] | Line) -> set[object]:
+    return {(n.dimension, n.readings[0].scale) for n in nodes if n.state is State.KNOWN and not n.opens}
+
 
 def _key(walk: Walk, key: Node, among: list[Carried]) -> None:
-    """Compare a key with the keys among which it is looked up."""
+    """Compare a key with the keys among which it is looked up, where these are of one unit."""
     wanted = walk.one(key)
     numbers = [node for node in among if node.state in (State.KNOWN, State.UNKNOWN, State.CONTRADICTORY)]
-    if wanted.state in (State.KNOWN, State.UNKNOWN) and numbers:
+    if wanted.state in (State.KNOWN, State.UNKNOWN) and numbers and len(_units(numbers)) <= 1:
         walk.alike([wanted, *numbers], "compared")
 
 
 def _number(walk: Walk, node: Node) -> int | None:
-    """Return a position given as a constant, in the formula or in a cell."""
+    """Return a position given as a constant, in the formula or in a cell, or by MATCH of a constant."""
+    if isinstance(node, Call) and node.name in ("MATCH", "XMATCH") and len(node.arguments) >= 2:
+        walk.node(node)
+        return _position(walk, node.arguments[0], node.arguments[1])
     found = walk.one(node)
     if found.value is not None and found.state is State.LITERAL:
         return int(found.value)
@@ -27,11 +38,34 @@ def _number(walk: Walk, node: Node) -> int | None:
     return int(held) if isinstance(held, float) else None
 
 
+def _position(walk: Walk, key: Node, keys: Node) -> int | None:
+    """Return the place at which a constant key stands among the keys, from 1; None where that is not fixed."""
+    held = walk.around.constant(key, walk.host)
+    if not isinstance(held, str | float):
+        return None
+    grid = walk.around.key_grid(keys, walk.host)
+    line = [row[0] for row in grid] if len(grid) > 1 else list(grid[0]) if grid else []
+    for at, entry in enumerate(line, start=1):
+        same = (
+            entry.casefold() == held.casefold() if isinstance(entry, str) and isinstance(held, str) else entry == held
+        )
+        if same:
+            return at
+    return None
+
+
+def _one_of(walk: Walk, nodes: list[Carried] | Line) -> Carried:
+    """Return the unit of whichever of some cells is taken."""
+    if len(_units(nodes)) > 1:
+        raise NotTraced("which cell it takes is not fixed, and the cells have unlike units")
+    return walk.alike(list(nodes), "put into one range") if nodes else BLANK
+
+
 def down_first_column(walk: Walk, call: Call) -> Carried:
     """VLOOKUP: the key is of the first column's unit, the result of the chosen column's."""
     table = walk.block(call.arguments[1])
     _key(walk, call.arguments[0], list(table.by_column[0]))
-    return _chosen(walk, call.arguments[2], table.by_column)
+    return _chosen(walk, call, table.by_column, table.by_row)
 
 
 def along_first_row(walk: Walk, call: Call) -> Carried:
@@ -40,62 +74,50 @@ def along_first_row(walk: Walk, call: Call) -> Carried:
     if not table.by_row:
         raise NotTraced("HLOOKUP reads a table too large to follow")
     _key(walk, call.arguments[0], list(table.by_row[0]))
-    return _chosen(walk, call.arguments[2], table.by_row)
+    across = tuple(zip(*table.by_row, strict=True))
+    return _chosen(walk, call, table.by_row, across)
 
 
-def _chosen(walk: Walk, index: Node, lines: tuple[tuple[Carried, ...], ...]) -> Carried:
-    number = _number(walk, index)
-    if number is not None and 1 <= number <= len(lines):
-        return walk.alike(list(lines[number - 1]), "put into one column")
-    return _any_line(walk, [line for line in lines[1:] if line])
+def _chosen(walk: Walk, call: Call, lines: tuple[Line, ...], crossing: tuple[Line, ...]) -> Carried:
+    """Return the unit of the chosen line; where it holds unlike ones, that of the entry which a constant key picks."""
+    number = _number(walk, call.arguments[2])
+    if number is None or not 1 <= number <= len(lines):
+        return _any_line(walk, [line for line in lines[1:] if line])
+    line = lines[number - 1]
+    if len(_units(line)) > 1 and crossing:
+        grid = walk.around.key_grid(call.arguments[1], walk.host)
+        keys = [row[0] for row in grid] if call.name == "VLOOKUP" else grid[0]
+        held = walk.around.constant(call.arguments[0], walk.host)
+        for at, entry in enumerate(keys):
+            if isinstance(entry, str) and isinstance(held, str) and entry.casefold() == held.casefold():
+                return crossing[at][number - 1]
+    return _one_of(walk, line)
 
 
-def _any_line(walk: Walk, lines: list[tuple[Carried, ...]]) -> Carried:
+def _any_line(walk: Walk, lines: list[Line]) -> Carried:
     """Return the one unit that all lines share, whichever is taken."""
-    items = {id(node): node for line in lines for node in line}
-    firm = [node for node in items.values() if node.state is State.KNOWN]
-    units = {(node.dimension, node.readings[0].scale) for node in firm}
-    if len(units) > 1:
-        raise NotTraced("the column that it takes is not fixed, and the columns have unlike units")
-    return walk.alike(list(items.values()), "put into one range") if items else BLANK
+    return _one_of(walk, list({id(node): node for line in lines for node in line}.values()))
 
 
 def indexed(walk: Walk, call: Call) -> Carried:
     """INDEX: the unit of the column, or the row, that is taken."""
     block = walk.block(call.arguments[0])
     given = list(call.arguments[1:])
-    for argument in given:
-        walk.node(argument)
-    if block.columns == 1 or not block.columns:
-        return walk.single(block)
-    rows_alike = _lines_alike(block.by_row)
-    if block.rows == 1:
-        number = _number(walk, given[-1]) if given else None
-        return _pick(walk, block.by_column, number)
-    column = given[1] if len(given) > 1 and not isinstance(given[1], Omitted) else None
-    number = _number(walk, column) if column is not None else None
-    if number == 0:
-        number = None
-    if number is not None and 1 <= number <= block.columns:
-        return _pick(walk, block.by_column, number)
-    if not _lines_alike(block.by_column) and rows_alike and given:
-        # Units stand by the row: every row has one unit.
-        return _pick(walk, block.by_row, _number(walk, given[0]))
+    numbers = [None if isinstance(argument, Omitted) else _number(walk, argument) for argument in given]
+    if block.columns == 1 or block.rows == 1:
+        entries = [node for row in block.by_row for node in row]
+        number = numbers[-1] if numbers and block.rows == 1 else numbers[0] if numbers else None
+        if number is not None and 1 <= number <= len(entries):
+            return entries[number - 1]
+        return _one_of(walk, block.items)
+    row, column = ((number or None) for number in [*numbers, None, None][:2])
+    if row is not None and column is not None and row <= len(block.by_row) and column <= block.columns:
+        return block.by_row[row - 1][column - 1]
+    if column is not None and column <= block.columns:
+        return _one_of(walk, block.by_column[column - 1])
+    if row is not None and row <= len(block.by_row):
+        return _one_of(walk, block.by_row[row - 1])
     return _any_line(walk, list(block.by_column))
-
-
-def _lines_alike(lines: tuple[tuple[Carried, ...], ...]) -> bool:
-    """Return whether each line is of one unit."""
-    return bool(lines) and all(
-        len({(n.dimension, n.readings[0].scale) for n in line if n.state is State.KNOWN}) <= 1 for line in lines
-    )
-
-
-def _pick(walk: Walk, lines: tuple[tuple[Carried, ...], ...], number: int | None) -> Carried:
-    if number is not None and 1 <= number <= len(lines):
-        items = list(lines[number - 1])
-        return walk.alike(items, "put into one column") if items else BLANK
-    return _any_line(walk, list(lines))
 
 
 def matched(walk: Walk, call: Call) -> Carried:
@@ -107,10 +129,20 @@ def matched(walk: Walk, call: Call) -> Carried:
 def across_to(walk: Walk, call: Call) -> Carried:
     """XLOOKUP: key against the lookup column; the result of the returned column's unit."""
     _key(walk, call.arguments[0], walk.items(call.arguments[1]))
-    found = walk.items(call.arguments[2])
-    if len(call.arguments) > 3:
-        found += walk.items(call.arguments[3])
-    return walk.alike(found, "put into one column")
+    found = _entry(walk, call, call.arguments[2])
+    return walk.alike([found, *walk.items(call.arguments[3])], "alternatives") if len(call.arguments) > 3 else found
+
+
+def _entry(walk: Walk, call: Call, values: Node) -> Carried:
+    """Return the unit of the entry that a constant key picks from a vector of values, or the one of all."""
+    items = walk.items(values)
+    if len(_units(items)) > 1:
+        block = walk.block(values)
+        at = _position(walk, call.arguments[0], call.arguments[1])
+        entries = [node for row in block.by_row for node in row]
+        if at is not None and min(block.rows, block.columns) == 1 and at <= len(entries):
+            return entries[at - 1]
+    return _one_of(walk, items)
 
 
 def looked_up(walk: Walk, call: Call) -> Carried:
@@ -118,12 +150,25 @@ def looked_up(walk: Walk, call: Call) -> Carried:
     table = walk.block(call.arguments[1])
     if len(call.arguments) > 2:
         _key(walk, call.arguments[0], table.items)
-        return walk.alike(walk.items(call.arguments[2]), "put into one column")
+        return _entry(walk, call, call.arguments[2])
     lines = table.by_row if table.columns > table.rows else table.by_column
     if not lines:
         raise NotTraced("LOOKUP reads a table too large to follow")
     _key(walk, call.arguments[0], list(lines[0]))
-    return walk.alike(list(lines[-1]), "put into one column")
+    return _one_of(walk, lines[-1])
+
+
+def stacked(walk: Walk, call: Call) -> Block:
+    """HSTACK, VSTACK: the arguments' entries beside or below each other."""
+    blocks = [walk.block(argument) for argument in call.arguments]
+    if call.name == "HSTACK":
+        columns = tuple(column for block in blocks for column in block.by_column)
+        return Block(max(b.rows for b in blocks), len(columns), columns, ())
+    wide = max(block.columns for block in blocks)
+    by_column = tuple(
+        tuple(node for block in blocks if at < block.columns for node in block.by_column[at]) for at in range(wide)
+    )
+    return Block(sum(b.rows for b in blocks), wide, by_column, ())
 
 
 def by_criteria(walk: Walk, call: Call) -> Carried:
@@ -151,122 +196,7 @@ def _criterion(walk: Walk, over: Node, criterion: Node) -> None:
     _key(walk, criterion, walk.items(over))
 
 
-def _fit(walk: Walk, ys: Node, xs: Node | None) -> tuple[Carried, Carried]:
-    y = walk.single(walk.node(ys), "put into one column")
-    x = RATIO if xs is None or isinstance(xs, Omitted) else walk.single(walk.node(xs), "put into one column")
-    return y, x
-
-
-def _flat(node: Carried) -> Carried:
-    return replace(node, readings=tuple(replace(r, weight=0.0, zero=0.0) for r in node.readings))
-
-
-def slope(walk: Walk, call: Call) -> Carried:
-    """SLOPE, and the first entry of LINEST: y per x."""
-    xs = call.arguments[1] if len(call.arguments) > 1 else None
-    y, x = _fit(walk, call.arguments[0], xs)
-    return divide(_flat(y), _flat(x))
-
-
-def intercept(walk: Walk, call: Call) -> Carried:
-    """INTERCEPT, STEYX: the unit of y."""
-    return _fit(walk, call.arguments[0], call.arguments[1])[0]
-
-
-def line_fit(walk: Walk, call: Call) -> Block:
-    """LINEST: slope, then intercept; of more than one x the slopes are of unlike units and are not followed."""
-    xs = call.arguments[1] if len(call.arguments) > 1 else None
-    if xs is not None and not isinstance(xs, Omitted):
-        block = walk.block(xs)
-        if block.columns > 1 and block.rows > 1:
-            raise NotTraced("LINEST over several columns gives coefficients of unlike units")
-    y, x = _fit(walk, call.arguments[0], xs)
-    steep = divide(_flat(y), _flat(x))
-    return Block(1, 2, ((steep,), (y,)), ((steep, y),))
-
-
-def forecast(walk: Walk, call: Call) -> Carried:
-    """FORECAST: x against the xs; the result of y's unit."""
-    y, x = _fit(walk, call.arguments[1], call.arguments[2])
-    walk.alike([walk.one(call.arguments[0]), x], "compared")
-    return y
-
-
-def trend(walk: Walk, call: Call) -> Carried:
-    """TREND, GROWTH: new x against the xs; the result of y's unit."""
-    xs = call.arguments[1] if len(call.arguments) > 1 else None
-    y, x = _fit(walk, call.arguments[0], xs)
-    if len(call.arguments) > 2 and not isinstance(call.arguments[2], Omitted):
-        walk.alike([walk.one(call.arguments[2]), x], "compared")
-    return y
-
-
-def correlation(walk: Walk, call: Call) -> Carried:
-    """CORREL, RSQ: a pure number."""
-    for argument in call.arguments:
-        walk.one(argument)
-    return RATIO
-
-
-def covariance(walk: Walk, call: Call) -> Carried:
-    """COVAR: the product of both units."""
-    return multiply(_flat(walk.one(call.arguments[0])), _flat(walk.one(call.arguments[1])))
-
-
-def matrix_product(walk: Walk, call: Call) -> Carried:
-    """MMULT: the product of the units, where each matrix has one; a matrix with unlike entries is not followed."""
-    blocks = [walk.block(argument) for argument in call.arguments]
-    units: list[Carried] = []
-    for block in blocks:
-        firm = {(n.dimension, n.readings[0].scale) for n in block.items if n.state is State.KNOWN}
-        if len(firm) > 1:
-            raise NotTraced("it multiplies a matrix whose entries have unlike units")
-        units.append(walk.single(block))
-    return multiply(units[0], units[1])
-
-
-def standardised(walk: Walk, call: Call) -> Carried:
-    """STANDARDIZE: value, mean and deviation have one unit; the result is a pure number."""
-    walk.alike([_flat(walk.one(argument)) for argument in call.arguments], "compared")
-    return RATIO
-
-
 def ranked(walk: Walk, call: Call) -> Carried:
     """RANK: the value is of the range's unit; the result is a count."""
     _key(walk, call.arguments[0], walk.items(call.arguments[1]))
     return RATIO
-
-
-def converted(walk: Walk, call: Call) -> Carried:
-    """CONVERT: the number is in the first unit named, the result in the second."""
-    from doubler.workbook.convert_codes import convert_code
-
-    node = walk.one(call.arguments[0])
-    codes = [walk.around.constant(argument, walk.host) for argument in call.arguments[1:3]]
-    units = [convert_code(code) if isinstance(code, str) else None for code in codes]
-    if units[0] is None or units[1] is None:
-        raise NotTraced("CONVERT names a unit whose dimension is not known here")
-    old, new = units[0], units[1]
-    if node.state is State.KNOWN and not node.opens:
-        own = old.dimension.without_angle()
-        if node.dimension != own:
-            raise UnitFault("unit-clash", f"CONVERT takes {codes[0]} and gets {describe(node)}", node)
-        if not any(abs(r.scale / old.scale - 1) < 1e-9 for r in node.readings):
-            factor = node.readings[0].scale / old.scale
-            raise UnitFault("unit-scale", f"CONVERT takes {codes[0]} and gets {describe(node)}", node, None, factor)
-        hot = any(r.weight for r in node.readings)
-        reading = Reading(new.scale, (), 1.0 if hot else 0.0, new.offset if hot else 0.0)
-        return replace(node, dimension=new.dimension.without_angle(), readings=(reading,), factors=())
-    return Carried(State.KNOWN, new.dimension.without_angle(), (Reading(new.scale),))
-
-
-def normal_probability(walk: Walk, call: Call) -> Carried:
-    """NORMDIST: value, mean and deviation have one unit; the result is a pure number."""
-    walk.alike([_flat(walk.one(argument)) for argument in call.arguments[:3]], "compared")
-    return RATIO
-
-
-def normal_quantile(walk: Walk, call: Call) -> Carried:
-    """NORMINV: mean and deviation have one unit, and so has the result."""
-    require_ratio(walk.one(call.arguments[0]), call.name)
-    return walk.alike([walk.one(call.arguments[1]), _flat(walk.one(call.arguments[2]))], "compared")

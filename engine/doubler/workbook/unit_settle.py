@@ -11,7 +11,7 @@ from doubler.units import Dimension
 from doubler.workbook.carried import Carried, Key, Source, State, known
 from doubler.workbook.declared import Declarations
 from doubler.workbook.unit_names import name_unit
-from doubler.workbook.unit_verdicts import Fault, Judgement, Tracing, UnitFinding, cell_text, rectangles
+from doubler.workbook.unit_verdicts import FOUND, Fault, Judgement, Tracing, UnitFinding, cell_text, rectangles
 
 Lanes = dict[int, list[Judgement]]
 
@@ -150,6 +150,10 @@ def gathered(tracing: Tracing, settlement: Settlement) -> None:
             merged.setdefault(sign if judgement.tree is not None else (id(fault),), []).append(
                 (judgement, fault, cells[at])
             )
+    doubled = {key for conflict in settlement.conflicts for key in conflict.cells}
+    for judgement in judged.values():
+        if judgement.host in doubled:
+            judgement.state = FOUND
     findings = [*settlement.conflicts, *rooted, *_texts(tracing)]
     findings += [_merged(items) for items in merged.values()]
     order = {sheet.name: index for index, sheet in enumerate(tracing.graph.workbook.sheets)}
@@ -263,7 +267,7 @@ def _root_finding(
     unit = declared.unit
     dimension, scale = unit.dimension.without_angle() * need[0], unit.scale * need[1]
     name = name_unit(dimension, float(f"{scale:.6e}"), unit.system) or _near_name(dimension, scale, unit.system)
-    if name is None or name == unit.text:
+    if name is None or name in ("1", unit.text):
         return None
     misses = [key for judgement, _ in items for key in cells[id(judgement)]]
     shown = ", ".join(cell_text(key) for key in misses[:6]) + (", …" if len(misses) > 6 else "")

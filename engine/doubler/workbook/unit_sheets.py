@@ -12,7 +12,7 @@ from doubler.workbook.alike import NotTraced
 from doubler.workbook.carried import BLANK, LOGICAL, TEXT, Carried, Key, Source, known, literal, unknown
 from doubler.workbook.declared import Declarations, Declared
 from doubler.workbook.graph import Graph
-from doubler.workbook.model import Address, Scalar
+from doubler.workbook.model import Address, Cell, Scalar
 from doubler.workbook.roles import is_conversion
 from doubler.workbook.syntax import Axis, Binary, CellRef, ErrorLiteral, Node, Number, RangeRef, Text, Unary
 from doubler.workbook.unit_verdicts import Judgement
@@ -127,6 +127,18 @@ class SheetUnits:
             cell = self.graph.workbook.sheets[sheet].cells.get((node.row.at(host[0]), node.column.at(host[1])))
             return None if cell is None or cell.formula is not None else cell.value
         return None
+
+    def key_grid(self, node: Node, host: Address) -> list[list[Scalar]]:
+        """Return the constants of a rectangle, among which a key is looked up."""
+        self.asked.append(node)
+        if not isinstance(node, RangeRef):
+            return [[self.value(node, host)]]
+        sheets, rows, columns = self._extent(node, host)
+        cells = self.graph.workbook.sheets[sheets[0]].cells
+        return [
+            [_constant_of(cells.get((row, column))) for column in range(columns[0], columns[1] + 1)]
+            for row in range(rows[0], rows[1] + 1)
+        ]
 
     def text_grid(self, node: Node, host: Address) -> list[list[Scalar]]:
         """Return the constants of a rectangle, 1 for each number, for functions that read units from cells."""
@@ -345,10 +357,12 @@ def _span(first: Axis | None, last: Axis | None, own: int, used: int) -> tuple[i
     return low, max(low, min(high, used))
 
 
-def _stand_in(cell: object) -> Scalar:
-    from doubler.workbook.model import Cell
+def _constant_of(cell: Cell | None) -> Scalar:
+    return None if cell is None or cell.formula is not None else cell.value
 
-    if not isinstance(cell, Cell):
+
+def _stand_in(cell: Cell | None) -> Scalar:
+    if cell is None:
         return None
     if isinstance(cell.value, str):
         return cell.value

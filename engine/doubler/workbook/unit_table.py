@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from fractions import Fraction
 
+from doubler.workbook import unit_fits as fits
 from doubler.workbook import unit_lookups as lookups
 from doubler.workbook import unit_rules as rules
 
@@ -11,7 +12,7 @@ _BY_RULE: dict[rules.Rule, str] = {
     rules.same: "SUM MIN MAX AVERAGE MEDIAN MINA MAXA AVERAGEA MODE MODE.SNGL GEOMEAN HARMEAN UNION",
     rules.first: (
         "ABS INT LARGE SMALL PERCENTILE PERCENTILE.INC PERCENTILE.EXC QUARTILE QUARTILE.INC QUARTILE.EXC "
-        "TRIMMEAN EVEN ODD N VALUE SINGLE ANCHORARRAY"
+        "TRIMMEAN EVEN ODD N VALUE NUMBERVALUE SINGLE ANCHORARRAY"
     ),
     rules.rounded: "ROUND ROUNDUP ROUNDDOWN TRUNC FIXED.NUMBER",
     rules.second: "SUBTOTAL AGGREGATE",
@@ -31,7 +32,7 @@ _BY_RULE: dict[rules.Rule, str] = {
         "COUNT COUNTA COUNTBLANK ROW COLUMN ROWS COLUMNS SIGN RAND RANDBETWEEN TRUE FALSE TODAY NOW DATE TIME "
         "YEAR MONTH DAY HOUR MINUTE SECOND WEEKDAY WEEKNUM DATEVALUE TIMEVALUE DAYS DAYS360 EDATE EOMONTH "
         "NETWORKDAYS WORKDAY YEARFRAC DATEDIF LEN FIND SEARCH CODE UNICODE TYPE ERROR.TYPE SHEET SHEETS "
-        "SEQUENCE PERCENTRANK PERCENTRANK.INC AREAS SKEW KURT ISOWEEKNUM HEX2DEC BIN2DEC DEC2HEX DEC2BIN "
+        "SEQUENCE PERCENTRANK PERCENTRANK.INC AREAS MUNIT SKEW KURT ISOWEEKNUM HEX2DEC BIN2DEC DEC2HEX DEC2BIN "
         "FREQUENCY RANDARRAY"
     ),
     rules.pi: "PI",
@@ -70,25 +71,26 @@ _BY_RULE: dict[rules.Rule, str] = {
     lookups.down_first_column: "VLOOKUP",
     lookups.along_first_row: "HLOOKUP",
     lookups.indexed: "INDEX",
+    lookups.stacked: "HSTACK VSTACK",
     lookups.matched: "MATCH XMATCH",
     lookups.across_to: "XLOOKUP",
     lookups.looked_up: "LOOKUP",
     lookups.by_criteria: "SUMIF AVERAGEIF",
     lookups.by_many_criteria: "SUMIFS AVERAGEIFS MINIFS MAXIFS",
     lookups.counted_by_criteria: "COUNTIF COUNTIFS",
-    lookups.slope: "SLOPE",
-    lookups.intercept: "INTERCEPT STEYX",
-    lookups.line_fit: "LINEST",
-    lookups.forecast: "FORECAST FORECAST.LINEAR",
-    lookups.trend: "TREND",
-    lookups.correlation: "CORREL RSQ PEARSON",
-    lookups.covariance: "COVAR COVARIANCE.P COVARIANCE.S",
-    lookups.matrix_product: "MMULT",
-    lookups.standardised: "STANDARDIZE",
+    fits.slope: "SLOPE",
+    fits.intercept: "INTERCEPT STEYX",
+    fits.line_fit: "LINEST",
+    fits.forecast: "FORECAST FORECAST.LINEAR",
+    fits.trend: "TREND",
+    fits.correlation: "CORREL RSQ PEARSON",
+    fits.covariance: "COVAR COVARIANCE.P COVARIANCE.S",
+    fits.matrix_product: "MMULT",
+    fits.standardised: "STANDARDIZE",
     lookups.ranked: "RANK RANK.EQ RANK.AVG",
-    lookups.converted: "CONVERT",
-    lookups.normal_probability: "NORMDIST NORM.DIST",
-    lookups.normal_quantile: "NORMINV NORM.INV",
+    fits.converted: "CONVERT",
+    fits.normal_probability: "NORMDIST NORM.DIST",
+    fits.normal_quantile: "NORMINV NORM.INV",
 }
 
 RULES: dict[str, rules.Rule] = {name: rule for rule, names in _BY_RULE.items() for name in names.split()}

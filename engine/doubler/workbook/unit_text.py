@@ -16,9 +16,9 @@ DASHES = frozenset(
 )
 UNIT_HEADS = re.compile(r"^(?:units?|uom|u\.?o\.?m\.?|dim(?:ension)?s?|einheit|units? of measure)\s*:?$", re.IGNORECASE)
 
-_WORDLIKE = frozenset(
-    ("in a min bar at mil oz pt day year hand as pa gr gal rev rod can cal dB ea no max tex T t").split()
-)
+_WORDLIKE_TEXTS = "in a min bar at mil oz pt day year hand as pa gr gal rev rod can cal dB ea no max tex T t"
+_WORDLIKE = frozenset(_WORDLIKE_TEXTS.split())
+_SYMBOL_FIRST = re.compile(r"^\S+\s+[(\[]|^(?![NJWm]\b)[A-Za-z]\s+[A-Za-zµ°(]")
 _MISSPELT = re.compile(r"^[A-Za-zµμΩ°%]+[23]?(?:\s?[/·*^.\-]\s?\(?[A-Za-zµμ°]+\)?\^?-?[0-9]*|\^-?[0-9.]+|[²³⁴])*$")
 _PHRASE = re.compile(
     r"^(?:all\s+)?(?:units?(?:\s+(?:are|is))?(?:\s+in)?|values?\s+in|in|all\s+in|given\s+in)\s*[:=]?\s+"
@@ -71,6 +71,8 @@ def read_unit_text(text: str) -> UnitText:
     odd = bare[0].isdigit() or bare[0] in "=+<>~#'\"" or "?" in bare
     if odd and not bare.startswith("1/"):
         return NOTHING  # '1/K' is a unit, '10 mm' a quantity
+    if _SYMBOL_FIRST.match(bare):
+        return NOTHING  # 'A (in2)' and 't mm' are symbols with their units
     try:
         unit = parse_unit(bare)
     except UnitError as error:
@@ -85,8 +87,8 @@ _BY_CASE = (
     "mm^2 mm3 mm^3 mm4 mm^4 in2 in^2 in3 in^3 in4 in^4 lbf/in lb/in kg g Hz kHz rad deg °C °F m/s m/s2 kg/m3 "
     "kg/m^3 N·m kN·m in-lbf ft-lbf lbf-in lbf-ft in-lb ft-lb rpm N/m2 N/m^2 kN/m2 kN/m^2 kN/mm2 cm2 cm3 cm4 m2 m3 "
     "m4 lbf/in2 lbf/in^2 mm/mm 1/°C 1/K ppm/°C J kJ kW"
-).split()
-_FOLDED = {text.casefold(): text for text in _BY_CASE}
+)
+_FOLDED = {text.casefold(): text for text in _BY_CASE.split()}
 
 
 def _meant_as_unit(text: str) -> bool:

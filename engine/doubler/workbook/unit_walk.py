@@ -89,6 +89,9 @@ class Surroundings(Protocol):
     def constant(self, node: Node, host: Address) -> Scalar:
         """Return the constant that a cell holds, or None; the result then hangs on that value."""
 
+    def key_grid(self, node: Node, host: Address) -> list[list[Scalar]]:
+        """Return the constants of a rectangle, among which a key is looked up."""
+
     def text_grid(self, node: Node, host: Address) -> list[list[Scalar]]:
         """Return the constants of a rectangle, for functions that read units from cells."""
 
