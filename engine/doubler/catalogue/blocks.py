@@ -13,15 +13,18 @@ from collections.abc import Callable
 from concurrent.futures import Future, ThreadPoolExecutor
 from typing import TypeVar
 
-BLOCK = 32768
+BLOCK = 65536
 """Lanes evaluated at a time: large against the cost of a NumPy call, small enough for a core's own cache."""
 
 SHARED = 262144
 """From how many lanes on the blocks are shared over threads; below, waking a thread costs more than it brings."""
 
-SHARED_BLOCK = 131072
-"""Lanes at a time where threads share the work: they pass the interpreter's lock on between blocks' steps, and each
-passing costs about as much as 10,000 lanes of a step."""
+SHARED_BLOCK = 524288
+"""Lanes at a time where threads share the work. A thread that finds the interpreter's lock taken wakes later than a short
+NumPy loop lasts, so that with small blocks one thread would wait until the other is done."""
+
+HEAD_START = 65536
+"""Lanes that the calling thread takes more than the others: they have to be woken first."""
 
 MOST_THREADS = 4
 """More threads than these wait for the memory, not for one another."""
@@ -69,7 +72,8 @@ def in_shares(lanes: int, work: Callable[[int, int], list[Found]]) -> list[Found
     count = threads_for(lanes)
     if count < 2:
         return work(0, lanes)
-    ends = [lanes * k // count for k in range(count + 1)]
+    others = (lanes - HEAD_START) // count
+    ends = [0, *(lanes - others * k for k in range(count - 1, -1, -1))]
     waiting: list[Future[list[Found]] | None] = [
         _submitted(work, start, stop) for start, stop in itertools.pairwise(ends[1:])
     ]

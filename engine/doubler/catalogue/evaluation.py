@@ -114,11 +114,22 @@ def _evaluate_long(function: WorksheetFunction, plan: Plan, values: Sequence[Any
                 for index, _ in varying:
                     given[index] = values[index][piece]
                     scaled[index] = _scaled(given[index], *steps[index], room.get(index))
-                valid = fixed_limits and all(limit.all_within(scaled[i]) for i, limit in limited)
-                if valid and _conditions_hold(function, scaled):
-                    outcome = _kernel_into(function, plan, scaled, out[piece], marks[: piece.stop - begin])
-                else:
+                # The limits are looked at after the kernel has run: its arguments are then in the core's cache. What it
+                # gave for lanes outside them is thrown away.
+                fault: Exception | None = None
+                raw: Any = None
+                try:
+                    raw = function.kernel(*scaled)
+                except Exception as error:  # told below where the limits hold, else the limits are to blame
+                    fault = error
+                if not (fixed_limits and all(limit.all_within(scaled[i]) for i, limit in limited)) or not (
+                    _conditions_hold(function, scaled)
+                ):
                     outcome = _evaluate_valid_lanes(function, plan, scaled, given)
+                elif fault is not None:
+                    raise CallError(function.name, [str(fault)]) if isinstance(fault, Refusal) else fault
+                else:
+                    outcome = _into(function, plan, raw, out[piece], marks[: piece.stop - begin])
                 for failure in outcome.failures:
                     out[piece] = outcome.values
                     where = np.zeros(lanes, dtype=bool)
@@ -129,16 +140,16 @@ def _evaluate_long(function: WorksheetFunction, plan: Plan, values: Sequence[Any
     return Outcome(out, tuple(blocks.in_shares(lanes, share)))
 
 
-def _kernel_into(function: WorksheetFunction, plan: Plan, scaled: Sequence[Any], out: Array, marks: Any) -> Outcome:
-    """Compute a block with arguments that meet their limits into `out`; `marks` is room for one bool a number."""
-    raw = _raw(function, scaled)
+def _into(function: WorksheetFunction, plan: Plan, raw: Any, out: Array, marks: Any) -> Outcome:
+    """Scale what the kernel gave for a block into `out`; `marks` is room for one bool a number."""
     if plan.result_factor != 1.0:
         np.multiply(raw, plan.result_factor, out=out)
     else:
         out[...] = raw
     if plan.result_offset:
         out -= shift(plan)
-    return Outcome(out) if np.isfinite(out, out=marks).all() else _without_lost(function, out)
+    np.isfinite(out, out=marks)
+    return Outcome(out) if np.logical_and.reduce(marks, axis=None) else _without_lost(function, out)
 
 
 def _scaled(value: Any, factor: float | None, offset: float, out: Any = None) -> Any:

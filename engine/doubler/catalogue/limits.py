@@ -42,11 +42,11 @@ class Limit:
             low_ok = values > self.low if self.low_open else values >= self.low
             return low_ok and (values < self.high if self.high_open else values <= self.high)
         if self.low != -np.inf:
-            lowest = values.min(initial=np.inf)
+            lowest = np.minimum.reduce(values, axis=None, initial=np.inf)
             if not (lowest > self.low if self.low_open else lowest >= self.low):
                 return False
         if self.high != np.inf:
-            highest = values.max(initial=-np.inf)
+            highest = np.maximum.reduce(values, axis=None, initial=-np.inf)
             if not (highest < self.high if self.high_open else highest <= self.high):
                 return False
         return True
