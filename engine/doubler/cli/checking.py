@@ -95,3 +95,15 @@ def show_reports(reports: Sequence[CheckReport]) -> None:
         screen.print(Text(f"  {summary}", "bold"))
         screen.print()
     screen.print(Text(CAUTION, "dim"))
+
+
+def run_explain(options: argparse.Namespace) -> int:
+    """Print the chain behind one cell."""
+    from doubler.explain import as_markdown, as_text, explain
+
+    explanation = explain(Path(options.book), options.cell)
+    if options.json:
+        print(json.dumps(explanation.as_object(), ensure_ascii=False, indent=1))
+    else:
+        print(as_markdown(explanation) if options.markdown else as_text(explanation))
+    return 0
