@@ -185,3 +185,16 @@ def test_arrays_give_what_single_values_give() -> None:
     assert many[0] == pytest.approx(torsion_cells.torsion_cells_max(1e6, **given))
     second = torsion_cells.torsion_cells_max(2e6, **(given | {"enclosed_areas": lanes[1]}))
     assert many[1] == pytest.approx(second)
+
+
+def test_cells_one_inside_the_other_reach_the_outside_through_each_other() -> None:
+    nested = {
+        "enclosed_areas": np.array([500.0, 300.0, 100.0]),
+        "wall_lengths": np.array([120.0, 80.0, 40.0]),
+        "wall_thicknesses": np.array([2.0, 2.0, 2.0]),
+        "wall_cells": np.array([1.0, 2.0, 3.0]),
+        "wall_neighbours": np.array([0.0, 1.0, 2.0]),
+    }
+    stresses = [torsion_cells.torsion_cells(1e6, **nested, wall=float(wall)) for wall in (1, 2, 3)]
+    flows = np.cumsum(np.array(stresses) * 2.0)
+    assert 2.0 * np.sum(flows * nested["enclosed_areas"]) == pytest.approx(1e6)
