@@ -20,8 +20,8 @@ SHARED = 262144
 """From how many lanes on the blocks are shared over threads; below, waking a thread costs more than it brings."""
 
 SHARED_BLOCK = 524288
-"""Lanes at a time where threads share the work. A thread that finds the interpreter's lock taken wakes later than a short
-NumPy loop lasts, so that with small blocks one thread would wait until the other is done."""
+"""Lanes at a time where threads share the work. A thread that finds the interpreter's lock taken wakes later than a
+short NumPy loop lasts, so that with small blocks one thread would wait until the other is done."""
 
 HEAD_START = 65536
 """Lanes that the calling thread takes more than the others: they have to be woken first."""
