@@ -30,6 +30,7 @@ class _Support:
     other: int
     headed: bool
     titled: bool
+    head_row: int = 0
 
 
 class UnitCells:
@@ -54,6 +55,7 @@ class UnitCells:
                 return read
             if (
                 column.headed
+                and at[0] > column.head_row
                 and " " not in text
                 and len(text) <= 12
                 and text.casefold() not in _NO_UNITS
@@ -98,13 +100,16 @@ class UnitCells:
             layout = self._layout
             texts: list[str] = []
             heads: list[str] = []
+            head_row = 0
             for row in layout.rows_of_text.get(column, ()):
                 text = layout.texts[row, column]
+                if not head_row and UNIT_HEADS.match(text):
+                    head_row = row
                 beside = layout.holds_number((row, column - 1)) or layout.holds_number((row, column + 1))
                 (texts if beside else heads).append(text)
             headed = any(UNIT_HEADS.match(text) for text in heads + texts)
             titled = bool(heads) and not headed
-            known = self._columns[column] = _count(texts, headed=headed, titled=titled)
+            known = self._columns[column] = _count(texts, headed=headed, titled=titled, head_row=head_row)
         return known
 
     def _row(self, row: int) -> _Support:
@@ -115,7 +120,7 @@ class UnitCells:
         return known
 
 
-def _count(texts: list[str], *, headed: bool, titled: bool) -> _Support:
+def _count(texts: list[str], *, headed: bool, titled: bool, head_row: int = 0) -> _Support:
     firm = doubtful = other = 0
     kinds: set[str] = set()
     for text in texts:
@@ -127,4 +132,4 @@ def _count(texts: list[str], *, headed: bool, titled: bool) -> _Support:
             kinds.add(text)
         elif read.unit.text != "1":
             firm += 1
-    return _Support(firm, doubtful, len(kinds), other, headed, titled)
+    return _Support(firm, doubtful, len(kinds), other, headed, titled, head_row)

@@ -245,7 +245,7 @@ class _Tracer:
         from doubler.workbook.carried import Hidden
 
         for item in hidden:
-            if not isinstance(item, Hidden) or len(item.text.strip("0.")) < 3:
+            if not isinstance(item, Hidden) or not item.text[0].isdigit() or len(item.text.strip("0.")) < 3:
                 continue
             first = self.hidden.setdefault(item.text, (item.dimension, item.scale, address_text(key[1])))
             if first[0] != item.dimension or abs(first[1] / item.scale - 1) > 1e-6:

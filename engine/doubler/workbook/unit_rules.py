@@ -19,6 +19,7 @@ from doubler.workbook.carried import (
     RATIO,
     TEXT,
     Carried,
+    Hidden,
     Reading,
     State,
     divide,
@@ -84,6 +85,17 @@ def ratio(walk: Walk, call: Call) -> Carried:
         require_ratio(node, call.name)
         _settle_ratio(walk, node)
     return replace(RATIO, sources=independent(tuple(s for n in nodes for s in n.sources)))
+
+
+def logarithm(walk: Walk, call: Call) -> Carried:
+    """LN, LOG, LOG10: of a ratio; of a quantity the number in its own unit is meant, as in fits of test data."""
+    node = walk.one(call.arguments[0])
+    for argument in call.arguments[1:]:
+        require_ratio(walk.one(argument), call.name)
+    if node.state is State.KNOWN and not node.opens and node.dimension != NONE:
+        meant = Hidden(f"{call.name} of a number", node.dimension, node.readings[0].scale)
+        return replace(RATIO, sources=independent(node.sources), hidden=(*node.hidden, meant))
+    return ratio(walk, Call(call.name, call.arguments[:1]))
 
 
 def _settle_ratio(walk: Walk, node: Carried) -> None:

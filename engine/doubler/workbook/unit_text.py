@@ -14,6 +14,8 @@ LONGEST_UNIT = 24
 DASHES = frozenset(
     {"-", "–", "—", "[-]", "(-)", "[–]", "--", "[1]", "dimensionless", "nondimensional", "unitless", "ratio"}
 )
+COUNTS = frozenset({"cycles", "cycle", "flights", "blocks", "pcs", "plies"})
+"""Words that stand where a unit does and say that the number is a count."""
 UNIT_HEADS = re.compile(r"^(?:units?|uom|u\.?o\.?m\.?|dim(?:ension)?s?|einheit|units? of measure)\s*:?$", re.IGNORECASE)
 
 _WORDLIKE_TEXTS = "in a min bar at mil oz pt day year hand as pa gr gal rev rod can cal dB ea no max tex T t"
@@ -50,6 +52,29 @@ class UnitText:
 NOTHING = UnitText(None)
 
 
+_POWERED = re.compile(
+    r"^(?:[x×]\s*)?(?:10\^?\(?(?P<plain>[+\-−]?\d{1,2})\)?|1[eE](?P<typed>[+\-−]?\d{1,2})|10(?P<raised>[⁺⁻]?[⁰¹²³⁴⁵⁶⁷⁸⁹]+))"
+    r"\s*(?P<sign>[/·*× ]?)\s*(?P<unit>[A-Za-zµ°].*)?$"
+)
+_RAISED = str.maketrans("⁰¹²³⁴⁵⁶⁷⁸⁹⁺⁻−", "0123456789+--")
+
+
+def _powered(match: re.Match[str], bare: str) -> UnitText:
+    """Read a unit with a power of ten before it: ``10^-6/K``, ``×10⁶ mm⁴``."""
+    exponent = match["plain"] or match["typed"] or match["raised"]
+    rest = match["unit"]
+    if "^" not in bare and match["plain"] and match["plain"][0] not in "+-−":
+        return NOTHING  # '106 mm' may be a quantity
+    try:
+        unit = parse_unit(rest) if rest else parse_unit("1")
+    except UnitError:
+        return NOTHING
+    if match["sign"] == "/":
+        unit = parse_unit("1") / unit
+    scale = 10.0 ** int(exponent.translate(_RAISED)) * unit.scale
+    return UnitText(Unit(bare, unit.dimension, scale, system=unit.system))
+
+
 @lru_cache(maxsize=65536)
 def read_unit_text(text: str) -> UnitText:
     """Look at a text as a unit.
@@ -68,6 +93,11 @@ def read_unit_text(text: str) -> UnitText:
         return NOTHING
     if bare.casefold() in DASHES or bare == "1":
         return UnitText(parse_unit("1"))
+    if bare.casefold() in COUNTS:
+        return UnitText(parse_unit("1"))
+    powered = _POWERED.match(bare)
+    if powered is not None:
+        return _powered(powered, bare)
     odd = bare[0].isdigit() or bare[0] in "=+<>~#'\"" or "?" in bare
     if odd and not bare.startswith("1/"):
         return NOTHING  # '1/K' is a unit, '10 mm' a quantity

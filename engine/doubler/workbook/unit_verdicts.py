@@ -187,7 +187,9 @@ class Tracing:
     def reason(self, root: Key) -> str:
         """Return why the trace is lost at a cell."""
         judgement = self.verdict(*root)
-        return "" if judgement is None else judgement.reason
+        if judgement is None:
+            return ""
+        return judgement.reason or "its own units contradict each other"
 
     def counts(self) -> dict[str, int]:
         """Return how many formula cells are sound, found at fault and not traced."""
