@@ -3,13 +3,13 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import Any
 
 import numpy as np
 
 from doubler.catalogue.evaluation import Outcome, evaluate, scaled_values, shift
-from doubler.catalogue.forms import OMITTED, ArgumentError, Bound, bind
+from doubler.catalogue.forms import OMITTED, ArgumentError, Bound, bind, due
 from doubler.catalogue.plan import CallError, Plan, plan_for
 from doubler.catalogue.record import WorksheetFunction
 from doubler.errors import ErrorValue
@@ -85,11 +85,11 @@ def call_cells(function: WorksheetFunction, arguments: Sequence[Any]) -> CellRes
         shape, values = _vector_shape(function, bound)
         outcome = evaluate(function, plan, values)
     except CallError as error:
-        return CellResult([[error.value]], error.reasons)
+        return CellResult([[error.value]], tuple(f"{function.name}: {reason}" for reason in error.reasons))
     if shape == (1, 1) and not outcome.failures and all(type(a) is str for a in arguments):
         _remember(function, tuple(arguments), plan, values, wanted is None)
     result = _layout(function, outcome, plan, shape, wanted is None)
-    return _with_blanks(result, bound, shape, wanted is None)
+    return _with_blanks(function, result, bound, shape, wanted is None)
 
 
 def _remember(
@@ -136,7 +136,7 @@ def bind_all(
     for index, argument in enumerate(declared):
         item = given[index] if index < len(given) else None
         if item is None and not argument.optional:
-            reasons.append(f"{argument.name} is missing ({argument.kind_name})")
+            reasons.append(f"{argument.name} is missing; write {due(argument)}")
             value = ErrorValue.VALUE
             continue
         if item is None:
@@ -151,7 +151,35 @@ def bind_all(
     if reasons:
         raise CallError(function.name, reasons, value or ErrorValue.VALUE)
     _alike_forms(function, bound)
-    return bound, wanted
+    return _without_headings(function, given, bound), wanted
+
+
+def _without_headings(function: WorksheetFunction, given: Sequence[Any], bound: list[Bound]) -> list[Bound]:
+    """Drop the heading of a column of texts where a column of numbers over as many cells has one.
+
+    One text more than there are numbers is no sign of a heading: an empty cell below the numbers looks the same, and
+    every text would then stand beside its neighbour's number.
+    """
+    columns = [
+        (item, argument.is_text, read)
+        for argument, item, read in zip(function.arguments, given, bound, strict=False)
+        if argument.entries and isinstance(item, list | tuple)
+    ]
+    headed = {_extent(item) for item, is_text, read in columns if not is_text and _is_headed(item, read)}
+    drop = {id(read) for item, is_text, read in columns if is_text and _extent(item) in headed}
+    return [replace(read, values=read.values[1:]) if id(read) in drop else read for read in bound]
+
+
+def _extent(item: Sequence[Sequence[Any]]) -> tuple[int, int]:
+    return len(item), len(item[0])
+
+
+def _is_headed(item: Sequence[Sequence[Any]], read: Bound) -> bool:
+    """Return whether a column of numbers was read without its first cell, a heading; empty cells end it."""
+    flat = [cell for row in item for cell in row]
+    while flat and flat[-1] is None:
+        flat.pop()
+    return isinstance(flat[0], str) and read.values.shape[-1] == len(flat) - 1
 
 
 def _default(default: Any) -> Bound:
@@ -190,6 +218,8 @@ def _split_result(function: WorksheetFunction, given: list[Any]) -> tuple[list[A
         return given, None, None
     if isinstance(wanted, ErrorValue):
         raise CallError(function.name, [f"the unit wanted is the error {wanted}"], wanted)
+    if wanted is False:
+        raise CallError(function.name, ['the last argument names one unit or one set, such as "MPa"; it is a range'])
     if not isinstance(wanted, str):
         raise CallError(function.name, [f'the last argument names a unit or a set, such as "MPa"; it is {wanted!r}'])
     try:
@@ -270,7 +300,9 @@ def _add_units(grid: list[list[Any]], text: str, shape: tuple[int, int]) -> list
     return [[*line, text] for line in grid]
 
 
-def _with_blanks(result: CellResult, bound: Sequence[Bound], shape: tuple[int, int], show_unit: bool) -> CellResult:
+def _with_blanks(
+    function: WorksheetFunction, result: CellResult, bound: Sequence[Bound], shape: tuple[int, int], show_unit: bool
+) -> CellResult:
     """Put the error of an element that holds no number in that element's place."""
     blanks = [blank for item in bound for blank in item.blanks]
     if not blanks:
@@ -282,5 +314,5 @@ def _with_blanks(result: CellResult, bound: Sequence[Bound], shape: tuple[int, i
         cells = range(width) if shape[1] == 1 else [column]
         for position in cells:
             grid[row][position] = value
-    told = tuple(dict.fromkeys((*(reason for _, _, reason in blanks), *result.reasons)))
+    told = tuple(dict.fromkeys((*(f"{function.name}: {reason}" for _, _, reason in blanks), *result.reasons)))
     return CellResult(grid, told, result.unit)

@@ -70,7 +70,8 @@ def evaluate(function: WorksheetFunction, plan: Plan, values: Sequence[Any]) -> 
 
 def scaled_values(plan: Plan, values: Sequence[Any]) -> list[Any]:
     """Bring all arguments to the kernel's units."""
-    return [_scaled(*step) for step in zip(values, plan.factors, plan.offsets, strict=True)]
+    with np.errstate(all="ignore"):
+        return [_scaled(*step) for step in zip(values, plan.factors, plan.offsets, strict=True)]
 
 
 def _long_lanes(function: WorksheetFunction, values: Sequence[Any]) -> int:
@@ -91,7 +92,7 @@ def _evaluate_long(function: WorksheetFunction, plan: Plan, values: Sequence[Any
     plan = folded(plan)
     long = [isinstance(value, np.ndarray) and value.shape[0] > 1 for value in values]
     steps = list(zip(plan.factors, plan.offsets, strict=True))
-    fixed = [None if on else _scaled(value, *step) for value, step, on in zip(values, steps, long, strict=True)]
+    fixed = scaled_values(plan, [None if on else value for value, on in zip(values, long, strict=True)])
     fixed_limits = all(
         argument.limit is None or value is None or argument.limit.all_within(value)
         for argument, value in zip(function.arguments, fixed, strict=True)

@@ -6,6 +6,8 @@ many cases, a float64 array with one number a case (a *lane*). A range is a list
 
 from __future__ import annotations
 
+import math
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 from itertools import chain
@@ -28,6 +30,7 @@ from doubler.units import (
     split_heading,
 )
 
+_BARE = re.compile(r"\s*[+\-−]?(?:\d+\.?\d*|\.\d+)(?:[eE][+\-−]?\d+)?\s*")
 Grid = Sequence[Sequence[Any]]
 
 
@@ -96,9 +99,11 @@ def bind(argument: Argument, given: Any, chosen: ConsistentSet | None, lanes: bo
     if all(cell is None for cell in flat):
         if argument.optional and not isinstance(given, list | tuple):
             return OMITTED
-        raise ArgumentError(f"{argument.name} is an empty cell; fill it in ({_due(argument)})")
+        raise ArgumentError(f"{argument.name} is an empty cell; fill it in ({due(argument)})")
     if argument.is_text:
         return _bind_text(argument, flat)
+    if not argument.entries and len(flat) == 2 and len(cells) == 1 and _is_paired(cells):
+        return _bind_pair(argument, *flat)
     if len(flat) == 1 and not argument.entries:
         return _bind_scalar(argument, flat[0], chosen)
     return _bind_range(argument, cells, chosen, lanes)
@@ -116,7 +121,7 @@ def _rectangle(rows: Sequence[Any]) -> tuple[str | None, Array] | None:
     end = len(rows)
     while end > 1 and len(rows[end - 1]) == 1 and rows[end - 1][0] is None:
         end -= 1
-    if end < _LARGE:
+    if end < _LARGE or not rows[0]:
         return None
     width = len(rows[0])
     heading = rows[0][0] if width == 1 and type(rows[0][0]) is str else None
@@ -127,7 +132,7 @@ def _rectangle(rows: Sequence[Any]) -> tuple[str | None, Array] | None:
         flat = np.fromiter(chain.from_iterable(body), np.float64, len(body) * width)
     except OverflowError:  # a whole number beyond every float
         return None
-    return heading, flat.reshape(-1, width)
+    return (heading, flat.reshape(-1, width)) if np.isfinite(flat).all() else None
 
 
 def _bind_numbers(
@@ -149,6 +154,8 @@ def _bind_numbers(
 
 def _trim(cells: list[list[Any]]) -> list[list[Any]]:
     """Drop the empty rows and columns at the end: a whole-column reference ends where its values end."""
+    if not cells or not cells[0]:
+        return [[None]]
     while len(cells) > 1 and all(cell is None for cell in cells[-1]):
         cells.pop()
     while len(cells[0]) > 1 and all(row[-1] is None for row in cells):
@@ -156,7 +163,7 @@ def _trim(cells: list[list[Any]]) -> list[list[Any]]:
     return cells
 
 
-def _due(argument: Argument) -> str:
+def due(argument: Argument) -> str:
     """Say what is due, with an example to copy."""
     if argument.choices:
         return "one of " + ", ".join(f'"{choice}"' for choice in argument.choices)
@@ -183,7 +190,7 @@ def _bind_text(argument: Argument, flat: list[Any]) -> Bound:
         for choice in argument.choices:
             if text.strip().casefold() == choice.casefold():
                 return Bound(choice, None)
-        raise ArgumentError(f"{argument.name} is {text!r}; write {_due(argument)}")
+        raise ArgumentError(f"{argument.name} is {text!r}; write {due(argument)}")
     return Bound(text, None)
 
 
@@ -194,20 +201,36 @@ def _text_of(cell: Any) -> str:
 
 
 def _bind_scalar(argument: Argument, cell: Any, chosen: ConsistentSet | None) -> Bound:
-    if isinstance(cell, ErrorValue):
-        raise ArgumentError(f"{argument.name} is the error {cell}", cell)
-    if isinstance(cell, bool):
-        raise ArgumentError(f"{argument.name} is {str(cell).upper()}; write {_due(argument)}")
     if isinstance(cell, str):
         value, unit = _quantity(argument, cell)
         return Bound(np.array([value]), unit)
-    return Bound(np.atleast_1d(np.asarray(cell, dtype=np.float64)), bare_unit(argument, chosen, cell))
+    number = _number(argument, cell)
+    return Bound(np.atleast_1d(np.asarray(number, dtype=np.float64)), bare_unit(argument, chosen, number))
+
+
+def _number(argument: Argument, cell: Any) -> Any:
+    """Return a cell's number (or its numbers over cases), or say what stands there instead."""
+    if isinstance(cell, ErrorValue):
+        raise ArgumentError(f"{argument.name} is the error {cell}", cell)
+    if not is_number(cell):
+        raise ArgumentError(f"{argument.name} is {_shown(cell)}; write {due(argument)}")
+    if not isinstance(cell, np.ndarray) and not math.isfinite(cell):
+        raise ArgumentError(f"{argument.name} is {cell:g}, not a finite number; write {due(argument)}", ErrorValue.NUM)
+    return cell
+
+
+def _shown(cell: Any) -> str:
+    return str(cell).upper() if isinstance(cell, bool) else repr(cell) if isinstance(cell, str) else str(cell)
 
 
 def _quantity(argument: Argument, text: str) -> tuple[float, Unit | None]:
     """Read text such as ``12 kN`` and see that its unit fits the argument."""
     if not text.strip():
-        raise ArgumentError(f"{argument.name} is empty text; write {_due(argument)}")
+        raise ArgumentError(f"{argument.name} is empty text; write {due(argument)}")
+    if _BARE.fullmatch(text):
+        dimensionless = isinstance(argument.quantity, Quantity) and kind(argument.quantity.kind).dimensionless
+        mend = f"the number {text.strip()} without quotes" if dimensionless else due(argument)
+        raise ArgumentError(f"{argument.name} is the text {text!r}, which has no unit; write {mend}")
     try:
         value, unit = parse_quantity(text)
     except UnitError as error:
@@ -215,11 +238,11 @@ def _quantity(argument: Argument, text: str) -> tuple[float, Unit | None]:
     return value, _fitting(argument, unit)
 
 
-def _fitting(argument: Argument, unit: Unit) -> Unit:
+def _fitting(argument: Argument, unit: Unit, place: str = "") -> Unit:
     if isinstance(argument.quantity, Quantity):
         why_not = kind(argument.quantity.kind).accepts(unit)
         if why_not:
-            raise ArgumentError(f"{argument.name}: {why_not}")
+            raise ArgumentError(f"{place or argument.name}: {why_not}")
     return unit
 
 
@@ -239,7 +262,7 @@ def bare_unit(argument: Argument, chosen: ConsistentSet | None, cell: Any) -> Un
         return parse_unit("1")
     shown = "an array of bare numbers" if isinstance(cell, np.ndarray) else f"the bare number {cell:g}"
     raise ArgumentError(
-        f"{argument.name} is {shown} and has no unit; write {_due(argument)}, "
+        f"{argument.name} is {shown} and has no unit; write {due(argument)}, "
         f'or name a consistent set such as "N-mm" as the last argument'
     )
 
@@ -247,7 +270,7 @@ def bare_unit(argument: Argument, chosen: ConsistentSet | None, cell: Any) -> Un
 def _bind_range(argument: Argument, cells: list[list[Any]], chosen: ConsistentSet | None, lanes: bool) -> Bound:
     rows, columns = len(cells), len(cells[0])
     first = cells[0][0]
-    if columns == 2 and all(is_number(row[0]) and isinstance(row[1], str) for row in cells):
+    if columns == 2 and _is_paired(cells):
         return _bind_pairs(argument, cells, lanes)
     if isinstance(first, str) and 1 in (rows, columns):
         flat = [cell for row in cells for cell in row]
@@ -258,7 +281,7 @@ def _bind_range(argument: Argument, cells: list[list[Any]], chosen: ConsistentSe
         return _vector(argument, flat[1:], unit, shape, lanes, offset=2)
     sample = next((cell for row in cells for cell in row if is_number(cell)), None)
     if sample is None:
-        raise ArgumentError(f"{argument.name} is a range without numbers; write {_due(argument)}")
+        raise ArgumentError(f"{argument.name} is a range without numbers; write {due(argument)}")
     unit = bare_unit(argument, chosen, sample)
     return _vector(argument, [cell for row in cells for cell in row], unit, (rows, columns), lanes)
 
@@ -295,26 +318,57 @@ def _unit_hint(argument: Argument) -> str:
     return kind(argument.quantity.kind).metric if isinstance(argument.quantity, Quantity) else "MPa"
 
 
+def _is_paired(cells: list[list[Any]]) -> bool:
+    """Return whether the second of two columns holds units: text, and where there is none an error or a gap."""
+    seconds = [row[1] for row in cells]
+    return (
+        any(isinstance(cell, str) for cell in seconds)
+        and all(cell is None or isinstance(cell, str | ErrorValue) for cell in seconds)
+        and not any(isinstance(row[0], str) for row in cells)
+    )
+
+
+def _bind_pair(argument: Argument, value: Any, text: str) -> Bound:
+    """Read a value cell with its unit cell at the right."""
+    if value is None:
+        raise ArgumentError(f"{argument.name} is an empty cell beside {text!r}; fill it in ({due(argument)})")
+    checked = _number(argument, value)
+    try:
+        unit = _fitting(argument, parse_unit(text))
+    except UnitError as error:
+        raise ArgumentError(f"{argument.name}: {error}") from error
+    return Bound(np.atleast_1d(np.asarray(checked, dtype=np.float64)), unit)
+
+
 def _bind_pairs(argument: Argument, cells: list[list[Any]], lanes: bool) -> Bound:
     """Read n values, each with its own unit; all are brought to the unit of the first."""
-    units: list[Unit] = []
-    for index, row in enumerate(cells):
+    units: list[Unit | None] = []
+    values: list[Any] = []
+    for index, (value, text) in enumerate(cells, start=1):
+        place = f"{argument.name}, row {index}"
+        if value is None or isinstance(value, ErrorValue) or not isinstance(text, str):
+            units.append(None)
+            gap = text if isinstance(text, ErrorValue) and not isinstance(value, ErrorValue) else value
+            if is_number(gap):
+                raise ArgumentError(f"{place} has no unit beside it; write one, such as {_unit_hint(argument)}")
+            values.append(gap)
+            continue
         try:
-            units.append(_fitting(argument, parse_unit(row[1])))
+            units.append(_fitting(argument, parse_unit(text), place))
         except UnitError as error:
-            raise ArgumentError(f"{argument.name}, row {index + 1}: {error}") from error
-    unit = units[0]
-    for index, other in enumerate(units):
-        if other.dimension != unit.dimension:
+            raise ArgumentError(f"{place}: {error}") from error
+        values.append(value)
+    unit = next((own for own in units if own is not None), None)
+    for index, other in enumerate(units, start=1):
+        if other is not None and unit is not None and other.dimension != unit.dimension:
             raise ArgumentError(
-                f"{argument.name}, row {index + 1}: {other.text} and {unit.text} are unlike; give one kind of quantity"
+                f"{argument.name}, row {index}: {other.text} and {unit.text} are unlike; give one kind of quantity"
             )
-    values = [
-        row[0] if other == unit else convert(row[0], other, unit) for row, other in zip(cells, units, strict=True)
+    brought = [
+        value if own is None or unit is None or own == unit or not is_number(value) else convert(value, own, unit)
+        for value, own in zip(values, units, strict=True)
     ]
-    if len(cells) == 1 and not argument.entries:
-        return Bound(np.atleast_1d(np.asarray(values[0], dtype=np.float64)), unit)
-    return _vector(argument, values, unit, (len(cells), 1), lanes)
+    return _vector(argument, brought, unit, (len(cells), 1), lanes)
 
 
 def _bind_texts(argument: Argument, flat: list[Any], shape: tuple[int, int], lanes: bool) -> Bound:
@@ -350,24 +404,28 @@ def _vector(
     blanks: list[tuple[int, ErrorValue, str]] = []
     values = list(flat)
     for index, cell in enumerate(flat):
-        if is_number(cell):
+        if is_number(cell) and (isinstance(cell, np.ndarray) or math.isfinite(cell)):
             continue
         place = f"{argument.name}, entry {index + offset}"
         if isinstance(cell, ErrorValue):
             value, reason = cell, f"{place} is the error {cell}"
         elif cell is None:
-            value, reason = ErrorValue.VALUE, f"{place} is an empty cell"
+            value, reason = ErrorValue.VALUE, f"{place} is an empty cell; fill it in"
+        elif is_number(cell):
+            value, reason = ErrorValue.NUM, f"{place} is {cell:g}; write a finite number"
         else:
-            value, reason = ErrorValue.VALUE, f"{place} is {cell!r}, not a number"
+            value, reason = ErrorValue.VALUE, f"{place} is {_shown(cell)}, not a number; write a number"
         blanks.append((index, value, reason))
-    stand_in = next((cell for cell in flat if is_number(cell)), None)
+    bad = {index for index, _, _ in blanks}
+    stand_in = next((cell for index, cell in enumerate(flat) if index not in bad), None)
     if stand_in is None:
         raise ArgumentError(blanks[0][2], blanks[0][1])
     for index, _, _ in blanks:
         values[index] = stand_in  # computed with, then overlaid by the error: the reason stays the true one
     if argument.entries:
         if blanks:
-            raise ArgumentError(blanks[0][2] + "; the whole column is one argument and must hold numbers", blanks[0][1])
+            told = f"{blanks[0][2]} (the whole column is one argument and must hold numbers)"
+            raise ArgumentError(told, blanks[0][1])
         stacked = np.stack(np.broadcast_arrays(*[np.atleast_1d(v) for v in values]), axis=-1).astype(np.float64)
         return Bound(stacked, unit, shape)
     if lanes:

@@ -266,11 +266,27 @@ def worksheet_function(
     def declare(kernel: Callable[..., Any]) -> WorksheetFunction:
         if name in _REGISTERED:
             raise TypeError(f"{name} is declared twice")
+        _check_names(name, kernel, valid or {}, conditions)
         function = WorksheetFunction(name, kernel, valid or {}, conditions)
         _REGISTERED[name] = function
         return function
 
     return declare
+
+
+def _check_names(
+    name: str, kernel: Callable[..., Any], valid: Mapping[str, Limit], conditions: Sequence[Condition]
+) -> None:
+    """Refuse at once what can be seen without reading annotations or docstrings; `check_declaration` sees the rest."""
+    category, _, thing = name.partition("_")
+    if category not in CATEGORIES or not thing or not name.isupper() or not name.isascii():
+        raise TypeError(
+            f"{name}: a worksheet name is CATEGORY_THING in capitals; categories are {', '.join(CATEGORIES)}"
+        )
+    known = kernel.__code__.co_varnames[: kernel.__code__.co_argcount]
+    loose = [n for n in (*valid, *(n for rule in conditions for n in rule.names)) if n not in known]
+    if loose:
+        raise TypeError(f"{name}: limits are declared for unknown arguments {', '.join(sorted(set(loose)))}")
 
 
 def lookup(name: str) -> WorksheetFunction | None:
