@@ -71,3 +71,21 @@ def test_over_cases_each_lane_has_its_own_governing_item() -> None:
     lanes = np.array([[0.4, 0.1, 1.2], [0.0, 0.1, -0.2]])
     assert list(margins_envelope.governing(lanes, ["a", "b", "c"])) == ["b", "c"]
     assert list(margins_envelope.envelope(lanes)) == [0.1, -0.2]
+
+
+def test_an_empty_margin_at_the_end_never_shifts_the_names() -> None:
+    for margins in ([[0.4], [0.1], [None]], [["MS"], [0.4], [0.1], [None]]):
+        names = NAMES if margins[0] == ["MS"] else NAMES[1:]
+        found = call("MARGIN_GOVERNING", margins, names)
+        assert found.grid == [[ErrorValue.VALUE]]
+        assert "same rows" in found.reasons[0]
+
+
+def test_names_without_the_heading_that_the_margins_have_are_taken_as_they_stand() -> None:
+    assert call("MARGIN_GOVERNING", [["MS"], [0.4], [0.1], [1.2]], NAMES[1:]).grid == [["bearing"]]
+    assert call("MARGIN_GOVERNING", [["MS", 0.4, 0.1]], [["Check", "net section", "bearing"]]).grid == [["bearing"]]
+
+
+def test_a_heading_above_the_names_alone_is_refused() -> None:
+    found = call("MARGIN_GOVERNING", [[0.4], [0.1], [1.2]], NAMES)
+    assert found.grid == [[ErrorValue.VALUE]]

@@ -117,9 +117,10 @@ def test_an_attached_number_is_read_back_as_itself(number: float) -> None:
     assert float(text.split(" ", maxsplit=1)[0]) == number
 
 
-def test_a_heading_above_names_is_dropped_and_another_length_refused() -> None:
-    assert aligned(["Name", " a", "b "], 2, "names") == ["a", "b"]
-    with pytest.raises(InputError, match="same rows"):
-        aligned(["a"], 2, "names")
+def test_texts_beside_numbers_are_as_many_and_a_name_is_the_same_in_any_case() -> None:
+    assert aligned([" a", "b "], 2, "names") == ["a", "b"]
+    for texts in (["a"], ["Name", "a", "b"]):
+        with pytest.raises(InputError, match="same rows"):
+            aligned(texts, 2, "names")
     assert same_text("Al  2024-T3", "al 2024-t3")
     assert not same_text("2024-T3", "2024-T351")

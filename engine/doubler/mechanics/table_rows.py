@@ -8,21 +8,19 @@ from doubler.catalogue.limits import Refusal
 
 
 def aligned(texts: Sequence[str], count: int, name: str) -> list[str]:
-    """Return `count` texts, a heading above them dropped.
+    """Return the texts beside `count` numbers, without the spaces around them.
 
-    A headed column of numbers loses its heading when it is read; the texts beside it then have one cell more.
+    A heading above both is taken off before, when the cells are read; here one text more than there are numbers is a
+    mistake, since each text would stand beside its neighbour's number.
 
     Raises
     ------
     Refusal
         The lengths do not fit.
     """
-    found = [text.strip() for text in texts]
-    if len(found) == count + 1:
-        found = found[1:]
-    if len(found) != count:
-        raise Refusal(f"{name} has {len(found)} cells beside {count} values; give both over the same rows")
-    return found
+    if len(texts) != count:
+        raise Refusal(f"{name} has {len(texts)} cells beside {count} values; give both over the same rows")
+    return [text.strip() for text in texts]
 
 
 def same_text(first: str, second: str) -> bool:
