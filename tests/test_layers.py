@@ -18,7 +18,8 @@ LAYERS = [
     {"workbook"},
     {"cases", "outcome"},
     {"summary"},
-    {"fill", "sweep", "size", "explain", "check"},
+    {"fill", "sweep", "size", "explain"},
+    {"check"},
     {"hosts", "cli", "__main__", "demo"},
 ]
 LEVEL = {name: level for level, names in enumerate(LAYERS) for name in names}
