@@ -29,6 +29,8 @@ PLACES = [
     (rows(("Case", "Load", "Area"), (None, "[kN]", "[mm2]"), ("1", 3, 5)), "B3", "kN"),
     (rows(("Parameter", "Unit", "Value"), ("Force", "kN", 3), ("Area", "mm2", 5)), "C3", "mm2"),
     (rows(("Force / kN", 3)), "B1", "kN"),
+    (rows(("x (in)", "F (N)"), (3, 4)), "A2", "in"),
+    (rows(("x (in)", "F (N)"), (3, 4)), "B2", "N"),
     (rows(("t mm", "A mm2"), (3, 4)), "B2", "mm2"),
     (rows(("Diameter", 0.25, "in"), ("Length", 2, "in")), "B1", "in"),
     (rows(("Loads", 1, 2, 3, "kN")), "B1", "kN"),
@@ -56,6 +58,10 @@ NO_UNITS = [
     rows(("Count", 4, "N/A")),
     rows(("Type in", 4)),
     rows(("Answer", 4, "OK")),
+    rows(("Bolt(s)", 4)),
+    rows(("Section (A)", 4)),
+    rows(("Load (max)", 4)),
+    rows(("Load (min)", 4)),
     rows(("Item", 4, "a"), ("Item", 5, "b"), ("Item", 6, "c")),
 ]
 

@@ -16,7 +16,7 @@ from doubler.workbook.carried import Key
 from doubler.workbook.label_units import bracket_unit, loose_unit, sheet_note_unit
 from doubler.workbook.labels import Label, Labels, Layout
 from doubler.workbook.model import Address, Workbook
-from doubler.workbook.roles import is_difference, is_pure_number
+from doubler.workbook.roles import is_difference, is_pure_number, is_total
 from doubler.workbook.unit_cells import UnitCells
 from doubler.workbook.unit_text import (
     conversion_unit,
@@ -376,6 +376,10 @@ class Declarations:
         head = layout.header_row(address)
         if head is None:
             return None, None, None
+        if layout.apart(head, address[0]):
+            left = layout.left_texts(address)
+            if left and layout.touches_left(address, left[0]) and not is_total(layout.texts[left[-1]]):
+                return None, None, None  # a block of its own below the table
         key = (sheet, head, address[1])
         known = self._heads.get(key)
         if known is None:

@@ -47,7 +47,9 @@ def _fits(read: UnitText, words: str, *, square: bool) -> bool:
     if not read.doubtful or read.unit is None:
         return True
     agrees = role_agrees(read.unit, words)
-    return agrees is not False if square else agrees is True
+    if square or read.unit.text == "in" or _SYMBOL.match(words.strip(" ,:=")):
+        return agrees is not False
+    return agrees is True
 
 
 def loose_unit(text: str) -> Unit | None:

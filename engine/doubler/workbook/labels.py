@@ -72,6 +72,8 @@ class Layout:
             self.columns_of_text.setdefault(row, []).append(column)
         self._ends: dict[tuple[int, int], int] = {}
         self._above: dict[tuple[int, int], tuple[Address, ...]] = {}
+        self._gaps: dict[int, int] = {}
+        self._filled = {row for (row, _), cell in self.cells.items() if cell.formula or cell.value is not None}
 
     def _spread_merged(self) -> None:
         """Let a text that is merged over several cells stand over all of them."""
@@ -154,6 +156,16 @@ class Layout:
                 last = row
             row += 1
         return last
+
+    def apart(self, head: int, row: int) -> bool:
+        """Return whether an empty row of the sheet stands between a header's row and a row below."""
+        gap = self._gaps.get(head)
+        if gap is None:
+            gap = head + 1
+            while gap in self._filled:
+                gap += 1
+            self._gaps[head] = gap
+        return row > gap
 
     def headers(self, address: Address) -> tuple[Address, ...]:
         """Return the header texts above a cell, the nearest first and up to four, stacked on one another."""

@@ -92,6 +92,25 @@ def is_difference(label: str) -> bool:
     return bool(_DIFFERENCE.search(label))
 
 
+_TOTAL = re.compile(
+    r"\b(?:sum|total|totals|max|min|maximum|minimum|mean|average|avg|envelope|worst|critical|governing|std|median|rss|"
+    r"subtotal|resultant)\b|[ΣΔ∑]",
+    re.IGNORECASE,
+)
+
+
+@lru_cache(maxsize=65536)
+def is_total(label: str) -> bool:
+    """Return whether a label names what stands below a column and sums it up: a sum, an extreme, a mean.
+
+    Examples
+    --------
+    >>> is_total("Total load"), is_total("Slope k")
+    (True, False)
+    """
+    return bool(_TOTAL.search(label))
+
+
 @lru_cache(maxsize=65536)
 def is_conversion(label: str) -> bool:
     """Return whether a label says that the number beside it converts units."""

@@ -8,7 +8,7 @@ from dataclasses import dataclass, replace
 
 from doubler.units import Dimension
 from doubler.workbook.alike import describe, hidden_literal, independent
-from doubler.workbook.carried import NONE, Carried, Hidden, Key, Reading, State, Use
+from doubler.workbook.carried import NONE, RATIO, Carried, Hidden, Key, Reading, State, Use
 from doubler.workbook.conversions import conversion, factor_text, factor_words
 from doubler.workbook.declared import Declared
 from doubler.workbook.roles import is_margin
@@ -162,7 +162,7 @@ def _fits(carried: Carried, declared: Declared, reading: Reading, words: str, ce
         sides = ((replace(carried, readings=meant), _due(declared)),) if meant else ()
         fault = Fault("unit-scale", "warning", message, factor, "", "", source_cells(carried), sides)
         return Edge((fault,))
-    return Edge(uses=reading.used)
+    return Edge(uses=reading.used, agrees=odd is None)
 
 
 def _other_scale(carried: Carried, declared: Declared, cell: str, value: object) -> Edge:
@@ -273,7 +273,11 @@ def fault_inside(
     message = f"in {cell}, {words}{where}{mend}"
     expected = describe(first) if second is not None else ""
     found = describe(second if second is not None else first)
-    sides = () if second is None else ((second, first),)
+    sides: tuple[tuple[Carried, Carried], ...] = ()
+    if second is not None:
+        sides = ((second, first),)
+    elif kind == "unit-scale" and first.dimension == NONE:
+        sides = ((first, RATIO),)
     return Fault(kind, "error", message, factor, found, expected, source_cells(*nodes), sides)
 
 

@@ -226,6 +226,7 @@ class _Tracer:
             (*carried.hidden, *edge.hidden),
             edge.faults,
             (*notes_of(carried.hidden, cell), *edge.notes),
+            confirms=edge.agrees,
         )
 
     def _doubt(self, carried: Carried, key: Key) -> tuple[Key, str] | None:

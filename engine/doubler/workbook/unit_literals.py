@@ -69,7 +69,7 @@ def typed_in(carried: Carried, dimension: Dimension, scale: float) -> Hidden | N
 
 def slip(carried: Carried, reading: Reading) -> Factor | None:
     """Return a literal that looks like a conversion, acts on the whole, and converts nothing."""
-    if carried.dimension == NONE or reading.weight:
+    if reading.weight or (carried.dimension == NONE and math.isclose(reading.scale, 1.0)):
         return None
     found: Factor | None = None
     product = 1.0

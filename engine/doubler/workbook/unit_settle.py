@@ -3,14 +3,14 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable
 from dataclasses import dataclass, field
 from fractions import Fraction
 
 from doubler.units import Dimension
-from doubler.workbook.carried import Carried, Key, Source, State, known
+from doubler.workbook.carried import Carried, Key, Source, known
 from doubler.workbook.declared import Declarations
 from doubler.workbook.unit_names import name_unit
+from doubler.workbook.unit_roots import roots
 from doubler.workbook.unit_verdicts import FOUND, Fault, Judgement, Tracing, UnitFinding, cell_text, rectangles
 
 Lanes = dict[int, list[Judgement]]
@@ -134,7 +134,7 @@ def gathered(tracing: Tracing, settlement: Settlement) -> None:
     for key, judgement in tracing.cells():
         cells.setdefault(id(judgement), []).append(key)
         judged[id(judgement)] = judgement
-    rooted, taken = _roots(tracing, list(judged.values()), cells)
+    rooted, taken, follows = roots(tracing, list(judged.values()), cells)
     merged: dict[tuple[object, ...], list[tuple[Judgement, Fault, list[Key]]]] = {}
     for at, judgement in judged.items():
         for fault in judgement.faults:
@@ -155,7 +155,7 @@ def gathered(tracing: Tracing, settlement: Settlement) -> None:
         if judgement.host in doubled:
             judgement.state = FOUND
     findings = [*settlement.conflicts, *rooted, *_texts(tracing)]
-    findings += [_merged(items) for items in merged.values()]
+    findings += [_merged(items, follows) for items in merged.values()]
     order = {sheet.name: index for index, sheet in enumerate(tracing.graph.workbook.sheets)}
     tracing.findings = sorted(findings, key=lambda f: (order.get(f.sheet, 0), f.address, f.kind))
     noted: dict[str, UnitFinding] = {}
@@ -168,139 +168,25 @@ def gathered(tracing: Tracing, settlement: Settlement) -> None:
     tracing.notes = sorted(noted.values(), key=lambda f: (order.get(f.sheet, 0), f.address))
 
 
-def _merged(items: list[tuple[Judgement, Fault, list[Key]]]) -> UnitFinding:
+def _merged(items: list[tuple[Judgement, Fault, list[Key]]], follows: dict[int, list[Key]]) -> UnitFinding:
     first, fault, _ = min(items, key=lambda item: item[0].host[1])
     cells = sorted({key[1] for _, _, keys in items for key in keys})
     areas = rectangles(cells) if len(cells) > 1 else ()
+    behind = tuple(dict.fromkeys(key for _, each, _ in items for key in follows.get(id(each), ())))
+    also = f"; {', '.join(cell_text(key) for key in behind[:4])} {'miss' if len(behind) > 1 else 'misses'} with it"
     return UnitFinding(
         first.host[0],
         first.host[1],
         fault.kind,
         fault.severity,
-        fault.message + (f" (so in {len(cells)} equal formulas)" if len(cells) > 1 else ""),
+        fault.message + (f" (so in {len(cells)} equal formulas)" if len(cells) > 1 else "") + (also if behind else ""),
         fault.factor,
         fault.found,
         fault.expected,
         fault.cells,
         areas,
+        behind,
     )
-
-
-@dataclass(slots=True)
-class _Suspect:
-    """An input label that another unit would put right: what the unit would have to be times, by faulty formula."""
-
-    source: Source
-    by_need: dict[tuple[Dimension, float], dict[int, tuple[Judgement, Fault]]] = field(default_factory=dict)
-
-
-def _roots(
-    tracing: Tracing, judged: list[Judgement], cells: dict[int, list[Key]]
-) -> tuple[list[UnitFinding], set[int]]:
-    """Find the input labels that alone explain several faults."""
-    suspects: dict[Key, _Suspect] = {}
-    for judgement in judged:
-        for fault in judgement.faults:
-            if fault.sides:
-                _suspect(suspects, judgement, fault)
-    trusted = _trusted(judged)
-    found: list[UnitFinding] = []
-    taken: set[int] = set()
-    ranked = sorted(suspects.values(), key=lambda s: -max((len(v) for v in s.by_need.values()), default=0))
-    for suspect in ranked:
-        place = suspect.source.place
-        for need, items in sorted(suspect.by_need.items(), key=lambda pair: -len(pair[1])):
-            left = [(j, f) for j, f in items.values() if id(f) not in taken]
-            if len({id(j) for j, _ in left}) < 2 or place in trusted:
-                continue
-            finding = _root_finding(tracing, suspect.source, need, left, cells)
-            if finding is not None:
-                found.append(finding)
-                taken.update(id(f) for _, f in left)
-            break
-    return found, taken
-
-
-def _suspect(suspects: dict[Key, _Suspect], judgement: Judgement, fault: Fault) -> None:
-    for carried, due in fault.sides:
-        pairs = [(carried, due, 1)]
-        if due.sources:
-            pairs.append((due, carried, 1))
-        for node, other, _ in pairs:
-            for source in node.sources:
-                if source.exponent is None or not source.exponent or source.weak:
-                    continue
-                power = 1 / source.exponent
-                dimension = (other.dimension / node.dimension) ** power
-                ratios = {(other.readings[0].scale / r.scale) ** float(power) for r in node.readings[:8]}
-                for ratio in ratios:
-                    need = (dimension, float(f"{ratio:.6e}"))
-                    suspect = suspects.setdefault(source.place, _Suspect(source))
-                    suspect.by_need.setdefault(need, {})[id(fault)] = (judgement, fault)
-
-
-def _trusted(judged: Iterable[Judgement]) -> set[Key]:
-    """Return the places of units that a sound formula with a declared result confirms."""
-    found: set[Key] = set()
-    for judgement in judged:
-        carried = judgement.carried
-        if carried is None or judgement.faults or carried.state is not State.KNOWN:
-            continue
-        sums = len({s.place for s in carried.sources}) > 1
-        if judgement.declared is not None and not judgement.hidden:
-            found.update(s.place for s in carried.sources if s.exponent is None or s.exponent)
-        elif sums:
-            found.update(s.place for s in carried.sources if s.exponent is None)
-    return found
-
-
-def _root_finding(
-    tracing: Tracing,
-    source: Source,
-    need: tuple[Dimension, float],
-    items: list[tuple[Judgement, Fault]],
-    cells: dict[int, list[Key]],
-) -> UnitFinding | None:
-    declared = tracing.declarations.unit(*source.cell)
-    if declared is None or tracing.graph.group_at(*source.cell) is not None:
-        return None
-    unit = declared.unit
-    dimension, scale = unit.dimension.without_angle() * need[0], unit.scale * need[1]
-    name = name_unit(dimension, float(f"{scale:.6e}"), unit.system) or _near_name(dimension, scale, unit.system)
-    if name is None or name in ("1", unit.text):
-        return None
-    misses = [key for judgement, _ in items for key in cells[id(judgement)]]
-    shown = ", ".join(cell_text(key) for key in misses[:6]) + (", …" if len(misses) > 6 else "")
-    kind = "unit-scale" if need[0].is_none else "unit-label"
-    if any(fault.kind == "angle-unit" for _, fault in items):
-        kind = "angle-unit"
-    message = (
-        f"{cell_text(source.cell)} is labelled {unit.text}, but all {len(items)} formulas that read it ({shown}) come "
-        f"right only if it is in {name}: label it {name}, or convert its value"
-    )
-    factor = next((fault.factor for _, fault in items if fault.factor is not None), None)
-    return UnitFinding(
-        source.cell[0],
-        source.cell[1],
-        kind,
-        "error",
-        message,
-        factor,
-        unit.text,
-        name,
-        tuple(dict.fromkeys(judgement.host for judgement, _ in items)),
-        follows=tuple(misses),
-    )
-
-
-def _near_name(dimension: Dimension, scale: float, system: str) -> str | None:
-    """Name a unit whose scale was found from typed conversion constants."""
-    from doubler.workbook.unit_names import names_of
-
-    for known_scale, text in names_of(dimension, system):
-        if math.isclose(known_scale, scale, rel_tol=2e-3):
-            return text
-    return None
 
 
 def _texts(tracing: Tracing) -> list[UnitFinding]:

@@ -118,6 +118,8 @@ class Judgement:
         The unit that its cell declares.
     reason, root
         Why it is not traced, and the cell on which that hangs.
+    confirms
+        Whether its being sound speaks for the labels that it reads.
     """
 
     state: str
@@ -132,6 +134,7 @@ class Judgement:
     root: Key | None = None
     constraints: tuple[Constraint, ...] = ()
     met: frozenset[Key] = frozenset()
+    confirms: bool = True
     host: Key = ("", (1, 1))
     tree: Node | None = None
 

@@ -232,6 +232,8 @@ class Walk:
             if part.state is State.CONTRADICTORY:
                 return part
         if exponent.value is not None and exponent.state in (State.LITERAL, State.BLANK):
+            if base.state is State.LITERAL and base.value == 10.0 and abs(exponent.value) < 30:
+                return literal(10.0**exponent.value, f"10^{exponent.value:g}", self.next_position())
             return power(base, as_fraction(exponent.value))
         require_ratio(exponent, "an exponent")
         if base.state is State.LITERAL:
