@@ -11,8 +11,16 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass, field
 
-from doubler.units import Unit, parse_unit
+from doubler.units import parse_unit
 from doubler.workbook.carried import Key
+from doubler.workbook.declared_places import (
+    Declared,
+    Disagreement,
+    Found,
+    Unreadable,
+    row_against_column,
+    units_alike,
+)
 from doubler.workbook.label_units import bracket_unit, loose_unit, sheet_note_unit
 from doubler.workbook.labels import Label, Labels, Layout
 from doubler.workbook.model import Address, Workbook
@@ -28,67 +36,6 @@ from doubler.workbook.unit_text import (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Declared:
-    """A declared unit.
-
-    Attributes
-    ----------
-    unit
-        The unit; for a temperature that is a level its offset counts, see `absolute`.
-    text
-        The text as it stands in the sheet.
-    place
-        Where it was read, in words.
-    cells
-        The cells that say so.
-    weak
-        True where only a label's words say that the number is a pure one.
-    absolute
-        True for a temperature that is a level and not a difference.
-    """
-
-    unit: Unit
-    text: str
-    place: str
-    cells: tuple[Key, ...]
-    weak: bool = False
-    absolute: bool = False
-
-
-@dataclass(frozen=True, slots=True)
-class Unreadable:
-    """A text that stands for a unit and can't be read as one."""
-
-    sheet: str
-    address: Address
-    text: str
-    complaint: str
-    at: Key
-
-
-@dataclass(frozen=True, slots=True)
-class Disagreement:
-    """Two places that declare unlike units for one cell; `first` is the one believed."""
-
-    sheet: str
-    address: Address
-    first: Declared
-    second: Declared
-
-
-@dataclass(slots=True)
-class _Found:
-    """What one place says."""
-
-    unit: Unit
-    text: str
-    place: str
-    at: Key
-    weak: bool = False
-    words: str | None = None
-
-
 @dataclass(slots=True)
 class Declarations:
     """The declared units of a workbook's cells, found when asked for and then kept."""
@@ -98,8 +45,8 @@ class Declarations:
     _known: dict[Key, Declared | None] = field(default_factory=dict)
     _shared: dict[tuple[Key, str, bool, bool], Declared] = field(default_factory=dict)
     _cells: dict[str, UnitCells] = field(default_factory=dict)
-    _heads: dict[tuple[str, int, int], tuple[_Found | None, _Found | None, _Found | None]] = field(default_factory=dict)
-    _notes: dict[str, list[_Found]] = field(default_factory=dict)
+    _heads: dict[tuple[str, int, int], tuple[Found | None, Found | None, Found | None]] = field(default_factory=dict)
+    _notes: dict[str, list[Found]] = field(default_factory=dict)
     _unreadable: dict[Key, Unreadable] = field(default_factory=dict)
     _disagreements: dict[Key, Disagreement] = field(default_factory=dict)
     _columns: dict[tuple[str, int, int, int], Declared] = field(default_factory=dict)
@@ -163,9 +110,9 @@ class Declarations:
             for second in finds:
                 if second.weak or second.place.startswith(("note", "comment")):
                     break
-                if _row_against_column(first, second):
+                if row_against_column(first, second):
                     continue
-                if not _alike(first.unit, second.unit) and second.at != first.at:
+                if not units_alike(first.unit, second.unit) and second.at != first.at:
                     other = self._share(sheet, layout, address, second)
                     self._disagreements[sheet, address] = Disagreement(sheet, address, declared, other)
                     break
@@ -185,7 +132,7 @@ class Declarations:
         cell = layout.cells.get(address)
         return None if head is None or cell is None else (sheet, head, column, cell.style)
 
-    def _share(self, sheet: str, layout: Layout, address: Address, found: _Found) -> Declared:
+    def _share(self, sheet: str, layout: Layout, address: Address, found: Found) -> Declared:
         absolute = False
         unit = found.unit
         if unit.dimension == _temperature():
@@ -214,7 +161,7 @@ class Declarations:
             found = self._cells[sheet] = UnitCells(layout)
         return found
 
-    def _places(self, sheet: str, layout: Layout, address: Address) -> Iterator[_Found]:
+    def _places(self, sheet: str, layout: Layout, address: Address) -> Iterator[Found]:
         row, column = address
         left = layout.left_texts(address)
         beside = bool(left) and layout.touches_left(address, left[0])
@@ -249,8 +196,8 @@ class Declarations:
         unit_cells: UnitCells,
         left: tuple[Address, ...],
         beside: bool,
-        loose_header: _Found | None,
-    ) -> Iterator[_Found]:
+        loose_header: Found | None,
+    ) -> Iterator[Found]:
         row, column = address
         if len(left) > 1 or (left and unit_cells.headed(left[0])):
             found = self._unit_at_left(sheet, layout, address, left, unit_cells)
@@ -265,7 +212,7 @@ class Declarations:
             for text_at in left:
                 loose = loose_unit(layout.texts[text_at])
                 if loose is not None:
-                    yield _Found(loose, layout.texts[text_at], "label", (sheet, layout.origin(text_at)))
+                    yield Found(loose, layout.texts[text_at], "label", (sheet, layout.origin(text_at)))
         if loose_header is not None:
             yield loose_header
         for offset in (1, 2):
@@ -273,7 +220,7 @@ class Declarations:
             if note is not None:
                 noted = phrase_unit(note)
                 if noted.unit is not None:
-                    yield _Found(noted.unit, note, "note beside", (sheet, (row, column + offset)))
+                    yield Found(noted.unit, note, "note beside", (sheet, (row, column + offset)))
                 break
         comment = layout.sheet.comments.get(address)
         if comment:
@@ -282,24 +229,24 @@ class Declarations:
                 whole = read_unit_text(line.split(":", 1)[-1]) if line.lower().startswith("unit") else noted
                 unit = noted.unit or whole.unit
                 if unit is not None:
-                    yield _Found(unit, line.strip(), "comment", (sheet, address))
+                    yield Found(unit, line.strip(), "comment", (sheet, address))
                     break
         yield from self._from_words(sheet, layout, address, left, beside)
 
     def _from_words(
         self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...], beside: bool
-    ) -> Iterator[_Found]:
+    ) -> Iterator[Found]:
         headers = layout.headers(address)
         name = self.labels.names.get((sheet, address), "")
         places = [*left, *headers[:2]] if beside else [*headers[:2], *left]
         for at in places:
             unit = conversion_unit(layout.texts[at])
             if unit is not None:
-                yield _Found(unit, layout.texts[at], "label", (sheet, layout.origin(at)))
+                yield Found(unit, layout.texts[at], "label", (sheet, layout.origin(at)))
                 return
         cell = layout.cells.get(address)
         if cell is not None and cell.style and is_percent_format(self._format(cell.style)):
-            yield _Found(parse_unit("1"), "%", "number format", (sheet, address), weak=True)
+            yield Found(parse_unit("1"), "%", "number format", (sheet, address), weak=True)
             return
         own = left if beside else headers[:1]
         words = " ".join([*(layout.texts[a] for a in reversed(own))])
@@ -308,18 +255,18 @@ class Declarations:
                 yield note
                 return
         if own and any(is_pure_number(layout.texts[a]) for a in own):
-            yield _Found(parse_unit("1"), layout.texts[own[0]], "label", (sheet, layout.origin(own[0])), weak=True)
+            yield Found(parse_unit("1"), layout.texts[own[0]], "label", (sheet, layout.origin(own[0])), weak=True)
         elif name and is_pure_number(name.replace("_", " ")):
-            yield _Found(parse_unit("1"), name, "name", (sheet, address), weak=True)
+            yield Found(parse_unit("1"), name, "name", (sheet, address), weak=True)
 
-    def _sheet_notes(self, sheet: str, layout: Layout) -> list[_Found]:
+    def _sheet_notes(self, sheet: str, layout: Layout) -> list[Found]:
         notes = self._notes.get(sheet)
         if notes is None:
             notes = []
             for at, text in layout.texts.items():
                 unit = None if at in layout.merged_from else sheet_note_unit(text)
                 if unit is not None:
-                    notes.append(_Found(unit, text, "note on the sheet", (sheet, at)))
+                    notes.append(Found(unit, text, "note on the sheet", (sheet, at)))
             self._notes[sheet] = notes
         return notes
 
@@ -332,11 +279,11 @@ class Declarations:
         place: str,
         unit_cells: UnitCells,
         left: tuple[Address, ...],
-    ) -> _Found | None:
+    ) -> Found | None:
         text = layout.texts[at]
         read = unit_cells.accepts(at, " ".join(layout.texts[a] for a in reversed(left)))
         if read.unit is not None:
-            return _Found(read.unit, text, place, (sheet, layout.origin(at)))
+            return Found(read.unit, text, place, (sheet, layout.origin(at)))
         if read.complaint:
             self._cannot_read(sheet, address, text, read.complaint, at)
         return None
@@ -346,7 +293,7 @@ class Declarations:
 
     def _unit_at_left(
         self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...], unit_cells: UnitCells
-    ) -> _Found | None:
+    ) -> Found | None:
         at = left[0]
         if layout.holds_number((at[0], at[1] - 1)):
             return None  # it is the unit of the number at its left
@@ -356,23 +303,23 @@ class Declarations:
                 self._cannot_read(sheet, address, layout.texts[at], read.complaint, at)
             return None
         place = "unit cell at the left" if layout.touches_left(address, at) else "column of units"
-        return _Found(read.unit, layout.texts[at], place, (sheet, layout.origin(at)))
+        return Found(read.unit, layout.texts[at], place, (sheet, layout.origin(at)))
 
-    def _in_label(self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...]) -> _Found | None:
+    def _in_label(self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...]) -> Found | None:
         for at in left:
             text = layout.texts[at]
             unit, shown, complaint = bracket_unit(text)
             if unit is not None:
                 if shown in ("[1]",) and len(left) > 1:
                     continue
-                return _Found(unit, shown, "bracket in the label", (sheet, layout.origin(at)), words=None)
+                return Found(unit, shown, "bracket in the label", (sheet, layout.origin(at)), words=None)
             if complaint:
                 self._cannot_read(sheet, address, shown, complaint, at)
         return None
 
     def _in_headers(
         self, sheet: str, layout: Layout, address: Address, unit_cells: UnitCells
-    ) -> tuple[_Found | None, _Found | None, _Found | None]:
+    ) -> tuple[Found | None, Found | None, Found | None]:
         head = layout.header_row(address)
         if head is None:
             return None, None, None
@@ -388,10 +335,10 @@ class Declarations:
 
     def _read_headers(
         self, sheet: str, layout: Layout, address: Address, unit_cells: UnitCells
-    ) -> tuple[_Found | None, _Found | None, _Found | None]:
-        bracket: _Found | None = None
-        unit_row: _Found | None = None
-        loose: _Found | None = None
+    ) -> tuple[Found | None, Found | None, Found | None]:
+        bracket: Found | None = None
+        unit_row: Found | None = None
+        loose: Found | None = None
         headers = layout.headers(address)
         words = " ".join(layout.texts[a] for a in reversed(headers))
         for at in headers:
@@ -399,25 +346,25 @@ class Declarations:
             origin = (sheet, layout.origin(at))
             read = unit_cells.in_unit_row(at, words)
             if read.unit is not None:
-                unit_row = unit_row or _Found(read.unit, text, "unit row", origin, words=words)
+                unit_row = unit_row or Found(read.unit, text, "unit row", origin, words=words)
                 continue
             if read.complaint:
                 self._cannot_read(sheet, address, text, read.complaint, at)
             unit, shown, complaint = bracket_unit(text)
             if unit is not None:
-                bracket = bracket or _Found(unit, shown, "bracket in the header", origin, words=words)
+                bracket = bracket or Found(unit, shown, "bracket in the header", origin, words=words)
             elif complaint:
                 self._cannot_read(sheet, address, shown, complaint, at)
             tail = loose_unit(text)
             if tail is not None:
-                loose = loose or _Found(tail, text, "header", origin, words=words)
+                loose = loose or Found(tail, text, "header", origin, words=words)
         return bracket, unit_row, loose
 
-    def _in_format(self, sheet: str, address: Address, style: int) -> _Found | None:
+    def _in_format(self, sheet: str, address: Address, style: int) -> Found | None:
         number_format = self._format(style)
         read = format_unit(number_format)
         if read.unit is not None:
-            return _Found(read.unit, number_format, "number format", (sheet, address))
+            return Found(read.unit, number_format, "number format", (sheet, address))
         if read.complaint:
             self._cannot_read(sheet, address, number_format, read.complaint, address)
         return None
@@ -429,20 +376,7 @@ def _temperature() -> object:
     return kind("temperature").dimension
 
 
-def _row_against_column(first: _Found, second: _Found) -> bool:
-    """Return whether one place belongs to the row and the other to the column: stacked blocks, no quarrel."""
-    by_column = ("header", "unit row")
-    return first.place.endswith(by_column) != second.place.endswith(by_column) and "number format" not in (
-        first.place,
-        second.place,
-    )
-
-
-def _alike(first: Unit, second: Unit) -> bool:
-    return (
-        first.dimension.without_angle() == second.dimension.without_angle()
-        and abs(first.scale / second.scale - 1) < 1e-9
-    )
+__all__ = ["Declarations", "Declared", "Disagreement", "Unreadable", "declare"]
 
 
 def declare(workbook: Workbook) -> Declarations:

@@ -7,7 +7,7 @@ import re
 from doubler.units import Unit
 from doubler.workbook.unit_text import UnitText, phrase_unit, read_unit_text, role_agrees
 
-_SYMBOL = re.compile(r"^[A-Za-zΔσετθαβνρδ](?:_?\w{0,3})$")
+_SYMBOL = re.compile(r"^[A-Za-zΔσετθαβνρδ](?:[a-z]?\d{0,2}|_\w{1,6})$")
 _BRACKET = re.compile(r"([\[(])([^\[\]()]*(?:\([^()]*\)[^\[\]()]*)?)[\])]")
 _COMMA = re.compile(r",\s*(\S{1,20}(?:\s\S{1,8})?)\s*[:=]?\s*$")
 _SLASH = re.compile(r"^(?P<label>.*\S)\s*/\s*(?P<unit>\(?[^\s/].*)$")
