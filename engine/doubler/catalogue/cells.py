@@ -11,7 +11,7 @@ import numpy as np
 from doubler.catalogue.evaluation import Outcome, evaluate, scaled_values, shift
 from doubler.catalogue.forms import OMITTED, ArgumentError, Bound, bind, due
 from doubler.catalogue.plan import CallError, Plan, plan_for
-from doubler.catalogue.record import WorksheetFunction
+from doubler.catalogue.record import Argument, WorksheetFunction
 from doubler.errors import ErrorValue
 from doubler.units import ConsistentSet, Unit, UnitError, consistent_set, parse_unit
 
@@ -136,7 +136,7 @@ def bind_all(
     for index, argument in enumerate(declared):
         item = given[index] if index < len(given) else None
         if item is None and not argument.optional:
-            reasons.append(f"{argument.name} is missing; write {due(argument)}")
+            reasons.append(f"{argument.name} is missing, or its cell is empty; write {due(argument)}")
             value = ErrorValue.VALUE
             continue
         if item is None:
@@ -211,7 +211,7 @@ def _split_result(function: WorksheetFunction, given: list[Any]) -> tuple[list[A
         raise CallError(function.name, [f"takes at most {len(declared) + 1} arguments, got {len(given)}"])
     wanted: Any = None
     if len(given) == len(declared) + 1 or (
-        given and not declared[len(given) - 1].is_text and _names_a_unit(_single(given[-1]))
+        given and not _may_take(declared[len(given) - 1], _single(given[-1])) and _names_a_unit(_single(given[-1]))
     ):
         wanted = _single(given.pop())
     if wanted is None or wanted == "":
@@ -226,6 +226,13 @@ def _split_result(function: WorksheetFunction, given: list[Any]) -> tuple[list[A
         return given, wanted, consistent_set(wanted)
     except UnitError as error:
         raise CallError(function.name, [str(error)]) from error
+
+
+def _may_take(argument: Argument, item: Any) -> bool:
+    """Return whether text in the place of this argument can be meant for it and not be the unit wanted."""
+    if not argument.choices or not argument.optional:
+        return argument.is_text
+    return isinstance(item, str) and item.strip().casefold() in {choice.casefold() for choice in argument.choices}
 
 
 def _single(item: Any) -> Any:

@@ -28,11 +28,14 @@ class Failure:
         The error value of those lanes.
     reason
         One sentence, with the first offending value.
+    rule
+        The same without the value: which limit it was.
     """
 
     lanes: Any
     value: ErrorValue
     reason: str
+    rule: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -103,8 +106,8 @@ def _evaluate_long(function: WorksheetFunction, plan: Plan, values: Sequence[Any
     out = np.empty((lanes, *tail))
     size = blocks.size_for(lanes)
 
-    def share(start: int, stop: int) -> list[Failure]:
-        failures: list[Failure] = []
+    def share(start: int, stop: int) -> list[tuple[slice, Failure]]:
+        failures: list[tuple[slice, Failure]] = []
         scaled, given = list(fixed), list(values)
         most = min(size, stop - start)
         room = {i: np.empty((most, *values[i].shape[1:])) for i, changed in varying if changed}
@@ -133,12 +136,21 @@ def _evaluate_long(function: WorksheetFunction, plan: Plan, values: Sequence[Any
                     outcome = _into(function, plan, raw, out[piece], marks[: piece.stop - begin])
                 for failure in outcome.failures:
                     out[piece] = outcome.values
-                    where = np.zeros(lanes, dtype=bool)
-                    where[piece] = failure.lanes
-                    failures.append(Failure(where, failure.value, failure.reason))
+                    failures.append((piece, failure))
         return failures
 
-    return Outcome(out, tuple(blocks.in_shares(lanes, share)))
+    return Outcome(out, _merged(lanes, blocks.in_shares(lanes, share)))
+
+
+def _merged(lanes: int, found: Sequence[tuple[slice, Failure]]) -> tuple[Failure, ...]:
+    """Put the failures of blocks together: one for each rule, with the reason of the first lane that broke it."""
+    merged: dict[tuple[ErrorValue, str], Failure] = {}
+    for piece, failure in found:
+        key = (failure.value, failure.rule)
+        if key not in merged:
+            merged[key] = Failure(np.zeros(lanes, dtype=bool), failure.value, failure.reason, failure.rule)
+        merged[key].lanes[piece] |= failure.lanes
+    return tuple(merged.values())
 
 
 def _into(function: WorksheetFunction, plan: Plan, raw: Any, out: Array, marks: Any) -> Outcome:
@@ -210,7 +222,8 @@ def _without_lost(function: WorksheetFunction, values: Array) -> Outcome:
     lanes = finite
     for _ in range(function.result.extra_axes):
         lanes = lanes.all(axis=-1)
-    lost = Failure(~lanes, ErrorValue.NUM, "there is no finite result for these values")
+    why = "there is no finite result for these values"
+    lost = Failure(~lanes, ErrorValue.NUM, why, why)
     return Outcome(np.where(finite, values, np.nan), (lost,))
 
 
@@ -229,11 +242,11 @@ def _evaluate_valid_lanes(
     good = np.ones(shape, dtype=bool)
     failures: list[Failure] = []
 
-    def fail(where: Any, value: ErrorValue, reason: str) -> None:
+    def fail(where: Any, value: ErrorValue, reason: str, rule: str) -> None:
         nonlocal good
         fresh = good & np.broadcast_to(where, shape)
         if fresh.any():
-            failures.append(Failure(fresh, value, reason))
+            failures.append(Failure(fresh, value, reason, rule))
             good = good & ~fresh
 
     for index, argument in enumerate(arguments):
@@ -246,11 +259,12 @@ def _evaluate_valid_lanes(
             unit = plan.units[index]
             shown += f" {unit.text}" if unit is not None and unit.text not in ("", "1") else ""
             where = outside.any(axis=-1) if argument.entries else outside
-            fail(where, ErrorValue.NUM, f"{argument.name} {argument.limit.words}; it is {shown}")
+            words = f"{argument.name} {argument.limit.words}"
+            fail(where, ErrorValue.NUM, f"{words}; it is {shown}", words)
     named = {argument.name: value for argument, value in zip(arguments, scaled, strict=True)}
     for rule in function.conditions:
         with np.errstate(all="ignore"):
-            fail(~np.asarray(rule.check(named), dtype=bool), ErrorValue.NUM, rule.words)
+            fail(~np.asarray(rule.check(named), dtype=bool), ErrorValue.NUM, rule.words, rule.words)
 
     blank = np.full(shape + _result_shape(function), np.nan)
     if function.result.quantity is None:
@@ -264,7 +278,7 @@ def _evaluate_valid_lanes(
         for failure in outcome.failures:
             where = np.zeros(shape, dtype=bool)
             where[good] = failure.lanes
-            failures.append(Failure(where, failure.value, failure.reason))
+            failures.append(Failure(where, failure.value, failure.reason, failure.rule))
     return Outcome(blank, tuple(failures))
 
 

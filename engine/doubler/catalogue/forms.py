@@ -214,9 +214,23 @@ def _number(argument: Argument, cell: Any) -> Any:
         raise ArgumentError(f"{argument.name} is the error {cell}", cell)
     if not is_number(cell):
         raise ArgumentError(f"{argument.name} is {_shown(cell)}; write {due(argument)}")
-    if not isinstance(cell, np.ndarray) and not math.isfinite(cell):
-        raise ArgumentError(f"{argument.name} is {cell:g}, not a finite number; write {due(argument)}", ErrorValue.NUM)
+    if not _is_finite(cell):
+        raise ArgumentError(
+            f"{argument.name} is {_short(cell)}, not a finite number; write {due(argument)}", ErrorValue.NUM
+        )
     return cell
+
+
+def _is_finite(number: Any) -> bool:
+    """Return whether a number is finite; numbers over cases are looked at when they are evaluated."""
+    try:
+        return isinstance(number, np.ndarray) or math.isfinite(number)
+    except OverflowError:  # a whole number beyond every float
+        return False
+
+
+def _short(number: Any) -> str:
+    return "too large" if isinstance(number, int) else f"{number:g}"
 
 
 def _shown(cell: Any) -> str:
@@ -404,7 +418,7 @@ def _vector(
     blanks: list[tuple[int, ErrorValue, str]] = []
     values = list(flat)
     for index, cell in enumerate(flat):
-        if is_number(cell) and (isinstance(cell, np.ndarray) or math.isfinite(cell)):
+        if is_number(cell) and _is_finite(cell):
             continue
         place = f"{argument.name}, entry {index + offset}"
         if isinstance(cell, ErrorValue):
@@ -412,7 +426,7 @@ def _vector(
         elif cell is None:
             value, reason = ErrorValue.VALUE, f"{place} is an empty cell; fill it in"
         elif is_number(cell):
-            value, reason = ErrorValue.NUM, f"{place} is {cell:g}; write a finite number"
+            value, reason = ErrorValue.NUM, f"{place} is {_short(cell)}; write a finite number"
         else:
             value, reason = ErrorValue.VALUE, f"{place} is {_shown(cell)}, not a number; write a number"
         blanks.append((index, value, reason))
