@@ -57,6 +57,8 @@ def test_millivolts_written_as_a_ratio_are_refused() -> None:
 def test_a_strain_that_was_written_in_the_wrong_unit_is_refused() -> None:
     with pytest.raises(CallError, match="no gauge can follow"):
         gauge_bridges.output(1000.0, 2.0, "quarter")
+    with pytest.raises(CallError, match="no gauge can follow"):
+        gauge_bridges.output(-0.6, 2.0, "quarter")
 
 
 def test_the_quarter_bridge_reads_low_in_tension_and_high_in_compression() -> None:

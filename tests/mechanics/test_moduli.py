@@ -135,3 +135,10 @@ def test_empty_cells_count_as_left_out_and_a_bad_lane_is_lost_alone() -> None:
     assert "poissons_ratio" in found.reasons[0]
     with pytest.raises(InputError, match="exactly two"):
         cell('=MODULUS_SHEAR(,,,,,"200 GPa")')
+
+
+def test_a_unit_in_the_place_of_the_branch_is_the_unit_wanted() -> None:
+    assert cell('=MODULUS_YOUNG(,,"80 GPa",,"80 GPa",,"GPa")') == pytest.approx(200.0)
+    assert cell('=MODULUS_YOUNG(,,"80 GPa",,,"240 GPa","GPa")') == pytest.approx(200.0)
+    with pytest.raises(InputError, match='"positive", "negative"'):
+        cell('=MODULUS_SHEAR("200 GPa",,,,,"220 GPa","both","GPa")')

@@ -77,3 +77,9 @@ def test_beyond_necking_there_is_no_conversion(formula: str) -> None:
 def test_a_strain_of_minus_one_has_no_true_strain() -> None:
     with pytest.raises(CallError, match="above -1"):
         strain_true.true_strain(-1.0)
+
+
+def test_shear_and_thermal_strains_follow_their_stress_and_their_heating() -> None:
+    assert strain.shear(-80.0, 80e3) == pytest.approx(-1e-3)
+    assert strain.thermal(12e-6, -50.0) == pytest.approx(-6e-4)
+    assert cell('=STRAIN_THERMAL("10 µm/m/K","18 Δ°F","µε")') == pytest.approx(100.0)
