@@ -7,7 +7,10 @@ import numpy as np
 from doubler.catalogue.annotations import Values
 
 _STEPS = 200
-"""More than ever needed: the loops end as soon as no element moves."""
+"""More than ever needed: the loops end as soon as no element moves by more than rounding."""
+
+_ENOUGH = 1e-14
+"""A step so small, as a share of the factor, changes no digit that rounding has left."""
 
 
 def factor_on_all(ratios: Values, exponents: Values) -> Values:
@@ -34,7 +37,7 @@ def factor_on_all(ratios: Values, exponents: Values) -> Values:
         total = weights.sum(axis=-1)
         step = (top + np.log(total)) * total / (weights * exponents).sum(axis=-1)
         u = u - step
-        if np.all(np.abs(step) <= 2e-16 * np.maximum(np.abs(u), 1.0)):
+        if np.all(np.abs(step) <= _ENOUGH * np.maximum(np.abs(u), 1.0)):
             break
     return np.where(empty, np.inf, np.exp(u))
 
@@ -64,7 +67,7 @@ def factor_on_scaled(scaled: Values, constant: Values, exponents: Values) -> Val
             newton = k - excess / powers.sum(axis=-1)
         low, high = np.where(excess < 0.0, k, low), np.where(excess >= 0.0, k, high)
         fresh = np.where((newton >= low) & (newton <= high), newton, 0.5 * (low + high))
-        done = np.all(np.abs(fresh - k) <= 4e-16 * k)
+        done = np.all(np.abs(fresh - k) <= _ENOUGH * k)
         k = fresh
         if done:
             break
