@@ -16,7 +16,7 @@ from doubler import __version__
 from doubler.cases import BoundCases, CaseBatch, bind_cases, open_cases
 from doubler.errors import InputError
 from doubler.outcome import Envelope, EnvelopeLine
-from doubler.summary import SummaryRows, write_summary
+from doubler.summary import Summary
 from doubler.workbook.addresses import full_name, parse_area
 from doubler.workbook.evaluate import Evaluation, NotEvaluated, evaluate_blocks
 from doubler.workbook.model import Scalar
@@ -136,29 +136,40 @@ class _Run:
             self.stored,
         )
         envelope = Envelope(self.outputs)
-        rows = SummaryRows(self.bound.inputs, self.outputs)
+        summary = Summary(self.bound.inputs, self.outputs)
+        try:
+            written, kept = self._workbooks(plan, envelope, summary, advance)
+            target = self.folder / "summary.xlsx"
+            lines = envelope.lines()
+            summary.write(target, self.path.name, lines)
+        except BaseException:
+            summary.abandon()
+            raise
+        finally:
+            self.log.close()
+        self.log.note(target, "summary")
+        self.log.close()
+        return FillReport(self.folder, target, written, kept, lines, sorted(set(self.left_empty.values())))
+
+    def _workbooks(
+        self, plan: FillPlan, envelope: Envelope, summary: Summary, advance: Callable[[int], None]
+    ) -> tuple[int, int]:
+        """Write the workbooks batch by batch; return how many were written and how many were right already."""
         written = kept = 0
-        made = False
         for batch in self.bound.batches(AT_ONCE):
             part = self._evaluated(batch)
             results = self._results(part)
-            if not made:
+            if not self.folder.is_dir():
                 _make_folder(self.folder)
-                made = True
             envelope.take(batch.names, results)
-            rows.take(batch, results)
+            summary.take(batch, results)
             for name, inputs, values in self._rows(batch, part):
                 if self._write(plan, name, inputs, values):
                     written += 1
                 else:
                     kept += 1
                 advance(1)
-        summary = self.folder / "summary.xlsx"
-        lines = envelope.lines()
-        write_summary(summary, self.path.name, rows, lines)
-        self.log.note(summary, "summary")
-        self.log.close()
-        return FillReport(self.folder, summary, written, kept, lines, sorted(set(self.left_empty.values())))
+        return written, kept
 
     def _evaluated(self, batch: CaseBatch) -> Evaluation:
         cells = [(sheet, (row, column)) for sheet, row, column in self.stored]
@@ -267,6 +278,7 @@ class _Log:
         if self._stream is None:
             try:
                 self._stream = self.path.open("w" if self.fresh else "a", encoding="utf-8")
+                self.fresh = False
             except OSError as error:
                 raise InputError(f"{self.path} can't be written ({error.strerror or error})") from None
         print(json.dumps([target.name, mark, state.st_size, state.st_mtime_ns]), file=self._stream, flush=True)
