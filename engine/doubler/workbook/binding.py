@@ -14,7 +14,7 @@ import numpy as np
 from doubler.errors import ErrorValue
 from doubler.workbook.geometry import Geometry, OutsideError, Place, Run, cells_in, moves
 from doubler.workbook.graph import Graph
-from doubler.workbook.lanes import Grid, Mixed, broadcast, concatenated, from_scalars, reshape, shape_of
+from doubler.workbook.lanes import Grid, Mixed, broadcast, concatenated, filled, from_scalars, reshape, shape_of
 from doubler.workbook.model import Area, Scalar
 from doubler.workbook.occupancy import Occupancy
 from doubler.workbook.program import Slot
@@ -25,13 +25,22 @@ SMALL_AREA = 256
 
 
 class Store:
-    """The values of all groups and inputs, by index; `epoch` tells one block of cases from the next."""
+    """The values of all groups and inputs, by index.
 
-    __slots__ = ("epoch", "values")
+    Attributes
+    ----------
+    epoch
+        Tells one block of cases from the next.
+    run
+        Tells one evaluation from the next.
+    """
+
+    __slots__ = ("epoch", "run", "values")
 
     def __init__(self, size: int) -> None:
         self.values: list[Any] = [None] * size
         self.epoch = 0
+        self.run = 0
 
 
 Reader: TypeAlias = Callable[[Store], Any]
@@ -241,7 +250,7 @@ class Binder:
             r = 0 if value.rows == 1 and not spills else row
             c = 0 if value.columns == 1 and not spills else column
             if r < value.rows and c < value.columns:
-                return value.cell(r, c)
+                return filled(value.cell(r, c))
             return None if spills else ErrorValue.NA
 
         return read
@@ -298,12 +307,12 @@ class Binder:
         return self._kept(assemble, nodes)
 
     def _kept(self, gather: Callable[[Store], Grid], nodes: set[int]) -> Reader:
-        """Gather a rectangle once a block; once for all where nothing in it varies by case."""
+        """Gather a rectangle once a block; once an evaluation where nothing in it varies by case."""
         last: list[Any] = [None, None, None]
         binder = self
 
         def read(store: Store) -> Grid:
-            epoch = store.epoch if not nodes.isdisjoint(binder.varying) else 0
+            epoch = store.epoch if not nodes.isdisjoint(binder.varying) else -store.run
             if last[0] is not store or last[1] != epoch:
                 last[:] = [store, epoch, gather(store)]
             grid: Grid = last[2]

@@ -10,7 +10,7 @@ import numpy as np
 from doubler.errors import ErrorValue, InputError
 from doubler.workbook.evaluation import Where
 from doubler.workbook.graph import Group
-from doubler.workbook.lanes import Grid, Mixed, from_scalars, plain, scalars, shape_of, tidy
+from doubler.workbook.lanes import Grid, Mixed, filled, from_scalars, scalars, shape_of, tidy
 from doubler.workbook.lift import F8
 from doubler.workbook.model import Address, Scalar
 from doubler.workbook.program import Lambda
@@ -70,7 +70,7 @@ def cell_value(value: Any, group: Group) -> Any:
     if value is None:
         return 0.0
     if isinstance(value, Mixed):
-        return _without_empty(value)
+        return filled(value)
     if isinstance(value, np.generic):
         return value.item()
     if isinstance(value, float | str | bool | ErrorValue | np.ndarray):
@@ -78,18 +78,10 @@ def cell_value(value: Any, group: Group) -> Any:
     return ErrorValue.CALC if isinstance(value, Lambda) else ErrorValue.VALUE
 
 
-def _without_empty(value: Mixed) -> Any:
-    """Let empty lanes be 0, as a cell shows them."""
-    if None not in value.items:
-        return value
-    empty = np.array([item is None for item in value.items])[value.slot] & (value.slot >= 0)
-    return plain(value.numbers, np.where(empty, -1, value.slot).astype(np.int32), value.items)
-
-
 def shown(value: Any, lane: int, cases: int) -> Any:
     """Return one copy's values as users get them: a scalar, or an array over the cases."""
     if shape_of(value) == ():
-        return 0.0 if value is None else value
+        return value
     line = value if value.shape[0] == 1 else value[lane : lane + 1]
     if line.shape[1] == 1:
         return scalars(line)[0] if shape_of(line) else line

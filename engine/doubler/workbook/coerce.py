@@ -9,7 +9,9 @@ from __future__ import annotations
 
 import math
 import re
+from collections.abc import Callable
 from functools import lru_cache
+from typing import Any
 
 from doubler.errors import ErrorValue
 from doubler.workbook.model import Scalar
@@ -34,6 +36,24 @@ _MAYBE_DATE = re.compile(
 
 class CannotEvaluateError(Exception):
     """The formula cannot be evaluated with certainty; the message is the reason, in words for the reader."""
+
+
+class WholeLineError(CannotEvaluateError):
+    """A row or column is taken as a whole in some lanes, and a single entry in others.
+
+    Attributes
+    ----------
+    line
+        Gives the value for one lane's row and column.
+    row, column
+        Row and column over lanes.
+    """
+
+    def __init__(self, line: Callable[[Scalar, Scalar], Any], row: Any, column: Any) -> None:
+        super().__init__("INDEX gives a whole row or column in some of the cases")
+        self.line = line
+        self.row = row
+        self.column = column
 
 
 @lru_cache(maxsize=4096)

@@ -5,9 +5,11 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import TYPE_CHECKING, Any
 
+import numpy as np
+
 from doubler.errors import ErrorValue
-from doubler.workbook.coerce import CannotEvaluateError
-from doubler.workbook.lanes import Grid
+from doubler.workbook.coerce import CannotEvaluateError, WholeLineError
+from doubler.workbook.lanes import Grid, Mixed, lane_by_lane
 
 if TYPE_CHECKING:
     from doubler.workbook.program import Frame, Step
@@ -23,10 +25,11 @@ def top_left(value: Any) -> Any:
 def met_by_own_place(step: Step) -> Step:
     """Let a range that a function gives meet the formula's own row or column, as a written range does."""
 
-    def run(frame: Frame) -> Any:
-        value = step(frame)
-        if not isinstance(value, Grid) or value.place is None or value.rows * value.columns == 1:
-            return top_left(value) if isinstance(value, Grid) and value.rows * value.columns == 1 else value
+    def meet(value: Any, frame: Frame) -> Any:
+        if not isinstance(value, Grid) or value.rows * value.columns == 1:
+            return top_left(value)
+        if value.place is None:
+            return value
         if frame.copies > 1:
             raise CannotEvaluateError("a range that INDEX gives meets the row or column of many copies")
         row, column = frame.cell[1] - value.place[0], frame.cell[2] - value.place[1]
@@ -35,6 +38,21 @@ def met_by_own_place(step: Step) -> Step:
         if value.rows == 1 and 0 <= column < value.columns:
             return value.cell(0, column)
         return ErrorValue.VALUE
+
+    def run(frame: Frame) -> Any:
+        try:
+            return meet(step(frame), frame)
+        except WholeLineError as error:
+            return by_line(error, frame)
+
+    def by_line(lines: WholeLineError, frame: Frame) -> Any:
+        def single(row: Any, column: Any) -> Any:
+            value = meet(lines.line(row, column), frame)
+            if isinstance(value, Grid | np.ndarray | Mixed):
+                raise lines
+            return value
+
+        return lane_by_lane(single, [lines.row, lines.column])
 
     return run
 

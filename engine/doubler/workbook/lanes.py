@@ -334,6 +334,16 @@ def lane_by_lane(rule: Callable[..., Any], arguments: list[Any]) -> Any:
     return from_scalars([rule(*lane) for lane in each_lane(arguments, shape)], shape)
 
 
+def filled(value: Any) -> Any:
+    """Let empty lanes be 0, as a cell that takes over an empty one shows them."""
+    if value is None:
+        return 0.0
+    if not isinstance(value, Mixed) or None not in value.items:
+        return value
+    empty = np.array([item is None for item in value.items])[value.slot] & (value.slot >= 0)
+    return plain(value.numbers, np.where(empty, NUMBER, value.slot).astype(np.int32), value.items)
+
+
 def is_error(value: Any) -> bool:
     """Whether a scalar is an error value."""
     return isinstance(value, ErrorValue)

@@ -238,7 +238,7 @@ class ScalarRule:
 def refused(result: Any, mask: Any) -> Any:
     """Mark lanes of a result as having none: NaN there, and under `strict` a floating-point fault is raised."""
     if np.any(mask):
-        return result + np.sqrt(np.where(mask, -1.0, 0.0))
+        return np.where(mask, np.sqrt(np.where(mask, -1.0, 0.0)), result)
     return result
 
 

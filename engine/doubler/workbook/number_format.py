@@ -155,7 +155,7 @@ def _whole(whole: str, pattern: list[str], grouped: bool) -> str:
     least = sum(1 for mark in pattern if mark == "0")
     stripped = whole.lstrip("0").rjust(least, "0")
     if grouped:
-        parts = []
+        parts: list[str] = []
         while len(stripped) > 3:
             parts.insert(0, stripped[-3:])
             stripped = stripped[:-3]

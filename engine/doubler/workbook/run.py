@@ -162,6 +162,7 @@ class CaseRun:
         groups = len(self.graph.groups)
         store = self.plan.store
         store.epoch += 1
+        store.run += 1
         for node, value in self.inputs.items():
             store.values[node] = value
         order = [node for node in self.graph.order if node < groups and node in self.needed]

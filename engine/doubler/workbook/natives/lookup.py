@@ -4,9 +4,11 @@ from __future__ import annotations
 
 from typing import Any
 
+import numpy as np
+
 from doubler.errors import ErrorValue
-from doubler.workbook.coerce import to_logical, to_number
-from doubler.workbook.lanes import Grid, lane_by_lane
+from doubler.workbook.coerce import WholeLineError, to_logical, to_number
+from doubler.workbook.lanes import Grid, Mixed, as_mixed, lane_by_lane
 from doubler.workbook.lift import NumericRule
 from doubler.workbook.matching import (
     ABSENT,
@@ -140,7 +142,11 @@ def entry(table: Any, row: Any = None, column: Any = None, area: Any = 1.0) -> A
     table = _table(table)
     if column is None and table.rows == 1 and table.columns > 1:
         row, column = 1.0, row
-    row_at, column_at = _index_part(row, table.rows), _index_part(column, table.columns)
+    whole_table = table
+    try:
+        row_at, column_at = _index_part(row, table.rows), _index_part(column, table.columns)
+    except _WholeLineError:
+        raise WholeLineError(lambda r, c: entry(whole_table, r, c), row, column) from None
     for part in (row_at, column_at):
         if isinstance(part, ErrorValue):
             return part
@@ -149,6 +155,10 @@ def entry(table: Any, row: Any = None, column: Any = None, area: Any = 1.0) -> A
     if row_at is None or column_at is None:
         return _line(table, row_at, column_at)
     return pick(table, row_at, column_at)
+
+
+class _WholeLineError(Exception):
+    pass
 
 
 def _index_part(value: Any, size: int) -> Any:
@@ -160,6 +170,18 @@ def _index_part(value: Any, size: int) -> Any:
         if number < -1.0:
             return ErrorValue.VALUE
         return 0.0 if size == 1 else None
+    if isinstance(number, np.ndarray | Mixed) and (as_mixed(number).numbers < 0.0).any():
+
+        def single(place: Any) -> Any:
+            if isinstance(place, ErrorValue) or place >= 0.0:
+                return place
+            if place < -1.0:
+                return ErrorValue.VALUE
+            if size == 1:
+                return 0.0
+            raise _WholeLineError
+
+        return lane_by_lane(single, [number])
     return number
 
 

@@ -70,7 +70,11 @@ def _signum_log_fault(number: float, base: float) -> ErrorValue:
     return ErrorValue.DIV0 if number > 0.0 and base == 1.0 else ErrorValue.NUM
 
 
-_log_to_base = NumericRule(lambda number, base: _log(number) / _log(base), _signum_log_fault)
+def _log_over(number: Any, base: Any) -> Any:
+    return refused(_log(number) / _log(base), np.less_equal(base, 0.0))
+
+
+_log_to_base = NumericRule(_log_over, _signum_log_fault)
 _log_to_ten = NumericRule(_log10)
 
 
