@@ -200,3 +200,34 @@ def test_a_temperature_and_a_difference_are_told_apart() -> None:
     wrong = only(traced(rows(*head, ("T2", "=B2", "K"))))
     assert (wrong.place, wrong.kind) == ("B3", "unit-scale")
     assert "273.15" in wrong.message
+
+
+def test_a_percent_sign_in_a_formula_converts_a_percentage() -> None:
+    cells = rows(("P", 10, "kN"), ("Rise", 15, "%"), ("P", "=B1*(1+B2%)", "kN"), ("P", "=B1*(1+B2/100)", "kN"))
+    assert told(traced(cells)) == []
+    assert told(traced(cells | {"B4": "=B1*(1+B2)"})) == [("B4", "unit-scale", "error")]
+
+
+def test_a_polynomial_in_one_quantity_is_a_fit() -> None:
+    tracing = traced(rows(("t", 2, "mm"), ("K", "=3-3.13*B1+3.66*B1^2")))
+    assert told(tracing) == []
+    assert len(tracing.notes) == 1
+    assert told(traced(rows(("t", 2, "mm"), ("K", "=B1+B1^2")))) == [("B2", "unit-clash", "error")]
+
+
+def test_an_allowable_typed_into_a_margin_is_no_fault() -> None:
+    tracing = traced(rows(("s", 150, "MPa"), ("MS", "=400/(1.5*B1)-1")))
+    assert told(tracing) == []
+    assert "its 400 is in MPa" in tracing.notes[0].message
+
+
+def test_a_heading_of_units_is_one_only_above_units() -> None:
+    assert told(traced(rows(("Units", "metric"), ("P", 3, "kN"), ("Q", "=B2*2", "kN")))) == []
+
+
+@pytest.mark.parametrize("formula", ["=1.5+0.25*B1", "=2*(0.5+0.25*B1)", "=3-3.13*B1/10+3.66*(B1/10)^2"])
+def test_a_fit_with_a_constant_term_may_give_another_dimension(formula) -> None:
+    tracing = traced(rows(("t", 2, "mm"), ("K", formula, "-")))
+    assert told(tracing) == []
+    assert tracing.notes
+    assert told(traced(rows(("t", 2, "mm"), ("K", "=2*B1", "-")))) == [("B2", "unit-label", "error")]

@@ -82,7 +82,7 @@ class Constraint:
 
 
 def describe(node: Carried) -> str:
-    """Write a node's unit as an engineer would: from the units that entered, else by its name or its dimension."""
+    """Write a node's unit as an engineer would: from the units that entered, else by name or dimension."""
     from doubler.workbook.unit_names import name_unit, power_text
 
     scale = node.readings[0].scale
@@ -153,6 +153,7 @@ def together(
         hidden + extra,
         None,
         reference.angle_mark,
+        shifted=any(n.shifted for n, _ in sure) or (bool(signs) and any(n.value != 0.0 for n, _ in literals)),
     )
 
 
@@ -181,6 +182,8 @@ def _agree(
         own = node
         if node.dimension != reference.dimension:
             carried_by = hidden_literal(node, reference.dimension, reference.readings[0].scale)
+            if carried_by is None and summed:
+                carried_by = _term_of_fit(node, reference)
             if carried_by is None:
                 raise UnitFault("unit-clash", f"{describe(reference)} and {describe(node)} are {what}", reference, node)
             extra.append(carried_by)
@@ -329,6 +332,20 @@ def hidden_literal(node: Carried, dimension: Dimension, scale: float) -> Hidden 
             (scale / node.readings[0].scale) ** float(exponent),
         )
     return None
+
+
+def _term_of_fit(node: Carried, reference: Carried) -> Hidden | None:
+    """Take the coefficient of a term of a polynomial in one quantity, ``=3-3.13*t+3.66*t^2``, for one with a unit."""
+    cells = {s.cell for s in (*node.sources, *reference.sources)}
+    powers = {s.exponent for s in (*node.sources, *reference.sources)}
+    typed = [f for f in node.factors if f.exponent and f.value != 1.0]
+    if len(cells) != 1 or None in powers or not typed or not reference.factors:
+        return None
+    return Hidden(
+        typed[0].text or f"{typed[0].value:g}",
+        reference.dimension / node.dimension,
+        reference.readings[0].scale / node.readings[0].scale,
+    )
 
 
 def _plain_decimal(value: float) -> bool:

@@ -123,7 +123,7 @@ class Hidden:
 
 @dataclass(frozen=True, slots=True)
 class Carried:
-    """The unit of a node. See the module."""
+    """The unit of a node. See the module; `shifted` where a number was added to a quantity, as in ``=1.5+0.25*B1``."""
 
     state: State
     dimension: Dimension = NONE
@@ -135,6 +135,7 @@ class Carried:
     value: float | None = None
     angle_mark: bool = False
     rooted_at: tuple[Key, ...] = ()
+    shifted: bool = False
 
     @property
     def settled(self) -> bool:
@@ -221,6 +222,7 @@ def multiply(left: Carried, right: Carried) -> Carried:
         left.hidden + right.hidden,
         value,
         left.angle_mark != right.angle_mark,
+        shifted=left.shifted or right.shifted,
     )
 
 
@@ -260,6 +262,7 @@ def power(node: Carried, exponent: Fraction) -> Carried:
         node.hidden,
         value,
         node.angle_mark and exponent in (1, -1),
+        shifted=node.shifted,
     )
 
 

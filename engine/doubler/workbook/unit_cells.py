@@ -108,6 +108,7 @@ class UnitCells:
                 beside = layout.holds_number((row, column - 1)) or layout.holds_number((row, column + 1))
                 (texts if beside else heads).append(text)
             headed = any(UNIT_HEADS.match(text) for text in heads + texts)
+            headed = headed and any(read_unit_text(text).unit is not None for text in texts)
             titled = bool(heads) and not headed
             known = self._columns[column] = _count(texts, headed=headed, titled=titled, head_row=head_row)
         return known

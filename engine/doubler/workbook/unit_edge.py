@@ -17,6 +17,7 @@ from doubler.workbook.unit_literals import (
     DEGREE,
     EXPLAINS,
     carries_scale,
+    fitted,
     gravity,
     slip,
     turns,
@@ -80,7 +81,9 @@ def named(carried: Carried, reading: Reading | None = None) -> str:
         name = _name(carried, reading)
         return name or f"{shown} times {carried.readings[0].scale / reading.scale:g}"
     name = _name(carried, carried.readings[0])
-    return shown if name is None or name == shown or name in ("1",) else f"{shown}, which is {name}"
+    if shown == "1":
+        return "a pure number"
+    return shown if name is None or name in (shown, "1") else f"{shown}, which is {name}"
 
 
 def _name(carried: Carried, reading: Reading) -> str | None:
@@ -92,11 +95,12 @@ def _other_dimension(carried: Carried, declared: Declared, dimension: Dimension,
     if declared.weak and not is_margin(declared.text):
         return Edge(agrees=False)
     scale = declared.unit.scale
+    most = replace(carried, readings=tuple(sorted(carried.readings, key=_conversions, reverse=True)))
     hidden = (
-        gravity(carried, dimension, scale)
-        or hidden_literal(carried, dimension, scale)
-        or typed_in(carried, dimension, scale)
+        gravity(carried, dimension, scale) or hidden_literal(most, dimension, scale) or typed_in(most, dimension, scale)
     )
+    if hidden is None and (carried.hidden or carried.shifted):
+        hidden = fitted(most, dimension, scale)
     if isinstance(hidden, Reading):
         weight = replace(carried, dimension=dimension, readings=(hidden,), sources=independent(carried.sources))
         factor = _round(declared.unit.scale / hidden.scale)
@@ -190,17 +194,19 @@ def _ratio_scale(carried: Carried, declared: Declared) -> bool:
     return single and any(math.isclose(ratio, s, rel_tol=1e-9) for s in (0.01, 1e-3, 1e-6, DEGREE))
 
 
+def _conversions(reading: Reading) -> int:
+    """Count the plain conversions of a reading, doubtful ones against it."""
+    held = [conversion(use.value) for use in reading.used]
+    return sum(1 if one is not None and one.strong else -1 for one in held)
+
+
 def best_reading(carried: Carried, declared: Declared) -> Reading:
     """Return the reading to name in a message: a unit with a name, with the plain conversions made."""
 
     def rank(reading: Reading) -> tuple[bool, int, float]:
-        strong = 0
-        for use in reading.used:
-            held = conversion(use.value)
-            strong += 1 if held is not None and held.strong else -1
         return (
             _name(carried, reading) is None,
-            -strong,
+            -_conversions(reading),
             abs(math.log(declared.unit.scale / reading.scale)),
         )
 

@@ -67,6 +67,16 @@ def typed_in(carried: Carried, dimension: Dimension, scale: float) -> Hidden | N
     return None
 
 
+def fitted(carried: Carried, dimension: Dimension, scale: float) -> Hidden | None:
+    """Take a coefficient of a fit, ``=1.5+0.25*B1``, for the one that carries the unit."""
+    for factor in carried.factors:
+        if factor.exponent and factor.value != 1.0:
+            power = 1 / factor.exponent
+            need = (scale / carried.readings[0].scale) ** float(power)
+            return Hidden(factor.text or f"{factor.value:g}", (dimension / carried.dimension) ** power, need)
+    return None
+
+
 def slip(carried: Carried, reading: Reading) -> Factor | None:
     """Return a literal that looks like a conversion, acts on the whole, and converts nothing."""
     if reading.weight or (carried.dimension == NONE and math.isclose(reading.scale, 1.0)):

@@ -23,7 +23,6 @@ from doubler.workbook.carried import (
     RATIO,
     TEXT,
     Carried,
-    Reading,
     State,
     contradictory,
     divide,
@@ -218,9 +217,7 @@ class Walk:
             return self.node(node.operand)
         operand = self.one(node.operand)
         if node.operator == "%":
-            return multiply(
-                operand, replace(literal(0.01, "0.01", self.next_position()), factors=(), readings=(Reading(1.0),))
-            )
+            return multiply(operand, replace(literal(0.01, "0.01", self.next_position()), factors=()))
         if node.operator == "-":
             return negated(operand)
         return operand
