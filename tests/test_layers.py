@@ -20,7 +20,9 @@ LAYERS = [
     {"summary"},
     {"fill", "sweep", "size", "explain"},
     {"check"},
-    {"hosts", "cli", "__main__", "demo"},
+    {"hosts"},
+    {"cli"},
+    {"__main__"},
 ]
 LEVEL = {name: level for level, names in enumerate(LAYERS) for name in names}
 

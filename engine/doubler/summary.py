@@ -6,6 +6,7 @@ The sheet of cases is written row by row as the results come in; memory does not
 from __future__ import annotations
 
 import io
+import math
 from collections.abc import Iterable, Mapping, Sequence
 from pathlib import Path
 from typing import Any
@@ -61,7 +62,8 @@ class Summary:
             width = 24 if column == 1 else min(max(len(head), len(unit), 8) + 3, 30)
             sheet.column_dimensions[get_column_letter(column)].width = width
         sheet.freeze_panes = "B3"
-        sheet.print_title_rows = "1:2"
+        sheet.print_title_rows, sheet.print_title_cols = "1:2", "A:A"
+        sheet.page_setup.scale = 60
         _set_up_page(sheet)
         own = _Look(sheet, bold=True, color="FFFFFF", fill=INK)
         given = _Look(sheet, bold=True, color="FFFFFF", fill=TEAL)
@@ -134,9 +136,12 @@ class Summary:
         for letter, width in zip("ABCDEFGH", (24, 38, 9, 12, 24, 12, 24, 12), strict=True):
             sheet.column_dimensions[letter].width = width
         sheet.freeze_panes = "A6"
+        sheet.row_dimensions[5].height = 28
         _set_up_page(sheet)
+        sheet.page_setup.fitToWidth, sheet.page_setup.fitToHeight = 1, 0
+        sheet.sheet_properties.pageSetUpPr.fitToPage = True
         if self.margins and self.rows:
-            self._add_chart(len(lines) + 8)
+            self._add_chart(len(lines) + 8, lines)
         below = sum(line.below_zero > 0 for line in lines)
         lost = sum(line.not_computed > 0 for line in lines)
         sheet.append([_Look(sheet, size=15, bold=True).cell(f"Envelope of {title}")])
@@ -157,7 +162,7 @@ class Summary:
         outputs = f"{lost} outputs could not be computed" if lost else "Every output was computed"
         return f"{self.rows} load cases. {margins}. {outputs} in every case."
 
-    def _add_chart(self, row: int) -> None:
+    def _add_chart(self, row: int, lines: Sequence[EnvelopeLine]) -> None:
         """Draw the lowest margin of every case, what is below zero in the colour of what is wrong."""
         from openpyxl.chart import BarChart, Reference
         from openpyxl.chart.shapes import GraphicalProperties
@@ -169,7 +174,7 @@ class Summary:
         chart.title = "Lowest margin of safety by case"
         chart.style = 10
         chart.height, chart.width = 9.5, 32
-        chart.gapWidth = 30
+        chart.gapWidth = 30 if self.rows < 60 else 0
         chart.overlap = 100
         chart.legend.position = "t"
         data = Reference(cases, min_col=column, max_col=column + 1, min_row=1, max_row=last)
@@ -178,8 +183,12 @@ class Summary:
         for series, colour in zip(chart.series, (TEAL, RUST), strict=True):
             series.graphicalProperties = GraphicalProperties(solidFill=colour)
             series.invertIfNegative = False
-        chart.y_axis.title = "margin of safety"
-        chart.y_axis.number_format = "0.0"
+        lowest = min((x for x in (_lowest_of(line) for line in lines) if x is not None), default=0.0)
+        # What lies near zero is to be seen; a bar that reaches the top has plenty.
+        chart.y_axis.scaling.min = math.floor(min(lowest, 0.0) * 4) / 4
+        chart.y_axis.scaling.max = 2.0
+        chart.y_axis.title = "margin of safety (shown up to 2)"
+        chart.y_axis.number_format = "0.00"
         chart.y_axis.delete = False
         chart.x_axis.delete = False
         chart.x_axis.tickLblPos = "low"
@@ -200,6 +209,7 @@ class _Look:
         color: str = INK,
         fill: str | None = None,
         wrap: bool = False,
+        indent: int = 0,
         number_format: str = "General",
     ) -> None:
         from openpyxl.cell import WriteOnlyCell
@@ -212,7 +222,8 @@ class _Look:
         if fill is not None:
             model.fill = PatternFill("solid", fgColor=fill)
         model.number_format = number_format
-        model.alignment = Alignment(vertical="center", wrap_text=wrap)
+        side = "left" if indent else None
+        model.alignment = Alignment(vertical="center", wrap_text=wrap, horizontal=side, indent=indent)
         self._style = model._style
 
     def cell(self, value: Scalar) -> Any:
@@ -233,7 +244,7 @@ def _envelope_row(sheet: Any, line: EnvelopeLine) -> list[Any]:
     bad = line.below_zero > 0 or line.not_computed > 0
     fill = (BLUSH if bad else PALE) if margin else None
     shown = _number_format(line.port)
-    plain, wrapped = _Look(sheet, fill=fill), _Look(sheet, fill=fill, wrap=True)
+    plain, wrapped = _Look(sheet, fill=fill, indent=1), _Look(sheet, fill=fill, wrap=True)
     number = _Look(sheet, fill=fill, number_format=shown)
     lowest = _Look(sheet, fill=fill, bold=True, color=RUST if margin and bad else INK, number_format=shown)
     return [
@@ -246,6 +257,11 @@ def _envelope_row(sheet: Any, line: EnvelopeLine) -> list[Any]:
         plain.cell(line.highest.case),
         _Look(sheet, fill=fill, number_format="0").cell(float(line.below_zero) if margin else None),
     ]
+
+
+def _lowest_of(line: EnvelopeLine) -> float | None:
+    value = line.lowest.value
+    return value if line.port.is_margin and isinstance(value, float) else None
 
 
 def _lowest(found: Iterable[tuple[Scalar, str]]) -> tuple[Scalar, str]:
@@ -277,8 +293,5 @@ def _number_format(port: Port | None) -> str:
 
 def _set_up_page(sheet: Any) -> None:
     sheet.page_setup.orientation = "landscape"
-    sheet.page_setup.fitToWidth = 1
-    sheet.page_setup.fitToHeight = 0
-    sheet.sheet_properties.pageSetUpPr.fitToPage = True
     sheet.oddFooter.left.text = "doubler summary"
     sheet.oddFooter.right.text = "page &P of &N"
