@@ -23,7 +23,7 @@ from doubler.workbook.syntax import (
     TableRef,
     Unary,
 )
-from doubler.workbook.written_references import DYNAMIC, constant_reference, sized_like
+from doubler.workbook.written_references import DYNAMIC, around_the_edge, constant_reference, sized_like
 
 DEEPEST = 64
 """How deep defined names may stand on other names."""
@@ -129,7 +129,7 @@ class Resolver:
                 tree = self._trees[id(name)] = parse(name.text, (1, 1))
         except FormulaError as error:
             raise CannotEvaluateError(f"the defined name {node.name} cannot be read: {error}") from error
-        return self._node(tree, sheet, host, frozenset(), depth + 1)
+        return self._node(around_the_edge(tree, host), sheet, host, frozenset(), depth + 1)
 
     def _table(self, node: TableRef, sheet: Sheet, host: Address) -> Node:
         table = self._tables.get(node.table.casefold()) if node.table else self._table_at(sheet, host)

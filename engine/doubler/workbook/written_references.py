@@ -13,7 +13,18 @@ from doubler.errors import ErrorValue
 from doubler.workbook.coerce import CannotEvaluateError, to_number
 from doubler.workbook.model import Address
 from doubler.workbook.references import LAST_COLUMN, LAST_ROW, read_reference
-from doubler.workbook.syntax import Axis, CellRef, ErrorLiteral, Node, Omitted, RangeRef, TableRef
+from doubler.workbook.syntax import (
+    Axis,
+    Binary,
+    Call,
+    CellRef,
+    ErrorLiteral,
+    Node,
+    Omitted,
+    RangeRef,
+    TableRef,
+    Unary,
+)
 
 DYNAMIC = {"OFFSET", "INDIRECT"}
 """Functions that give a reference."""
@@ -128,3 +139,34 @@ def sized_like(values: Node, like: Node) -> Node:
             return values
         ends.append(replace(first, number=first.number + to_axis.number - from_axis.number))
     return RangeRef(values.sheet, row, column, ends[0], ends[1])
+
+
+def around_the_edge(node: Any, host: Address) -> Any:
+    """Let the relative references of a defined name that lead over the sheet's edge go on at its other side."""
+    if isinstance(node, tuple):
+        return tuple(around_the_edge(part, host) for part in node)
+    if isinstance(node, CellRef):
+        return replace(
+            node, row=_wrapped(node.row, host[0], LAST_ROW), column=_wrapped(node.column, host[1], LAST_COLUMN)
+        )
+    if isinstance(node, RangeRef):
+        return replace(
+            node,
+            first_row=_wrapped(node.first_row, host[0], LAST_ROW),
+            last_row=_wrapped(node.last_row, host[0], LAST_ROW),
+            first_column=_wrapped(node.first_column, host[1], LAST_COLUMN),
+            last_column=_wrapped(node.last_column, host[1], LAST_COLUMN),
+        )
+    if isinstance(node, Unary):
+        return replace(node, operand=around_the_edge(node.operand, host))
+    if isinstance(node, Binary):
+        return replace(node, left=around_the_edge(node.left, host), right=around_the_edge(node.right, host))
+    if isinstance(node, Call):
+        return replace(node, arguments=around_the_edge(node.arguments, host))
+    return node
+
+
+def _wrapped(axis: Any, own: int, end: int) -> Any:
+    if axis is None or axis.anchored or 1 <= axis.at(own) <= end:
+        return axis
+    return Axis((axis.at(own) - 1) % end + 1 - own, anchored=False)
