@@ -10,8 +10,10 @@ from typing import Any
 
 from doubler.check.dispositions import Earlier
 from doubler.check.examination import CheckReport
+from doubler.check.marked_copy import marked_copy
 from doubler.check.record_content import Content, content_of
 from doubler.check.record_page import page
+from doubler.check.record_sheet import read_record
 from doubler.errors import InputError
 from doubler.workbook.output import refuse_target, write_file
 
@@ -83,7 +85,9 @@ def write_record(report: CheckReport, folder: Path, date: str | None = None) -> 
     record = record_paths(report.path, folder)
     for target in (record.html, record.workbook, record.json):
         refuse_target(target)
-    content = content_of(report, Earlier(), date)
+    earlier = read_record(record.workbook) if record.workbook.exists() else Earlier()
+    content = content_of(report, earlier, date)
+    write_file(record.workbook, marked_copy(content))
     write_file(record.html, [page(content).encode()])
     write_file(record.json, [json.dumps(as_object(content), ensure_ascii=False, indent=1).encode(), b"\n"])
     return record
