@@ -231,3 +231,18 @@ def test_a_fit_with_a_constant_term_may_give_another_dimension(formula) -> None:
     assert told(tracing) == []
     assert tracing.notes
     assert told(traced(rows(("t", 2, "mm"), ("K", "=2*B1", "-")))) == [("B2", "unit-label", "error")]
+
+
+def test_a_broken_power_with_a_coefficient_is_empirical() -> None:
+    cells = rows(("fck", 30, "MPa"), ("fctm", "=0.3*B1^(2/3)", "MPa"), ("fr", "=7.5*SQRT(B1)", "MPa"))
+    tracing = traced(cells)
+    assert told(tracing) == []
+    assert [note.place for note in tracing.notes] == ["B2", "B3"]
+    assert told(traced(rows(("F", 30, "MPa"), ("x", "=2*SQRT(B1)", "MPa")))) == [("B2", "unit-label", "error")]
+
+
+def test_notes_of_equal_formulas_are_one() -> None:
+    cells = rows(("s", "MPa", 100, 200, 300), ("MS", "-", "=235/C1-1", "=235/D1-1", "=235/E1-1"))
+    tracing = traced(cells)
+    assert told(tracing) == []
+    assert [note.place for note in tracing.notes] == ["C2:E2"]

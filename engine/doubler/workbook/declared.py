@@ -21,7 +21,7 @@ from doubler.workbook.declared_places import (
     row_against_column,
     units_alike,
 )
-from doubler.workbook.label_units import bracket_unit, loose_unit, sheet_note_unit
+from doubler.workbook.label_units import bracket_unit, is_bare_name, loose_unit, sheet_note_unit
 from doubler.workbook.labels import Label, Labels, Layout
 from doubler.workbook.model import Address, Workbook
 from doubler.workbook.roles import is_difference, is_pure_number, is_total
@@ -49,7 +49,7 @@ class Declarations:
     _notes: dict[str, list[Found]] = field(default_factory=dict)
     _unreadable: dict[Key, Unreadable] = field(default_factory=dict)
     _disagreements: dict[Key, Disagreement] = field(default_factory=dict)
-    _columns: dict[tuple[str, int, int, int], Declared] = field(default_factory=dict)
+    _columns: dict[tuple[str, int, int, int, bool], Declared | None] = field(default_factory=dict)
     _complete: bool = False
 
     def label(self, sheet: str, address: Address) -> Label:
@@ -98,12 +98,14 @@ class Declarations:
         layout = self.labels.layout(sheet)
         quick = self._under_header(sheet, layout, address)
         if quick is not None:
-            held = self._columns.get(quick)
-            if held is not None:
+            held = self._columns.get(quick, quick)
+            if not isinstance(held, tuple):
                 return held
         finds = self._places(sheet, layout, address)
         first = next(finds, None)
         if first is None:
+            if quick is not None:
+                self._columns[quick] = None
             return None
         declared = self._share(sheet, layout, address, first)
         if not first.weak:
@@ -116,21 +118,23 @@ class Declarations:
                     other = self._share(sheet, layout, address, second)
                     self._disagreements[sheet, address] = Disagreement(sheet, address, declared, other)
                     break
-        if quick is not None and first.place in ("bracket in the header", "unit row"):
+        if quick is not None and first.unit.dimension != _temperature():
             self._columns[quick] = declared
         return declared
 
-    def _under_header(self, sheet: str, layout: Layout, address: Address) -> tuple[str, int, int, int] | None:
-        """Return the column in which a cell has its unit from the header alone: no text stands beside it."""
+    def _under_header(self, sheet: str, layout: Layout, address: Address) -> tuple[str, int, int, int, bool] | None:
+        """Return the column from whose header alone a cell has its unit: no text beside it could tell another."""
         row, column = address
-        if (row, column + 1) in layout.texts or address in layout.sheet.comments:
+        if (row, column + 1) in layout.texts or (row, column + 2) in layout.texts or address in layout.sheet.comments:
             return None
         left = layout.left_texts(address)
-        if left and layout.touches_left(address, left[0]):
+        if left and (len(left) > 1 or not is_bare_name(layout.texts[left[0]]) or layout.touches_left(address, left[0])):
+            return None
+        if (sheet, address) in self.labels.names or layout.right_text(address) is not None:
             return None
         head = layout.header_row(address)
         cell = layout.cells.get(address)
-        return None if head is None or cell is None else (sheet, head, column, cell.style)
+        return None if head is None or cell is None else (sheet, head, column, cell.style, layout.apart(head, row))
 
     def _share(self, sheet: str, layout: Layout, address: Address, found: Found) -> Declared:
         absolute = False

@@ -5,9 +5,11 @@ from __future__ import annotations
 import re
 
 from doubler.units import Unit
+from doubler.workbook.roles import is_pure_number
 from doubler.workbook.unit_text import UnitText, phrase_unit, read_unit_text, role_agrees
 
 _SYMBOL = re.compile(r"^[A-Za-zΔσετθαβνρδ](?:[a-z]?\d{0,2}|_\w{1,6})$")
+_BARE = re.compile(r"^[A-Za-z]{1,12}[ _.-]?\d{1,6}[A-Za-z]?$")
 _BRACKET = re.compile(r"([\[(])([^\[\]()]*(?:\([^()]*\)[^\[\]()]*)?)[\])]")
 _COMMA = re.compile(r",\s*(\S{1,20}(?:\s\S{1,8})?)\s*[:=]?\s*$")
 _SLASH = re.compile(r"^(?P<label>.*\S)\s*/\s*(?P<unit>\(?[^\s/].*)$")
@@ -75,6 +77,11 @@ def loose_unit(text: str) -> Unit | None:
         ):
             return read.unit
     return None
+
+
+def is_bare_name(text: str) -> bool:
+    """Return whether a text at the start of a row is a mere name that no unit can be in: ``LC 12``, ``Bolt 3``."""
+    return bool(_BARE.match(text)) and read_unit_text(text).unit is None and not is_pure_number(text)
 
 
 def sheet_note_unit(text: str) -> Unit | None:

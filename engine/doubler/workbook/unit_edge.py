@@ -19,6 +19,7 @@ from doubler.workbook.unit_literals import (
     carries_scale,
     fitted,
     gravity,
+    is_odd_power,
     slip,
     turns,
     typed_in,
@@ -99,7 +100,7 @@ def _other_dimension(carried: Carried, declared: Declared, dimension: Dimension,
     hidden = (
         gravity(carried, dimension, scale) or hidden_literal(most, dimension, scale) or typed_in(most, dimension, scale)
     )
-    if hidden is None and (carried.hidden or carried.shifted):
+    if hidden is None and (carried.hidden or carried.shifted or is_odd_power(carried, dimension)):
         hidden = fitted(most, dimension, scale)
     if isinstance(hidden, Reading):
         weight = replace(carried, dimension=dimension, readings=(hidden,), sources=independent(carried.sources))

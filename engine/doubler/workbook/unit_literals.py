@@ -67,6 +67,18 @@ def typed_in(carried: Carried, dimension: Dimension, scale: float) -> Hidden | N
     return None
 
 
+_PLAIN = frozenset({0.25, 0.5, 1.0, 1.5, 2.0, 3.0, 4.0})
+
+
+def is_odd_power(carried: Carried, dimension: Dimension) -> bool:
+    """Return whether a broken power of a quantity with a coefficient is plainly empirical: ``=0.3*B1^(2/3)``."""
+    broken = [e.denominator for e in (dimension / carried.dimension).exponents if e.denominator > 1]
+    typed = [f.value for f in carried.factors if f.exponent and f.value != 1.0]
+    if not broken or not typed:
+        return False
+    return max(broken) > 2 or any(value not in _PLAIN for value in typed)
+
+
 def fitted(carried: Carried, dimension: Dimension, scale: float) -> Hidden | None:
     """Take a coefficient of a fit, ``=1.5+0.25*B1``, for the one that carries the unit."""
     for factor in carried.factors:

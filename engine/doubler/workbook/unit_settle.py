@@ -158,14 +158,18 @@ def gathered(tracing: Tracing, settlement: Settlement) -> None:
     findings += [_merged(items, follows) for items in merged.values()]
     order = {sheet.name: index for index, sheet in enumerate(tracing.graph.workbook.sheets)}
     tracing.findings = sorted(findings, key=lambda f: (order.get(f.sheet, 0), f.address, f.kind))
-    noted: dict[str, UnitFinding] = {}
+    noted: dict[tuple[object, ...], tuple[Judgement, str, list[Key]]] = {}
     for at, judgement in judged.items():
-        for note in judgement.notes:
-            host = judgement.host
-            noted.setdefault(
-                note, UnitFinding(*host, "unit-label", "note", note, areas=rectangles(c[1] for c in cells[at]))
-            )
-    tracing.notes = sorted(noted.values(), key=lambda f: (order.get(f.sheet, 0), f.address))
+        for number, note in enumerate(judgement.notes):
+            same = (judgement.host[0], id(judgement.tree), number, judgement.hidden)
+            noted.setdefault(same, (judgement, note, []))[2].extend(cells[at])
+    tracing.notes = sorted(
+        (
+            UnitFinding(*first.host, "unit-label", "note", note, areas=rectangles(key[1] for key in keys))
+            for first, note, keys in noted.values()
+        ),
+        key=lambda f: (order.get(f.sheet, 0), f.address),
+    )
 
 
 def _merged(items: list[tuple[Judgement, Fault, list[Key]]], follows: dict[int, list[Key]]) -> UnitFinding:
