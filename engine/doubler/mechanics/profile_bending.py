@@ -1,4 +1,4 @@
-"""Bending of profiles (I, channel, tee, angle, zee, box, hat, trapezium): section moduli, first moment, principal axes."""
+"""Bending of profiles (I, channel, tee, angle, zee, box, hat, …): section moduli, first moment, principal axes."""
 
 from __future__ import annotations
 

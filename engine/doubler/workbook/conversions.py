@@ -1,8 +1,8 @@
 """Literals that may be conversion constants, and literals that are plain coefficients.
 
-A formula's literal is *conversion-like* when, to the precision with which it is typed, it is a factor between two units:
-a power of ten, 25.4, 6.895, 0.3048, 57.2958 … or a power, an inverse or a decimal multiple of one. Whether it *is* a
-conversion is not for this module to say: that follows from the units on both sides of the formula.
+A formula's literal is *conversion-like* when, to the precision with which it is typed, it is a factor between two
+units: a power of ten, 25.4, 6.895, 0.3048, 57.2958 … or a power, an inverse or a decimal multiple of one. Whether it
+*is* a conversion is not for this module to say: that follows from the units on both sides of the formula.
 """
 
 from __future__ import annotations
