@@ -28,8 +28,11 @@ class ArgumentError(InputError):
     """One argument cannot be read; `value` is the error value that the cell shows."""
 
     def __init__(self, reason: str, value: ErrorValue = ErrorValue.VALUE) -> None:
-        super().__init__(reason)
+        super().__init__(reason, value)
         self.value = value
+
+    def __str__(self) -> str:
+        return str(self.args[0])
 
 
 @dataclass(frozen=True, slots=True)

@@ -9,6 +9,7 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
 from functools import lru_cache
+from typing import Any
 
 from doubler.catalogue.annotations import Alike, Quantity
 from doubler.catalogue.record import Argument, WorksheetFunction
@@ -22,14 +23,20 @@ class CallError(InputError):
 
     Attributes
     ----------
+    function, reasons
+        Its name, and one sentence for each fault.
     value
         The error value that a cell shows.
     """
 
     def __init__(self, function: str, reasons: Sequence[str], value: ErrorValue = ErrorValue.VALUE) -> None:
         super().__init__(f"{function}: " + "; ".join(reasons))
+        self.function = function
         self.reasons = tuple(reasons)
         self.value = value
+
+    def __reduce__(self) -> tuple[Any, ...]:
+        return CallError, (self.function, self.reasons, self.value)
 
 
 @dataclass(frozen=True, slots=True)
