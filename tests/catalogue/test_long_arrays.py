@@ -1,6 +1,7 @@
 """Long arrays: in blocks, over threads, with factors folded, and the same as one lane at a time."""
 
 import os
+import signal
 from typing import Any
 
 import numpy as np
@@ -181,6 +182,7 @@ def test_a_forked_process_begins_without_the_threads_of_its_parent(monkeypatch: 
     assert len(blocks.in_shares(2000, lambda start, stop: list(range(start, stop)))) == 2000
     child = os.fork()
     if child == 0:
+        signal.alarm(20)  # a child that waits for threads it does not have ends, and the test fails
         os._exit(0 if len(blocks.in_shares(2000, lambda start, stop: list(range(start, stop)))) == 2000 else 1)
     assert os.waitstatus_to_exitcode(os.waitpid(child, 0)[1]) == 0
 
