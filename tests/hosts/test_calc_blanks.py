@@ -2,7 +2,7 @@
 
 import pytest
 
-from doubler.hosts.calc_blanks import EMPTY, OMITTED, UNKNOWN, ZERO, Blanks, Sheets, calls_in, literal, range_of
+from doubler.hosts.calc_blanks import EMPTY, OMITTED, UNKNOWN, UNREAD, ZERO, Blanks, Sheets, calls_in, literal, range_of
 
 NAMES = {"STRESS_AXIAL", "SECTION_ROUND_AREA"}
 
@@ -16,6 +16,9 @@ class Book(Sheets):
 
     def value(self, _, reference):
         return self.cells.get(reference[1])
+
+    def is_empty(self, _, reference):
+        return reference[1] not in self.cells
 
 
 @pytest.mark.parametrize(
@@ -74,3 +77,9 @@ def test_literals_and_ranges_are_read():
     assert range_of("$'my sheet'.C5") == ("my sheet", "C5")
     assert range_of("A:A") == ("", "A:A")
     assert range_of("A1+1") is None
+
+
+def test_a_cell_whose_value_is_not_known_leaves_the_zero_undecided():
+    book = Book({"B1": UNREAD, "A2": 0.0}, ['=STRESS_AXIAL(A3;B1;"N-mm")', '=STRESS_AXIAL(A2;B1;"N-mm")'])
+    assert kind(book, (0.0, 150.0, "N-mm"), 0, EMPTY) == UNKNOWN
+    assert kind(book, (0.0, 150.0, "N-m"), 0, EMPTY) == ZERO

@@ -185,3 +185,16 @@ def test_what_lives_in_libreoffice_reads_as_python_3_8_and_imports_the_standard_
         for name in ([node.module] if isinstance(node, ast.ImportFrom) else [alias.name for alias in node.names])
     }
     assert roots <= set(sys.stdlib_module_names)
+
+
+@pytest.mark.parametrize("module", [calc_client, calc_blanks])
+def test_no_type_of_python_3_9_is_subscripted_at_run_time_inside_libreoffice(module):
+    tree = ast.parse(Path(module.__file__).read_text())
+    values = [node.value for node in ast.walk(tree) if isinstance(node, ast.Assign)]
+    heads = {
+        node.value.id
+        for value in values
+        for node in ast.walk(value)
+        if isinstance(node, ast.Subscript) and isinstance(node.value, ast.Name)
+    }
+    assert not heads & {"tuple", "list", "dict", "set"}

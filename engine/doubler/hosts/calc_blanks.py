@@ -20,8 +20,15 @@ _REFERENCE = re.compile(r"^(?:\$?('(?:[^']|'')+'|[^\s'.:!;()+*/&=<>^-]+)\.)?\$?(
 _RANGE_END = re.compile(r"^(?:\$?('(?:[^']|'')+'|[^\s'.:!;()+*/&=<>^-]+)\.)?\$?([A-Z]{1,3})\$?([0-9]*)$")
 _NUMBER = re.compile(r"^[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:E[+-]?[0-9]+)?$", re.IGNORECASE)
 
-Reference = tuple[str, str]
+UNREAD = object()
+"""Stands for a value that cannot be told without computing it: an expression, a range, an error."""
+
+Reference = Tuple[str, str]  # noqa: UP006
 """Sheet (empty for the formula's own) and address of one cell."""
+Written = Tuple[Any, List[str], List[str]]  # noqa: UP006
+"""A call as written: its sheet, the texts of its arguments, and what stands there."""
+Table = Tuple[Dict[Tuple[Any, ...], Set[str]], List[Tuple[List[Any], str]]]  # noqa: UP006
+"""Calls by the values of their arguments, and calls of which some are not known."""
 
 
 class Sheets:
@@ -32,7 +39,11 @@ class Sheets:
         raise NotImplementedError
 
     def value(self, sheet: Any, reference: Reference) -> Any:
-        """Give one cell's value: float, text, or None where it is empty."""
+        """Give one cell's value: float, text, None where it is empty, `UNREAD` where it shows an error."""
+        raise NotImplementedError
+
+    def is_empty(self, sheet: Any, reference: Reference) -> bool:
+        """Say whether one cell is empty; nothing may be computed for that."""
         raise NotImplementedError
 
 
@@ -88,10 +99,12 @@ class Blanks:
 
     def __init__(self, names: Iterable[str]) -> None:
         self.names = set(names)
-        self._calls: Dict[str, List[Tuple[Any, List[str]]]] = {}  # noqa: UP006
-        self._doubtful: Dict[str, Set[int]] = {}  # noqa: UP006
+        self._calls: Dict[str, List[Written]] = {}  # noqa: UP006
+        self._doubtful: Dict[Tuple[str, int], List[Written]] = {}  # noqa: UP006
+        self._tables: Dict[Tuple[str, int, bool], Table] = {}  # noqa: UP006
         self._read_at = -1.0
         self._took = 0.0
+        self._reading = False
 
     def forget(self) -> None:
         """Read the formulas anew at the next zero: a document has changed."""
@@ -117,38 +130,102 @@ class Blanks:
             `ZERO`, `EMPTY`, `OMITTED`, or `UNKNOWN` where no formula, or formulas that differ in this, could have
             made the call.
         """
-        now = time.monotonic()
-        if self._read_at < 0 or now - self._read_at > max(FRESH_SECONDS, 2 * self._took):
+        stale = self._read_at < 0 or time.monotonic() - self._read_at > max(FRESH_SECONDS, 2 * self._took)
+        if stale and not self._reading:
             self._read(sheets)
-        calls = self._calls.get(name, ())
-        if not calls:
+        if not self._calls.get(name):
             return UNKNOWN
-        if index not in self._doubtful[name]:
+        doubtful = [call for call in self._doubtful.get((name, index), ()) if call[2][index] == blank]
+        if not doubtful:
             return ZERO
-        found = {
-            _kind(sheets, sheet, texts[index] if index < len(texts) else "")
-            for sheet, texts in calls
-            if _may_match(sheets, sheet, texts, arguments)
-        } & {ZERO, blank}
+        if self._reading:
+            # A cell that is only now computed, because its value was asked for here: nothing more may be computed.
+            return UNKNOWN
+        if not self._found(sheets, name, arguments, index, doubtful, False):
+            return ZERO
+        found = self._found(sheets, name, arguments, index, self._calls[name], True) & {ZERO, blank}
         return found.pop() if len(found) == 1 else UNKNOWN
 
     def _read(self, sheets: Sheets) -> None:
         start = time.monotonic()
-        self._calls, self._doubtful = {}, {}
+        self._calls, self._doubtful, self._tables = {}, {}, {}
         for sheet, formula in sheets.formulas():
             for name, texts in calls_in(formula, self.names):
-                self._calls.setdefault(name, []).append((sheet, texts))
-                doubtful = self._doubtful.setdefault(name, set())
-                doubtful.update(i for i, text in enumerate(texts) if _kind(sheets, sheet, text) != ZERO)
+                kinds = [_kind(sheets, sheet, text) for text in texts]
+                written = (sheet, texts, kinds)
+                self._calls.setdefault(name, []).append(written)
+                for index, kind in enumerate(kinds):
+                    if kind != ZERO:
+                        self._doubtful.setdefault((name, index), []).append(written)
         self._read_at = time.monotonic()
         self._took = self._read_at - start
+
+    def _found(
+        self,
+        sheets: Sheets,
+        name: str,
+        arguments: Sequence[Any],
+        index: int,
+        calls: list[Written],
+        whole: bool,
+    ) -> Set[str]:  # noqa: UP006
+        """Return what stands at `index` in those of the calls that could have had these arguments."""
+        table = self._tables.get((name, index, whole))
+        if table is None:
+            start = time.monotonic()
+            self._reading = True
+            try:
+                table = _table(sheets, calls, index)
+            finally:
+                self._reading = False
+            self._tables[name, index, whole] = table
+            self._took += time.monotonic() - start
+        exact, loose = table
+        found = set(exact.get(_key([_plain(given) for given in arguments]), ()))
+        return found | {kind for expected, kind in loose if _may_match(expected, arguments)}
+
+
+def _table(sheets: Sheets, calls: Iterable[Written], index: int) -> Table:
+    """Sort calls by the values that their arguments have; those with an unread argument are kept aside."""
+    exact: Dict[Tuple[Any, ...], Set[str]] = {}  # noqa: UP006
+    loose: List[Tuple[List[Any], str]] = []  # noqa: UP006
+    for sheet, texts, kinds in calls:
+        expected = [_expected(sheets, sheet, text) for text in texts]
+        kind = kinds[index] if index < len(kinds) else OMITTED
+        if any(value is UNREAD for value in expected):
+            loose.append((expected, kind))
+        else:
+            exact.setdefault(_key(expected), set()).add(kind)
+    return exact, loose
+
+
+def _key(values: Sequence[Any]) -> Tuple[Any, ...]:  # noqa: UP006
+    """Return the values for comparing: nothing, empty text and zero are one; those at the end are left away."""
+    key = [None if value in ("", 0.0) else value for value in values]
+    while key and key[-1] is None:
+        key.pop()
+    return tuple(key)
+
+
+def _plain(given: Any) -> Any:
+    while isinstance(given, (tuple, list)) and len(given) == 1:
+        given = given[0]
+    return UNREAD if isinstance(given, (tuple, list)) else given
+
+
+def _expected(sheets: Sheets, sheet: Any, text: str) -> Any:
+    reference = _REFERENCE.match(text)
+    if reference:
+        return sheets.value(sheet, _cell(reference))
+    known, value = literal(text)
+    return value if known else UNREAD
 
 
 def _kind(sheets: Sheets, sheet: Any, text: str) -> str:
     if not text:
         return OMITTED
     reference = _REFERENCE.match(text)
-    if reference and sheets.value(sheet, _cell(reference)) is None:
+    if reference and sheets.is_empty(sheet, _cell(reference)):
         return EMPTY
     return ZERO
 
@@ -184,29 +261,11 @@ def _sheet_name(text: str) -> str:
     return text[1:-1].replace("''", "'") if text.startswith("'") else text
 
 
-def _may_match(sheets: Sheets, sheet: Any, texts: Sequence[str], arguments: Sequence[Any]) -> bool:
-    """Return whether a call written so could have had these arguments; what cannot be told counts as yes."""
-    for index in range(max(len(texts), len(arguments))):
-        text = texts[index] if index < len(texts) else ""
-        given = arguments[index] if index < len(arguments) else None
-        while isinstance(given, (tuple, list)) and len(given) == 1:
-            given = given[0]
-        if isinstance(given, (tuple, list)):
-            if _REFERENCE.match(text) or _NUMBER.match(text):
-                return False
-            continue
-        reference = _REFERENCE.match(text)
-        if not text:
-            expected: Any = None
-        elif reference:
-            expected = sheets.value(sheet, _cell(reference))
-        else:
-            known, expected = literal(text)
-            if not known:
-                continue
-        blank = given in (None, "", 0.0)
-        if blank and expected in (None, "", 0.0):
-            continue
-        if given != expected:
+def _may_match(expected: Sequence[Any], arguments: Sequence[Any]) -> bool:
+    """Return whether a call could have had these arguments; what was not read counts as yes."""
+    for index in range(max(len(expected), len(arguments))):
+        one = expected[index] if index < len(expected) else None
+        other = _plain(arguments[index]) if index < len(arguments) else None
+        if one is not UNREAD and _key([one]) != _key([other]):
             return False
     return True
