@@ -86,4 +86,4 @@ def column_of_rows() -> Ratio:
         return call_cells(function, (column, "150 mm^2", "MPa"))
 
     plain, ours = side_by_side(read, call, rounds=9)
-    return Ratio("call with a column of 100,000 rows / np.array of the same rows", ours / plain, 5.0)
+    return Ratio("call with a column of 100,000 rows / np.array of the same rows", ours / plain, None)
