@@ -144,10 +144,14 @@ def _draw(edit: PackageEdit, sheet_part: str, boxes: list[Address], everything: 
     if relation is not None and edit.package.has(relation.target):
         old = edit.raw(relation.target)
         end = old.rfind(b"</xml>")
-        if boxes and end >= 0 and all(b"xmlns:" + name + b'="' + space in old for name, space in _SPACES):
+        if boxes and end >= 0:
+            # Prefixes are the writer's choice; where they are not ours, each of our boxes says what they mean.
+            known = all(b"xmlns:" + name + b'="' + space in old[:4096] for name, space in _SPACES)
+            spaces = "" if known else "".join(f' xmlns:{name.decode()}="{space.decode()}"' for name, space in _SPACES)
             number = max([1024 * block, *(int(digits) for digits in _SHAPE_NUMBER.findall(old))]) + 1
-            kind = "" if b"_x0000_t202" in old else _SHAPE_TYPE
-            edit.replace(relation.target, old[:end] + (kind + _shapes(boxes, number)).encode() + old[end:])
+            kind = "" if b"_x0000_t202" in old else _SHAPE_TYPE.replace("<v:shapetype", f"<v:shapetype{spaces}")
+            ours = kind + _shapes(boxes, number).replace("<v:shape ", f"<v:shape{spaces} ")
+            edit.replace(relation.target, old[:end] + ours.encode() + old[end:])
             return
         if not boxes:
             return

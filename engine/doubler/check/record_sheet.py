@@ -27,7 +27,7 @@ HEADINGS = (
     "No.", "Severity", "Kind", "Cell", "Finding", "Formula, numbers put in, result", "Disposition", "By", "Date",
     "Cells behind",
 )  # fmt: skip
-WIDTHS = (5, 10, 17, 20, 58, 52, 34, 15, 13, 18)
+WIDTHS = (5, 10, 16, 16, 42, 40, 24, 11, 11, 10)
 LAST = len(HEADINGS)
 _SHA = "SHA-256 of the file"
 _DIGITS = re.compile(r"[0-9a-f]{16}")
@@ -163,8 +163,7 @@ def _head(page: _Page, content: Content) -> None:
         ("Checked on", content.date),
         (
             "Coverage",
-            f"{report.formulas} formulas, {report.recalculated} recalculated, {report.traced} traced through their "
-            "units",
+            f"{report.formulas} formulas: {report.recalculated} recalculated, {report.traced} traced by their units",
         ),
         ("Findings", counts),
         ("Not judged", ", ".join(lost[:40]) + (f" and {len(lost) - 40} more" if len(lost) > 40 else "") or "nothing"),
@@ -274,7 +273,7 @@ def _lapsed(page: _Page, content: Content) -> None:
 
 def _height(text: str, width: int) -> float:
     """Return the height in points that a wrapped text needs; merged cells do not grow by themselves."""
-    lines = sum(max(1, -(-len(line) * 11 // (width * 10))) for line in text.split("\n"))
+    lines = sum(max(1, -(-len(line) * 10 // (width * 12))) for line in text.split("\n"))
     return min(13.0 * max(lines, 1) + 2, 400.0)
 
 
