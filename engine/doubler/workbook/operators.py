@@ -127,10 +127,14 @@ def alike(left: float, right: float) -> bool:
 def _compared(ufunc: Callable[..., Any], left: Any, right: Any) -> Any:
     """Compare numbers at 15 digits: lanes that differ beyond these count as equal."""
     truth = ufunc(left, right)
-    with np.errstate(over="ignore"):
-        apart = np.abs(np.subtract(left, right))
-        near = (apart <= NEAR * np.abs(left)) & (apart > 0.0)
+    if type(right) is float:
+        size = NEAR * abs(right)
+        near = (left >= right - size) & (left <= right + size)
+    else:
+        with np.errstate(over="ignore"):
+            near = np.abs(np.subtract(left, right)) <= NEAR * np.abs(left)
     if near.any():
+        near &= np.not_equal(left, right)
         truth = np.array(truth)
         shape = truth.shape
         a, b = np.broadcast_to(left, shape), np.broadcast_to(right, shape)

@@ -193,6 +193,11 @@ def largest(*arguments: Any) -> Any:
 
 
 def _extreme(entries: Entries, ufunc: np.ufunc, start: float) -> Any:
+    if not entries.errors and entries.values and all(v is None and shape_of(n) != () for n, v in entries.values):
+        found, *rest = (numbers if numbers.ndim == 2 else ufunc.reduce(numbers) for numbers, _ in entries.values)
+        for numbers in rest:
+            found = ufunc(found, numbers)
+        return found if shape_of(found) else float(found)
     with lenient():
         found = entries.fold(ufunc, start)
         if entries.values and all(valid is None for _, valid in entries.values):
