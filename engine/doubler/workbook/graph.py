@@ -15,6 +15,7 @@ from doubler.workbook.parse import FormulaError, FormulaParser
 from doubler.workbook.program import Program, compile_tree
 from doubler.workbook.references import address_text, read_area
 from doubler.workbook.resolve import Resolver
+from doubler.workbook.subtotals_within import refuse_nested_subtotals
 from doubler.workbook.syntax import Node, RangeRef
 
 
@@ -119,6 +120,7 @@ def build_graph(workbook: Workbook) -> Graph:
     """
     builder = _Builder(workbook)
     groups = builder.groups()
+    refuse_nested_subtotals(workbook, builder.geometry, groups)
     while True:
         occupancy = _occupied(workbook, groups)
         edges, areas = _edges(builder.geometry, groups, occupancy)

@@ -26,7 +26,7 @@ def _fixed(value: Any, function: str) -> float | ErrorValue:
 
 @native("SUBTOTAL", arguments="vr*r", units="subtotal")
 def subtotal(number: Any, *areas: Any) -> Any:
-    """Statistic of a range; what other subtotals gave in it is refused by the graph's own check before."""
+    """Statistic of a range. Other subtotals and hidden rows in it are refused before (`subtotals_within`)."""
     chosen = _fixed(number, "SUBTOTAL")
     if isinstance(chosen, ErrorValue):
         return chosen
