@@ -10,7 +10,7 @@ from doubler import __version__
 from doubler.check.dispositions import Behind, Disposition, Earlier, Lapsed, SignOff, carried
 from doubler.check.examination import CheckReport
 from doubler.check.finding import FAMILY_OF, Finding
-from doubler.check.recognise import quantities
+from doubler.check.recognise import is_named, quantities
 from doubler.check.written_formula import Writer, Written, number_shown
 from doubler.errors import InputError
 from doubler.workbook.addresses import parse_area, split_sheet
@@ -228,5 +228,7 @@ def margin_label(book: Examined, key: Key) -> str:
     label = book.label(key)
     row = " ".join(label.left)
     column = label.above[-1] if label.above and row else ""
+    if column and any(is_named(column, quantity) for quantity in ("margin of safety", "reserve factor")):
+        column = ""
     words = " · ".join(text for text in (row, column) if text) or label.text
     return words or cell_name_of(key)

@@ -5,20 +5,17 @@ from __future__ import annotations
 import re
 from dataclasses import dataclass, field
 from pathlib import Path
-from typing import TYPE_CHECKING
+from xml.sax.saxutils import escape
 
 from doubler.check.dispositions import Disposition, Earlier, FindingKey, SignOff
 from doubler.check.finding import FAMILY_OF
 from doubler.check.marking_styles import MarkingStyles
-from doubler.check.record_content import CAUTION, Content
+from doubler.check.record_content import CAUTION, Content, Margin
 from doubler.errors import InputError
 from doubler.workbook.addresses import cell_name, split_sheet
 from doubler.workbook.model import Sheet
 from doubler.workbook.package_edit import cell_text, sibling
 from doubler.workbook.xml_guard import MAIN, STRICT
-
-if TYPE_CHECKING:
-    from lxml.etree import _Element
 
 SHEET_NAME = "Check record"
 ROLES = ("Author", "Checker", "Approver")
@@ -29,9 +26,11 @@ HEADINGS = (
 )  # fmt: skip
 WIDTHS = (5, 10, 16, 16, 42, 40, 24, 11, 11, 10)
 LAST = len(HEADINGS)
+MOST_WRITTEN = 300
+"""Margins, lowest first, whose formulas are written with their numbers."""
+_LETTERS = ("", *"ABCDEFGHIJ")
 _SHA = "SHA-256 of the file"
 _DIGITS = re.compile(r"[0-9a-f]{16}")
-_XML_SPACE = "{http://www.w3.org/XML/1998/namespace}space"
 
 
 @dataclass
@@ -63,42 +62,36 @@ class _Styles:
 
 @dataclass
 class _Page:
-    """Rows under way."""
+    """Rows under way, as XML text: a sheet of thousands of margins is written at once."""
 
-    root: _Element
-    data: _Element
     styles: _Styles
-    row: int = 0
+    rows: list[str] = field(default_factory=list)
     merged: list[str] = field(default_factory=list)
 
     def line(
         self, cells: dict[int, tuple[str, int]], merge: tuple[tuple[int, int], ...] = (), height: float = 0
-    ) -> int:
+    ) -> None:
         """Write a row: text and style by column; merged columns get the style of their first."""
-        self.row += 1
+        number = len(self.rows) + 1
         for first, last in merge:
-            self.merged.append(f"{cell_name(self.row, first)}:{cell_name(self.row, last)}")
+            self.merged.append(f"{cell_name(number, first)}:{cell_name(number, last)}")
             for column in range(first + 1, last + 1):
                 cells.setdefault(column, ("", cells[first][1]))
-        row = sibling(self.data, "row", {"r": str(self.row)})
-        if height:
-            row.set("ht", f"{height:g}")
-            row.set("customHeight", "1")
+        size = f' ht="{height:g}" customHeight="1"' if height else ""
+        pieces = [f'<row r="{number}"{size}>']
         for column, (text, style) in sorted(cells.items()):
-            cell = sibling(row, "c", {"r": cell_name(self.row, column), "s": str(style)})
+            head = f'<c r="{_LETTERS[column]}{number}" s="{style}"'
             if text:
-                cell.set("t", "inlineStr")
-                holder, piece = sibling(row, "is"), sibling(row, "t")
-                piece.text = cell_text(text)
-                piece.set(_XML_SPACE, "preserve")
-                holder.append(piece)
-                cell.append(holder)
-            row.append(cell)
-        self.data.append(row)
-        return self.row
+                pieces.append(
+                    f'{head} t="inlineStr"><is><t xml:space="preserve">{escape(cell_text(text))}</t></is></c>'
+                )
+            else:
+                pieces.append(f"{head}/>")
+        pieces.append("</row>")
+        self.rows.append("".join(pieces))
 
 
-def record_sheet(content: Content, styles: MarkingStyles, *, strict: bool = False) -> _Element:
+def record_sheet(content: Content, styles: MarkingStyles, *, strict: bool = False) -> bytes:
     """Return the sheet's XML.
 
     Parameters
@@ -126,9 +119,8 @@ def record_sheet(content: Content, styles: MarkingStyles, *, strict: bool = Fals
         values = {"min": str(number), "max": str(number), "width": str(width), "customWidth": "1"}
         columns.append(sibling(root, "col", values))
     root.append(columns)
-    data = sibling(root, "sheetData")
-    root.append(data)
-    page = _Page(root, data, _Styles.added(styles))
+    root.append(sibling(root, "sheetData"))
+    page = _Page(_Styles.added(styles))
     _head(page, content)
     _sign_off(page, content)
     _findings(page, content)
@@ -147,7 +139,9 @@ def record_sheet(content: Content, styles: MarkingStyles, *, strict: bool = Fals
     odd.text = "&LCheck record&CPage &P of &N&R&F"
     footer.append(odd)
     root.append(footer)
-    return root
+    frame: bytes = etree.tostring(root, encoding="UTF-8", xml_declaration=True, standalone=True)
+    rows = "".join(page.rows).encode("utf-8")
+    return frame.replace(b"<sheetData/>", b"<sheetData>" + rows + b"</sheetData>", 1)
 
 
 def _head(page: _Page, content: Content) -> None:
@@ -225,34 +219,35 @@ def _margins(page: _Page, content: Content) -> None:
         return
     page.line({})
     heads = (
-        "Margin",
-        "",
-        "",
-        "Cell",
-        "Of what",
-        "Numbers put in",
-        "Re-derived",
-        "As stored",
-        "Agrees",
-        "Rests on findings",
-    )
-    page.line({column: (text, style.heading) for column, text in enumerate(heads, start=1)}, ((1, 3),))
-    for margin in content.margins:
-        numbers = content.writer.written(margin.key).numbers if margin.derived else "typed in, not computed"
+        "", "", "Margin", "Cell", "Of what", "Numbers put in", "Re-derived", "As stored", "Agrees", "Rests on findings",
+    )  # fmt: skip
+    page.line({column: (text, style.heading) for column, text in enumerate(heads, start=1)})
+    for place, margin in enumerate(content.margins):
         page.line(
             {
-                1: (margin.quantity, style.text),
+                1: ("", style.text),
+                2: ("", style.text),
+                3: (margin.quantity, style.text),
                 4: (margin.cell, style.text),
                 5: (margin.label, style.text),
-                6: (numbers, style.formula),
+                6: (formula := _margin_formula(content, margin, place), style.formula),
                 7: (margin.shown, style.number),
                 8: (margin.shown_stored, style.number),
                 9: ("yes" if margin.confirmed else "no", style.text),
                 10: (", ".join(map(str, margin.rests_on)) or "none", style.text),
             },
-            ((1, 3),),
-            max(_height(margin.label, WIDTHS[4]), _height(numbers, WIDTHS[5])),
+            height=max(_height(margin.label, WIDTHS[4]), _height(formula, WIDTHS[5])),
         )
+
+
+def _margin_formula(content: Content, margin: Margin, place: int) -> str:
+    """Return a margin's formula: with numbers put in for the lowest ones, as the workbook has it for the others."""
+    if not margin.derived:
+        return "typed in, not computed"
+    if place < MOST_WRITTEN:
+        return content.writer.written(margin.key).numbers
+    cell = content.report.book.cell(margin.key)
+    return f"={cell.formula}" if cell is not None else ""
 
 
 def _lapsed(page: _Page, content: Content) -> None:

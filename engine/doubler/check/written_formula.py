@@ -66,6 +66,7 @@ class Writer:
 
     def __init__(self, book: Examined) -> None:
         self.book = book
+        self._symbols: dict[Key, str] = {}
 
     def written(self, key: Key) -> Written:
         """Write a cell: its formula both ways, or for a constant its value alone."""
@@ -89,6 +90,11 @@ class Writer:
 
     def symbol(self, key: Key) -> str:
         """Return what a reader calls a cell: its name, the symbol in its label, its words, else its address."""
+        if key not in self._symbols:
+            self._symbols[key] = self._symbol(key)
+        return self._symbols[key]
+
+    def _symbol(self, key: Key) -> str:
         label = self.book.label(key)
         if label.name:
             return label.name

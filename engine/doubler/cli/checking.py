@@ -25,6 +25,10 @@ def run_check(options: argparse.Namespace) -> int:
     paths = [Path(book) for book in options.books]
     if options.json and options.json != "-":
         refuse_target(Path(options.json))
+    if options.record:
+        from doubler.check.record import refuse_shared_names
+
+        refuse_shared_names(paths, Path(options.record))
     reports = check_books(paths)
     records = []
     if options.record:
