@@ -11,7 +11,7 @@ from doubler.check.dispositions import Behind, Disposition, Earlier, Lapsed, Sig
 from doubler.check.examination import CheckReport
 from doubler.check.finding import FAMILY_OF, Finding
 from doubler.check.recognise import is_named, quantities
-from doubler.check.written_formula import Writer, Written, number_shown
+from doubler.check.written_formula import LONGEST_WORDS, Writer, Written, number_shown, under_header
 from doubler.errors import InputError
 from doubler.workbook.addresses import parse_area, split_sheet
 from doubler.workbook.evaluate import NotEvaluated
@@ -227,8 +227,13 @@ def margin_label(book: Examined, key: Key) -> str:
     """Return what a margin is a margin of: its row's words, and its column's where it stands in a table."""
     label = book.label(key)
     row = " ".join(label.left)
-    column = label.above[-1] if label.above and row else ""
-    if column and any(is_named(column, quantity) for quantity in ("margin of safety", "reserve factor")):
-        column = ""
-    words = " · ".join(text for text in (row, column) if text) or label.text
-    return words or cell_name_of(key)
+    if not row:
+        return label.text or cell_name_of(key)
+    told = [text for text in label.above if len(text) <= LONGEST_WORDS and under_header(book, key)]
+    column = told[0] if told and not any(map(_says_margin, told)) else ""
+    return f"{row} · {column}" if column else row
+
+
+def _says_margin(words: str) -> bool:
+    """Return whether a header says no more than that its column holds margins."""
+    return any(is_named(words, quantity) for quantity in ("margin of safety", "reserve factor"))

@@ -104,7 +104,7 @@ class Writer:
         words = _BRACKET.sub("", " ".join(label.left)).strip()
         if label.above and (not words or len(label.left) == 1):
             header = next((text for text in label.above if not self._is_unit(key, text)), "")
-            if header and len(header) <= LONGEST_WORDS and _under_header(self.book, key):
+            if header and len(header) <= LONGEST_WORDS and under_header(self.book, key):
                 return _symbol_in(header) or _quoted(_BRACKET.sub("", header).strip()) or cell_name(*key[1])
         return _quoted(words) or cell_name(*key[1])
 
@@ -191,7 +191,7 @@ class _References:
         return Read(self.book.workbook.sheets[places[0][0]].name, places[0][1]) if len(places) == 1 else None
 
 
-def _under_header(book: Examined, key: Key) -> bool:
+def under_header(book: Examined, key: Key) -> bool:
     """Return whether a cell stands in a table, where the header tells it apart and the row's label does not."""
     row, column = key[1]
     neighbours = ((row, column - 1), (row, column + 1))
