@@ -4,6 +4,7 @@ import os
 import shutil
 
 import pytest
+from hypothesis import settings
 
 
 def pytest_collection_modifyitems(items: list[pytest.Item]) -> None:
@@ -23,3 +24,8 @@ def _real_programs(request: pytest.FixtureRequest) -> None:
             if os.environ.get("CI"):
                 pytest.fail(f"{message}; CI must install it")
             pytest.skip(message)
+
+
+# Machines differ in speed, so no example has a deadline; in CI the examples are the same in every run.
+settings.register_profile("doubler", deadline=None, derandomize=bool(os.environ.get("CI")))
+settings.load_profile("doubler")

@@ -27,7 +27,9 @@ def _radius(sigma_x: Any, sigma_y: Any, tau_xy: Any) -> Any:
 
 def _direction(sigma_x: Any, sigma_y: Any, tau_xy: Any) -> Any:
     # Adding 0.0 turns -0.0 into 0.0, so that a state without shear gives +90° and not −90°.
-    return 0.5 * np.arctan2(2.0 * tau_xy + 0.0, sigma_x - sigma_y)
+    angle = 0.5 * np.arctan2(2.0 * tau_xy + 0.0, sigma_x - sigma_y)
+    # A shear below zero and too small to turn the axes would give -90 degrees for the direction of +90.
+    return np.where(angle <= -0.5 * np.pi, 0.5 * np.pi, angle)
 
 
 @worksheet_function("STRESS_PRINCIPAL_MAX")

@@ -24,7 +24,9 @@ def radius(strain_x: Any, strain_y: Any, shear_strain: Any) -> Any:
 def direction(strain_x: Any, strain_y: Any, shear_strain: Any) -> Any:
     """Return the angle from x to the larger principal strain, above −90° and at most 90°."""
     # Adding 0.0 turns -0.0 into 0.0, so that a state without shear gives +90° and not −90°.
-    return 0.5 * np.arctan2(shear_strain + 0.0, strain_x - strain_y)
+    angle = 0.5 * np.arctan2(shear_strain + 0.0, strain_x - strain_y)
+    # A shear below zero and too small to turn the axes would give -90 degrees for the direction of +90.
+    return np.where(angle <= -0.5 * np.pi, 0.5 * np.pi, angle)
 
 
 @worksheet_function("STRAIN_ROTATED_NORMAL")
