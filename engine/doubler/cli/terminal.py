@@ -24,7 +24,11 @@ def console() -> Console:
 
     terminal = sys.stdout.isatty()
     width = shutil.get_terminal_size().columns if terminal or "COLUMNS" in os.environ else 160
-    return Console(width=width, highlight=False, soft_wrap=False, emoji=False, markup=False)
+    plain = not terminal or bool(os.environ.get("NO_COLOR"))
+    colours = None if plain else "auto"
+    return Console(
+        width=width, highlight=False, soft_wrap=False, emoji=False, markup=False, color_system=colours, no_color=plain
+    )
 
 
 def envelope_table(lines: Sequence[EnvelopeLine]) -> None:
