@@ -25,9 +25,14 @@ def console() -> Console:
     terminal = sys.stdout.isatty()
     width = shutil.get_terminal_size().columns if terminal or "COLUMNS" in os.environ else 160
     plain = not terminal or bool(os.environ.get("NO_COLOR"))
-    colours = None if plain else "auto"
     return Console(
-        width=width, highlight=False, soft_wrap=False, emoji=False, markup=False, color_system=colours, no_color=plain
+        width=width,
+        highlight=False,
+        soft_wrap=False,
+        emoji=False,
+        markup=False,
+        color_system=None if plain else "auto",
+        no_color=plain,
     )
 
 
