@@ -8,6 +8,7 @@ import pytest
 from check.record_books import DATE, colleague, recorded, small_book
 from doubler.check.examination import check
 from doubler.check.record import record_paths, refuse_shared_names, write_record
+from doubler.demo_data import templates_folder
 from doubler.errors import InputError
 
 
@@ -76,3 +77,9 @@ def test_two_workbooks_whose_records_share_a_name_are_refused(tmp_path: Path) ->
 
 def test_a_workbook_with_macros_keeps_its_suffix() -> None:
     assert record_paths(Path("lug.xlsm"), Path("out")).workbook == Path("out/lug.checked.xlsm")
+
+
+def test_every_margin_of_the_strap_template_is_re_derived(tmp_path: Path) -> None:
+    record = recorded(templates_folder() / "tension_strap.xlsx", tmp_path)
+    found = json.loads(record.json.read_text(encoding="utf-8"))
+    assert {one["cell"] for one in found["margins"]} == {f"Strap!C{row}" for row in range(40, 49)}

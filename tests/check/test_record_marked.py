@@ -7,6 +7,7 @@ from pathlib import Path
 
 import openpyxl
 import pytest
+import xlsxwriter
 from lxml import etree
 
 from check.record_books import colleague, parts, recorded, small_book
@@ -115,3 +116,50 @@ def test_the_spreadsheet_program_opens_the_copy_with_all_its_sheets(tmp_path: Pa
     assert again.sheetnames == ["Data", "Bracket", "Cases", "Check record"]
     assert "unit-scale" in again["Bracket"]["B9"].comment.text
     assert again["Bracket"]["B9"].value == "=B7*1000/B4"
+
+
+def test_a_workbook_of_another_writer_keeps_chart_comments_and_styles(tmp_path: Path) -> None:
+    path = tmp_path / "lug.xlsx"
+    with xlsxwriter.Workbook(path) as book:
+        page = book.add_worksheet("Lug")
+        dark = book.add_format({"bg_color": "#102030", "font_color": "#FFFFFF", "num_format": "0.000"})
+        for number, (label, value) in enumerate((("Load F [kN]", 12), ("Area A [mm²]", 80)), start=1):
+            page.write(number, 0, label)
+            page.write(number, 1, value)
+        page.write(3, 0, "Stress σ [MPa]")
+        page.write_formula(3, 1, "=B2/B3", dark, 0.15)
+        page.write_comment("A2", "limit load")
+        chart = book.add_chart({"type": "column"})
+        chart.add_series({"values": "=Lug!$B$2:$B$3"})
+        page.insert_chart("E2", chart)
+    record = recorded(path, tmp_path / "out")
+    before, after = parts(path), parts(record.workbook)
+    for name in before:
+        if "chart" in name or name.startswith("xl/drawings/drawing"):
+            assert after[name] == before[name], name
+    marked = openpyxl.load_workbook(record.workbook)["Lug"]
+    assert marked["A2"].comment.text.endswith("limit load")
+    assert "1000 times" in marked["B4"].comment.text
+    assert marked["B4"].number_format == "0.000"
+    assert marked["B4"].font.color.rgb == "FF1C2A30"  # our pale fill under white digits would hide them
+    order = [etree.QName(one).localname for one in etree.fromstring(after["xl/worksheets/sheet1.xml"])]
+    assert order.index("drawing") < order.index("legacyDrawing")
+
+
+def test_a_workbook_without_a_stylesheet_gets_one(tmp_path: Path) -> None:
+    full = small_book(tmp_path / "full.xlsx")
+    bare = tmp_path / "bare.xlsx"
+    with zipfile.ZipFile(bare, "w") as package:
+        for name, content in parts(full).items():
+            text = content
+            if name in ("[Content_Types].xml", "xl/_rels/workbook.xml.rels"):
+                root = etree.fromstring(content)
+                for one in [one for one in root if "styles" in str(one.attrib)]:
+                    root.remove(one)
+                text = etree.tostring(root)
+            if name != "xl/styles.xml":
+                package.writestr(name, text)
+    record = recorded(bare, tmp_path / "out")
+    page = openpyxl.load_workbook(record.workbook)["Lug"]
+    assert page["B3"].border.left.style == "medium"
+    assert page["B1"].border.left.style is None

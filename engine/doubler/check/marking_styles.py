@@ -25,7 +25,8 @@ _SMALLEST = (
     '<fills count="2"><fill><patternFill patternType="none"/></fill><fill><patternFill patternType="gray125"/></fill>'
     '</fills><borders count="1"><border><left/><right/><top/><bottom/><diagonal/></border></borders>'
     '<cellStyleXfs count="1"><xf numFmtId="0" fontId="0" fillId="0" borderId="0"/></cellStyleXfs>'
-    '<cellXfs count="1"><xf numFmtId="0" fontId="0" fillId="0" borderId="0" xfId="0"/></cellXfs></styleSheet>'
+    '<cellXfs count="1"><xf numFmtId="0" fontId="0" fillId="0" borderId="0" xfId="0"/></cellXfs>'
+    '<cellStyles count="1"><cellStyle name="Normal" xfId="0" builtinId="0"/></cellStyles></styleSheet>'
 )
 _BEFORE = {
     "fonts": ("numFmts",),
@@ -49,7 +50,8 @@ class MarkingStyles:
 
         part = next(iter(edit.package.related(edit.workbook_part, "styles")), None)
         if part is None or not edit.package.has(part):
-            part = edit.free_name("xl/styles{}.xml")
+            # Some readers look under this name and no other.
+            part = "xl/styles.xml" if not edit.has("xl/styles.xml") else edit.free_name("xl/styles{}.xml")
             space = STRICT if edit.strict else MAIN
             edit.add(part, etree.fromstring(_SMALLEST.format(space=space)), _STYLES_TYPE)
             edit.relate(edit.workbook_part, "styles", part)
