@@ -125,3 +125,13 @@ def test_a_missing_argument_is_named() -> None:
 @pytest.mark.parametrize("bad", [math.nan, math.inf])
 def test_numbers_that_are_not_finite_give_no_result(bad: float) -> None:
     assert axial(bad, 150.0, "N-mm").grid == [[ErrorValue.NUM]]
+
+
+@pytest.mark.parametrize("word", ["n/a", "-", "TBD", "#N/A", "fails", "?"])
+def test_a_word_for_a_missing_value_is_no_heading_that_drops_out(word: str) -> None:
+    """A margin that could not be computed must not drop out of an envelope because it stands first."""
+    from doubler.workbook.evaluate import evaluate_formula
+
+    found = evaluate_formula(f'=MARGIN_ENVELOPE({{"{word}";0.2;0.3}})')
+    assert found.grid == [[ErrorValue.VALUE]]
+    assert "may stand for a missing value" in found.reasons[0]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from itertools import chain
 from typing import Any
@@ -36,6 +37,12 @@ from doubler.units import (
     split_heading,
 )
 
+_MISSING = re.compile(
+    r"n\.?\s*/?\s*a\.?|nan|none|null|nil|no|tb[cd]|to be "
+    r"(?:confirmed|determined)|missing|blank|fail(?:s|ed)?|err(?:or)?|"
+    r"inf(?:inite|inity)?|∞|high|large|ok|[-–—?.xX*]+|#.*|>.*|<.*|",
+    re.IGNORECASE,
+)
 _LARGE = 16
 """Rows from which on a range is looked at as a whole before it is looked at cell by cell."""
 
@@ -100,7 +107,17 @@ def bind_range(argument: Argument, cells: list[list[Any]], chosen: ConsistentSet
 
 
 def _is_heading(text: str) -> bool:
+    """Return whether a range's first text is its heading and not the first of its values.
+
+    A word that stands for a missing value is none: taken for a heading, a margin that could not be computed would
+    drop out of an envelope.
+    """
     stripped = text.strip()
+    if _MISSING.fullmatch(stripped):
+        raise ArgumentError(
+            f"entry 1 is {text!r}, which may stand for a missing value; write a number, or a heading with its unit in "
+            "brackets such as 'Margin [-]'"
+        )
     return not (stripped[:1].isdigit() or (stripped[:1] in "+-.−" and stripped[1:2].isdigit()))
 
 
