@@ -177,7 +177,10 @@ def build(book: Written, target: Path, fault: Fault | None = None) -> Path:
             cell.value = _value(text)
             if text.startswith("'"):
                 cell.data_type = "s"
-    for sheet, line in [*book.lines, *((book.place(fault.at)[0], line) for line in (fault.lines if fault else ()))]:
+    for sheet, line in [
+        *book.lines,
+        *((book.place(fault.at.split("|")[0])[0], line) for line in (fault.lines if fault else ())),
+    ]:
         _direct(book, made, sheet, line)
     raw = target.with_name(f"raw_{target.name}")
     made.save(raw)

@@ -7,7 +7,7 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from doubler.check import coverage, elastic, margins, structure, units, values
+from doubler.check import coverage, elastic, margins, shear_form, strength, structure, units, values
 from doubler.check.finding import FAMILY_OF, SEVERITIES, Finding, rank
 from doubler.check.short_range import short_ranges
 from doubler.workbook.evaluate import NotEvaluated
@@ -29,6 +29,8 @@ RULES: tuple[Rule, ...] = (
     structure.unused_inputs,
     elastic.poisson_ranges,
     elastic.modulus_mismatches,
+    strength.margin_findings,
+    shear_form.shear_findings,
     margins.negative_margins,
     coverage.not_recalculated,
     coverage.not_traced,

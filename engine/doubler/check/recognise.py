@@ -52,14 +52,11 @@ def quantity_of(words: str) -> str | None:
     >>> quantity_of("Shear modulus G [MPa]"), quantity_of("ν"), quantity_of("Edge distance E")
     ('shear modulus', "poisson's ratio", "young's modulus")
     """
-    if _OTHER_MODULUS.search(words):
-        return None
-    for name, pattern in _WORDS.items():
-        if pattern.search(words):
-            return name
-    for name, pattern in _SYMBOLS.items():
-        if pattern.search(words):
-            return name
+    other = bool(_OTHER_MODULUS.search(words))
+    for patterns in (_WORDS, _SYMBOLS):
+        for name, pattern in patterns.items():
+            if not (other and _KINDS[name] == "stress") and pattern.search(words):
+                return name
     return None
 
 

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 
 from doubler.check.fills import Fills, value_with, walk
 from doubler.check.finding import Finding
+from doubler.check.recognise import quantity_at
 from doubler.workbook.addresses import area_name, cell_name
 from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 from doubler.workbook.geometry import OutsideError
@@ -137,16 +138,22 @@ def _missed(
         cell = line.sheet.cells.get(address)
         if cell is None or (cell.formula is None) != (own.formula is None):
             break
-        if cell.formula is not None and trees.get(address) is not trees.get(inside):
-            break
-        if not _same_words(book, name, inside, address, down=line.down):
-            break
+        if not (_margin(book, (name, inside)) and _margin(book, (name, address))):
+            if cell.formula is not None and trees.get(address) is not trees.get(inside):
+                break
+            if not _same_words(book, name, inside, address, down=line.down):
+                break
         if _another_block(line, address, covered):
             return []
         missed.append(address)
     if any(line.key == (name, address) for address in missed):
         return []
     return missed
+
+
+def _margin(book: Examined, key: Key) -> bool:
+    """Return whether a cell is a margin of safety: an envelope means all that stand together, whatever their mode."""
+    return quantity_at(book, key) == "margin of safety"
 
 
 def _same_words(book: Examined, sheet: str, inside: Address, beyond: Address, *, down: bool) -> bool:

@@ -42,6 +42,8 @@ def bracket_unit(text: str) -> tuple[Unit | None, str, str]:
         read = read_unit_text(comma[1])
         if read.unit is not None and comma[1] != "1" and _fits(read, text[: comma.start()], square=False):
             return read.unit, comma[1], ""
+        if read.complaint and not complaint:
+            complaint, wrong = read.complaint, comma[1]
     return None, wrong, complaint
 
 
@@ -66,7 +68,7 @@ def loose_unit(text: str) -> Unit | None:
         if match is None or len(text) > 60:
             continue
         read = read_unit_text(match["unit"])
-        if read.unit is None or match["unit"].casefold() in ("ratio", "-", "1", "–", "%"):
+        if read.unit is None or match["unit"].casefold() in ("ratio", "strain", "-", "1", "–", "%"):
             continue
         agrees = role_agrees(read.unit, match["label"])
         symbol = bool(_SYMBOL.match(match["label"])) and not read.doubtful

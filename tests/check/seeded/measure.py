@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 import tempfile
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -47,8 +48,8 @@ def outcome(book: Written, fault: Fault | None, folder: Path) -> Outcome:
 
 def stands_at(book: Written, fault: Fault, finding: Finding) -> bool:
     """Return whether a finding stands at the fault's cell, or at the line of like formulas that begins there."""
-    sheet, address = book.address(fault.at)
-    return finding.sheet == sheet and finding.cell.partition(":")[0] == address
+    places = [book.address(at) for at in fault.at.split("|")]
+    return (finding.sheet, re.split("[:,]", finding.cell)[0]) in places
 
 
 def measured(folder: Path | None = None) -> tuple[list[Outcome], list[Outcome], list[Outcome]]:
@@ -93,8 +94,8 @@ def table(seeded: list[Outcome], clean: list[Outcome], others: list[Outcome]) ->
                 f"({1000 * all_strays / max(1, all_formulas):.2f} a thousand)."
             ),
             (
-                f"- Of the clean calculations' formulas {100 * traced:.1f} % were traced and {100 * recalculated:.1f} % "
-                "recalculated."
+                f"- Of the clean calculations' formulas {100 * traced:.1f} % were traced and "
+                f"{100 * recalculated:.1f} % recalculated."
             ),
         ]
     )

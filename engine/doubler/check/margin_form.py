@@ -1,0 +1,76 @@
+"""Findings about a margin's form: a reserve factor called a margin of safety, a margin upside down."""
+
+from __future__ import annotations
+
+import re
+from collections.abc import Iterator
+
+from doubler.check.finding import Finding
+from doubler.check.margin_anatomy import (
+    COMPLEMENT,
+    INVERTED,
+    LACKS_ONE,
+    PROPER,
+    UNKNOWN,
+    UTILISATION,
+    Anatomy,
+    Margins,
+)
+from doubler.check.roles import MARGIN
+from doubler.workbook.addresses import cell_name
+from doubler.workbook.examined import cell_name_of, shown
+
+_MINUS_ONE = re.compile(r"^(.*\S)\s*-\s*1(?:\.0*)?\s*$", re.DOTALL)
+_SAYS = {
+    LACKS_ONE: "it is allowable over load, a reserve factor: the -1 is missing",
+    INVERTED: "it is load over allowable: the ratio is upside down",
+    UTILISATION: "it is load over allowable, a utilisation",
+    COMPLEMENT: "it is 1 minus load over allowable, which is no margin of safety and smaller than it",
+    PROPER: "it is allowable over load minus 1, a margin of safety",
+}
+
+
+def margin_forms(margins: Margins) -> Iterator[Finding]:
+    """Find cells whose label and form do not go together."""
+    for margin in margins.margins:
+        due = PROPER if margin.role.part == MARGIN else LACKS_ONE
+        if margin.form in (UNKNOWN, due):
+            continue
+        yield _finding(margins, margin, due)
+
+
+def _finding(margins: Margins, margin: Anatomy, due: str) -> Finding:
+    cell = margins.book.cell(margin.key)
+    formula = (cell.formula if cell is not None else None) or ""
+    mended = _mended(formula, margin.form, due)
+    reserve = margin.reserve(margin.value)
+    right = None if reserve is None else reserve - 1 if due == PROPER else reserve
+    name = "margin of safety" if due == PROPER else "reserve factor"
+    value = "" if right is None else f" ({shown(margin.value)} as written, {shown(right)} when mended)"
+    return Finding(
+        margin.key[0],
+        cell_name(*margin.key[1]),
+        "margin-form",
+        "error",
+        f"The cell is labelled a {name} and {_SAYS[margin.form]}{value}; write ={mended}.",
+        f"={formula}",
+        f"={mended}",
+        tuple(cell_name_of(key) for key in (*margin.allowables, *margin.applied)[:12]),
+    )
+
+
+def _mended(formula: str, form: str, due: str) -> str:
+    """Return the formula that gives what the label says."""
+    less = _MINUS_ONE.match(formula)
+    inside = less[1] if less else formula
+    if due == PROPER:
+        if form == LACKS_ONE:
+            return f"{formula}-1"
+        if form == INVERTED:
+            return f"1/({inside})-1" if less else f"1/({formula}+1)-1"
+        return f"1/({formula})-1" if form == UTILISATION else f"1/(1-({formula}))-1"
+    if form == PROPER:
+        return inside if less else f"{formula}+1"
+    if form == UTILISATION:
+        return f"1/({formula})"
+    return f"1/({formula}+1)" if form == INVERTED else f"1/(1-({formula}))"

@@ -1,0 +1,56 @@
+"""What cells would give if others held something else: many questions, one evaluation."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+
+import numpy as np
+
+from doubler.workbook.evaluate import evaluate
+from doubler.workbook.examined import Examined, Key
+
+MOST = 2048
+"""Questions asked in one evaluation."""
+
+
+class Trials:
+    """Questions about a workbook, collected and then answered together.
+
+    In every question all cells that any question changes are held at what they give today, except those that the
+    question itself changes. So questions that change formula cells and questions that change what these read do not
+    belong into one collection.
+    """
+
+    def __init__(self, book: Examined) -> None:
+        self.book = book
+        self._changes: list[Mapping[Key, float]] = []
+        self._wanted: list[Key] = []
+        self.answers: list[float | None] = []
+
+    def ask(self, changes: Mapping[Key, float], wanted: Key) -> int:
+        """Ask what a cell gives when others hold these numbers; return the question's number."""
+        self._changes.append(changes)
+        self._wanted.append(wanted)
+        return len(self._changes) - 1
+
+    def run(self) -> None:
+        """Answer all questions; a question without a number for its answer gets None."""
+        self.answers = []
+        for start in range(0, len(self._changes), MOST):
+            self._run(self._changes[start : start + MOST], self._wanted[start : start + MOST])
+
+    def _run(self, changes: list[Mapping[Key, float]], wanted: list[Key]) -> None:
+        count = len(changes)
+        inputs: dict[Key, np.ndarray[tuple[int], np.dtype[np.float64]]] = {}
+        for at, changed in enumerate(changes):
+            for key, number in changed.items():
+                if key not in inputs:
+                    inputs[key] = np.full(count, self.book.number(key) or 0.0)
+                inputs[key][at] = number
+        values = evaluate(self.book.graph, inputs, dict.fromkeys(wanted))
+        for at, key in enumerate(wanted):
+            value: object = values.value(*key)
+            if isinstance(value, np.ndarray):
+                value = value[at]
+            known = isinstance(value, int | float) and not isinstance(value, bool) and np.isfinite(value)
+            self.answers.append(float(value) if known and isinstance(value, int | float) else None)
