@@ -16,6 +16,7 @@ from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 from doubler.workbook.geometry import OutsideError
 from doubler.workbook.graph import Group
 from doubler.workbook.model import Address
+from doubler.workbook.program import REASON
 from doubler.workbook.syntax import Call, CellRef, Node
 
 RELATIVE = 1e-9
@@ -34,7 +35,11 @@ def stale_values(book: Examined) -> Iterator[Finding]:
             continue
         if cell.value is None and value not in (None, ""):
             empty.append(key)
-        elif not _same(cell.value, value) and not _cancelled(book, key, cell.value, value):
+        elif (
+            not _same(cell.value, value)
+            and not _cancelled(book, key, cell.value, value)
+            and not _both_reasons(book, key, cell.value, value)
+        ):
             stale[key] = value
     if empty:
         yield _never_stored(book, empty)
@@ -84,6 +89,14 @@ def _same(stored: Any, value: Any) -> bool:
     if value is None and stored == 0.0:
         return True
     return bool(stored == value)
+
+
+def _both_reasons(book: Examined, key: Key, stored: Any, value: Any) -> bool:
+    """Return whether both are words of UNIT_REASON: each program and version words a reason in its own way."""
+    tree = book.tree(key)
+    if not isinstance(tree, Call) or tree.name != REASON:
+        return False
+    return isinstance(stored, str) and isinstance(value, str) and bool(stored) and bool(value)
 
 
 def _cancelled(book: Examined, key: Key, stored: Any, value: Any) -> bool:

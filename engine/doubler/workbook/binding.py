@@ -33,12 +33,15 @@ class Store:
         Tells one block of cases from the next.
     run
         Tells one evaluation from the next.
+    refusals
+        Of each group in which one of our functions gave an error value: in which lanes, and why.
     """
 
-    __slots__ = ("epoch", "run", "values")
+    __slots__ = ("epoch", "refusals", "run", "values")
 
     def __init__(self, size: int) -> None:
         self.values: list[Any] = [None] * size
+        self.refusals: dict[int, list[tuple[Any, str]]] = {}
         self.epoch = 0
         self.run = 0
 
@@ -95,6 +98,8 @@ class Binder:
                 return self._place(slot, run)
             if slot.way == "spill":
                 return self._spill(slot, run)
+            if slot.way == "reason":
+                return self._reason(slot, run)
             if slot.way == "meet":
                 return self._meet(slot, run)
             if slot.way == "cell":
@@ -103,6 +108,12 @@ class Binder:
             return self._grid(slot, run)
         except OutsideError:
             return constant(ErrorValue.REF)
+
+    def _reason(self, slot: Slot, run: Run) -> Reader:
+        """Read why a cell shows an error value: the refusals of its group, and which copy it is."""
+        sheet, area = self.geometry.places(slot.node, run)[0]
+        node, copy = self.occupancy[sheet].at(area.first_row, area.first_column) or (-1, 0)
+        return lambda store: (store.refusals.get(node, ()), copy)
 
     def _cell_reference(self, node: CellRef, run: Run) -> Reader:
         sheet, area = self.geometry.places(node, run)[0]

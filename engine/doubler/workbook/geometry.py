@@ -123,7 +123,7 @@ class Geometry:
         if run.count == 1:
             return False
         try:
-            if slot.way == "spill":
+            if slot.way in ("spill", "reason"):
                 return True
             if slot.way == "meet":
                 ends = self.met(slot.node, run), self.met(slot.node, run, run.count - 1)

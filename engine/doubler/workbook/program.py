@@ -34,6 +34,7 @@ from doubler.workbook.syntax import (
     Unary,
 )
 
+REASON = "UNIT_REASON"
 REFERENCE_OPERATORS = {":", ",", " "}
 CHOOSES_A_REFERENCE = {"IF", "IFS", "CHOOSE", "SWITCH"}
 """Functions that give one of their arguments as it is, a range as a range."""
@@ -94,7 +95,8 @@ class Slot:
         The reference.
     way
         ``cell`` one cell; ``meet`` where a range meets the own row or column; ``grid`` all of it; ``place``
-        where it lies; ``spill`` the whole result of the array formula in that cell.
+        where it lies; ``spill`` the whole result of the array formula in that cell;
+        ``reason`` why the cell shows an error value.
     """
 
     node: Node
@@ -274,6 +276,8 @@ class Compiler:
             return self._let(node, array)
         if node.name == "LAMBDA":
             return self._lambda(node, array)
+        if node.name == REASON and len(node.arguments) == 1 and isinstance(node.arguments[0], CellRef | RangeRef):
+            return self._reason(node.arguments[0])
         function = NATIVES.get(node.name)
         if function is None:
             return self._ours(node, array)
@@ -359,6 +363,17 @@ class Compiler:
             return called(frame, *[argument(frame) for argument in arguments])
 
         return run
+
+    def _reason(self, node: CellRef | RangeRef) -> Step:
+        """Return the step that says why a cell shows an error value; of a range the first cell is meant."""
+        from doubler.workbook.natives.reasons import reason_of_cell
+
+        if isinstance(node, RangeRef):
+            if node.first_row is None or node.first_column is None:
+                raise CannotEvaluateError(f"{REASON} wants one cell")
+            node = CellRef(node.sheet, node.first_row, node.first_column)
+        value, told = self.slot(node, "cell"), self.slot(node, "reason")
+        return lambda frame: reason_of_cell(value(frame), *told(frame))
 
     def _ours(self, node: Call, array: bool) -> Step:
         from doubler.workbook.natives.ours import find

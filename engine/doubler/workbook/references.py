@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import re
 
+from doubler.catalogue.record import CATEGORIES
 from doubler.workbook.model import Address
 from doubler.workbook.syntax import Axis, CellRef, ExternalRef, NameRef, Node, RangeRef, TableRef
 
@@ -13,7 +14,15 @@ LAST_COLUMN = 16_384
 _CELL = re.compile(r"(\$?)([A-Za-z]{1,3})(\$?)([0-9]{1,7})\Z")
 _COLUMN = re.compile(r"(\$?)([A-Za-z]{1,3})\Z")
 _ROW = re.compile(r"(\$?)([0-9]{1,7})\Z")
-_STORAGE_PREFIX = re.compile(r"^(?:_xlfn\.|_xlws\.|_xlpm\.|_xludf\.)+", re.IGNORECASE)
+_STORAGE_PREFIX = re.compile(
+    r"^(?:_xlfn\.|_xlws\.|_xlpm\.|_xludf\.|_xll\.|doubler\.functions\.)+"
+    rf"|^(?:\[\d+\]|'[^']+'|[\w.-]+)!(?=(?:{'|'.join(CATEGORIES)})_)",
+    re.IGNORECASE,
+)
+"""Prefixes under which files store newer functions, and those of our add-ins.
+
+LibreOffice saves ``DOUBLER.FUNCTIONS.NAME``, Excel the add-in's file: ``[1]!NAME`` or ``'C:\\…\\file.xlam'!NAME``.
+"""
 
 
 def column_number(letters: str) -> int:
@@ -39,7 +48,7 @@ def address_text(address: Address) -> str:
 
 
 def without_prefix(name: str) -> str:
-    """Return a function's or variable's name without the prefix under which files store the newer ones."""
+    """Return a function's or variable's name without the prefix under which files store the newer ones and add-ins'."""
     return _STORAGE_PREFIX.sub("", name)
 
 

@@ -177,6 +177,7 @@ class CaseRun:
         store = self.plan.store
         store.epoch += 1
         store.run += 1
+        store.refusals = self.refusals
         for node, value in self.inputs.items():
             store.values[node] = value
         order = [node for node in self.graph.order if node < groups and node in self.needed]

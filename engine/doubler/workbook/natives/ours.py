@@ -210,7 +210,10 @@ def _laid_out(
     for failure in outcome.failures:
         mask = np.broadcast_to(failure.lanes, head).reshape(length, count)
         lost.append((mask, failure.value))
-        why.append((mask.any(axis=0), f"{function.name}: {failure.reason}"))
+        lanes = mask.any(axis=0)
+        # The reason names the first offending value, which is another lane's for all but one.
+        told = failure.rule if failure.rule and lanes.sum() > 1 else failure.reason
+        why.append((lanes, f"{function.name}: {told}"))
     blanks = {}
     for item in bound:
         for index, value, reason in item.blanks:
