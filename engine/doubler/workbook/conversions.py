@@ -187,17 +187,21 @@ _SIMPLE_ROOTS = (
 )
 
 
+_LARGE_COEFFICIENTS = {105.0, 120.0, 128.0, 144.0, 162.0, 180.0, 185.0, 192.0, 256.0, 360.0, 384.0, 768.0, 1000.0}
+
+
 @lru_cache(maxsize=4096)
 def is_simple_coefficient(value: float, text: str = "") -> bool:
     """Return whether a literal is of the kind that formulas carry as pure numbers.
 
-    Whole numbers up to 1000, decimals of at most two places below 5, eighths below 10, and π, √2, √3 and their inverses
-    as far as they are typed.
+    Whole numbers up to 100 and the larger ones of beam, plate and angle formulas, decimals of at most two places below
+    5, eighths below 10, and π, √2, √3 and their inverses as far as they are typed. A whole number such as 500 is rather
+    a length or a load that was typed in.
     """
     size = abs(value)
     if size == 0.0:
         return True
-    if size == round(size) and size <= 1000.0:
+    if size == round(size) and (size <= 100.0 or size in _LARGE_COEFFICIENTS):
         return True
     if 0.1 <= size < 5.0 and round(size, 2) == size:
         return True

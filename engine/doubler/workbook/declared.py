@@ -11,7 +11,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass, field
 
-from doubler.units import parse_unit
+from doubler.units import Unit, parse_unit
 from doubler.workbook.carried import Key
 from doubler.workbook.declared_places import (
     Declared,
@@ -24,6 +24,7 @@ from doubler.workbook.declared_places import (
 from doubler.workbook.label_units import bracket_unit, is_bare_name, loose_unit, sheet_note_unit
 from doubler.workbook.labels import Label, Labels, Layout
 from doubler.workbook.model import Address, Workbook
+from doubler.workbook.pounds import pounds_force
 from doubler.workbook.roles import is_difference, is_pure_number, is_total
 from doubler.workbook.unit_cells import UnitCells
 from doubler.workbook.unit_text import (
@@ -50,6 +51,7 @@ class Declarations:
     _unreadable: dict[Key, Unreadable] = field(default_factory=dict)
     _disagreements: dict[Key, Disagreement] = field(default_factory=dict)
     _columns: dict[tuple[str, int, int, int, bool], Declared | None] = field(default_factory=dict)
+    _pounds: dict[Key, tuple[str, Address, str, Unit]] = field(default_factory=dict)
     _complete: bool = False
 
     def label(self, sheet: str, address: Address) -> Label:
@@ -79,6 +81,12 @@ class Declarations:
         """Cells for which two places declare unlike units."""
         self._ask_all()
         return list(self._disagreements.values())
+
+    @property
+    def pounds(self) -> dict[Key, tuple[str, Address, str, Unit]]:
+        """Places that write a force in pounds of mass: first cell, the text there, and the unit that it is read as."""
+        self._ask_all()
+        return dict(self._pounds)
 
     def head(self, sheet: str, address: Address) -> Key:
         """Return the cell that stands for a column: its header where there is one, else the cell itself."""
@@ -142,6 +150,10 @@ class Declarations:
         if unit.dimension == _temperature():
             words = found.words if found.words is not None else self.label(sheet, address).words
             absolute = not is_difference(words)
+        force = pounds_force(unit, found.words if found.words is not None else self.label(sheet, address).words)
+        if force is not None:
+            unit = force
+            self._pounds.setdefault(found.at, (sheet, address, found.text, force))
         if unit.text == "%" and self._percent(layout, address):
             unit = parse_unit("1")
         key = (found.at, found.place, absolute, unit is found.unit)

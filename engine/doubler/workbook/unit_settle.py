@@ -200,6 +200,16 @@ def _texts(tracing: Tracing) -> list[UnitFinding]:
         message = f"{cell_text(item.at)} stands where a unit does and can't be read as one: {item.complaint}"
         beside = ((item.sheet, item.address),)
         found.append(UnitFinding(*item.at, "unit-text", "error", message, None, item.text, "", beside))
+    by_sheet: dict[str, list[tuple[Key, str, str]]] = {}
+    for at, (sheet, address, text, unit) in tracing.declarations.pounds.items():
+        by_sheet.setdefault(sheet, []).append((at if at[0] == sheet else (sheet, address), text, unit.text))
+    for places_of_sheet in by_sheet.values():
+        at, text, meant = places_of_sheet[0]
+        others = tuple(place for place, _, _ in places_of_sheet[1:])
+        text = text.strip("()[] ")
+        more = f", as in {len(others)} other {'place' if len(others) == 1 else 'places'}" if others else ""
+        message = f"{text} is a unit of mass where a force is due; it is read as {meant}{more}: write lbf for a force"
+        found.append(UnitFinding(*at, "unit-text", "note", message, None, text, meant, others))
     seen: set[tuple[Key, ...]] = set()
     for pair in tracing.declarations.disagreements:
         places = (*pair.first.cells, *pair.second.cells)
