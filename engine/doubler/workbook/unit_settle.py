@@ -204,6 +204,7 @@ def _texts(tracing: Tracing) -> list[UnitFinding]:
     for at, (sheet, address, text, unit) in tracing.declarations.pounds.items():
         by_sheet.setdefault(sheet, []).append((at if at[0] == sheet else (sheet, address), text, unit.text))
     for places_of_sheet in by_sheet.values():
+        places_of_sheet.sort()
         at, text, meant = places_of_sheet[0]
         others = tuple(place for place, _, _ in places_of_sheet[1:])
         text = text.strip("()[] ")
