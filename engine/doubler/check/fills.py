@@ -56,6 +56,7 @@ class Fills:
     def __init__(self, book: Examined) -> None:
         self.book = book
         self.trees: dict[str, dict[Address, Node]] = {sheet.name: {} for sheet in book.workbook.sheets}
+        self._crossing: dict[tuple[str, bool], dict[int, list[Address]]] = {}
         known: dict[Node, Node] = {}
         for group in book.graph.groups:
             if group.tree is None:
@@ -109,7 +110,7 @@ class Fills:
             if following is not None and trees[following[0]] is trees[run[0]]:
                 yield Gap(sheet.name, tuple(gap), tuple(reversed(run)), tuple(following), down)
                 return
-        if gap and len(run) >= 3:
+        if gap and len(run) >= 2:
             yield Gap(sheet.name, tuple(gap[:1]), tuple(reversed(run)), (), down)
 
     @staticmethod
@@ -119,15 +120,26 @@ class Fills:
         if len(run) >= 3 and cell is not None and cell.formula is None and _is_number(cell):
             yield Gap(sheet.name, (address,), (), tuple(run), down)
 
-    def same_kind_of_row(self, gap: Gap) -> bool:
-        """Return whether the rest of the gap's row (or column) is filled as that of its neighbour in the line."""
+    def _line_through(self, sheet: Sheet, address: Address, *, row: bool) -> list[Address]:
+        """Return the filled cells of the row (or column) through a cell."""
+        known = self._crossing.get((sheet.name, row))
+        if known is None:
+            known = self._crossing[sheet.name, row] = {}
+            for cell in sheet.cells:
+                known.setdefault(cell[0] if row else cell[1], []).append(cell)
+        return known.get(address[0] if row else address[1], [])
+
+    def same_kind_of_row(self, gap: Gap, formulas: int = 0) -> bool:
+        """Return whether the rest of the gap's row (or column) is filled as that of its neighbour in the line.
+
+        At least so many of it must be `formulas` alike.
+        """
         sheet = self.book.workbook.sheet(gap.sheet)
         assert sheet is not None
         trees = self.trees[gap.sheet]
         own, model = gap.cells[0], gap.model
-        across = 1 if gap.down else 0
-        others = [a for a in sheet.cells if a[1 - across] == model[1 - across] and a != model]
-        alike = 0
+        others = [a for a in self._line_through(sheet, model, row=gap.down) if a != model]
+        alike = same = 0
         for address in others:
             cell = sheet.cells[address]
             here = (own[0], address[1]) if gap.down else (address[0], own[1])
@@ -139,12 +151,12 @@ class Fills:
             if cell.formula is not None:
                 if mine.formula is None or trees.get(here) is not trees.get(address):
                     return False
-                alike += 1
+                alike, same = alike + 1, same + 1
             elif not _is_number(mine):
                 return False
             else:
                 alike += 1
-        return alike > 0
+        return alike > 0 and same >= formulas
 
     def reads_back(self, gap: Gap) -> bool:
         """Return whether the line's formula reads the cell before it in the line: the first cell is then its start."""

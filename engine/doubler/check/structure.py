@@ -45,12 +45,16 @@ def _judge(book: Examined, fills: Fills, gap: Gap, address: Address) -> Finding 
         if gap.inside:
             sure = line >= 2 and len(gap.cells) < line
         else:
-            sure = fills.same_kind_of_row(gap) and not (not gap.before and fills.reads_back(gap))
+            due = 1 if line > 2 else 2
+            sure = fills.same_kind_of_row(gap, due) and not (not gap.before and fills.reads_back(gap))
         return _pasted(book, fills, gap, address) if sure else None
     if not gap.inside:
-        if len(gap.before) < 3 or not _anchor_differs(fills, gap, address) or not fills.same_kind_of_row(gap):
+        due = 0 if line > 2 else 2
+        if not gap.before or not _anchor_differs(fills, gap, address) or not fills.same_kind_of_row(gap, due):
             return None
-    elif line < 3 or len(gap.cells) > 1 or not _stands_out(fills, gap, address):
+    elif (
+        len(gap.cells) > 1 or not _stands_out(fills, gap, address) or (line < 3 and not fills.same_kind_of_row(gap, 1))
+    ):
         return None
     return _break(book, fills, gap, address)
 

@@ -9,6 +9,7 @@ from fractions import Fraction
 from doubler.units import Dimension
 from doubler.workbook.carried import Carried, Key, Source, known
 from doubler.workbook.declared import Declarations
+from doubler.workbook.roles import is_conversion
 from doubler.workbook.unit_names import name_unit
 from doubler.workbook.unit_roots import roots
 from doubler.workbook.unit_verdicts import FOUND, Fault, Judgement, Tracing, UnitFinding, cell_text, rectangles
@@ -51,7 +52,6 @@ def settle(lanes: Lanes, declarations: Declarations, settled: dict[Key, Carried]
     settled : dict
         What is settled already.
     """
-    del declarations
     votes: dict[Key, list[_Vote]] = {}
     for judgement in distinct(lanes):
         for item in judgement.constraints:
@@ -71,9 +71,11 @@ def settle(lanes: Lanes, declarations: Declarations, settled: dict[Key, Carried]
                     result.conflicts.append(conflict)
                 continue
         scales, party = parties[0]
+        first = party[0]
+        if first.dimension.is_none and not first.angle_mark:
+            scales = _of_ratio(declarations, key, scales)
         if len(scales) != 1:
             continue
-        first = party[0]
         system = next((vote.system for vote in party if vote.system), "")
         name = name_unit(first.dimension, scales[0], system) or first.dimension.name
         if first.dimension.is_none and first.angle_mark and not math.isclose(scales[0], 1.0):
@@ -83,6 +85,27 @@ def settle(lanes: Lanes, declarations: Declarations, settled: dict[Key, Carried]
             node = Carried(node.state, node.dimension, node.readings, sources=node.sources, angle_mark=True)
         result.units[key] = node
     return result
+
+
+_RATIOS = (1.0, 0.01, 1e-6)
+"""Scales that a pure number without a unit may have: plain, percent, millionths."""
+
+
+def _of_ratio(declarations: Declarations, key: Key, scales: tuple[float, ...]) -> tuple[float, ...]:
+    """Return the scale of an input that results make a pure number.
+
+    A number that says nothing of a conversion and is not one, such as an end fixity of 1, does not turn feet into
+    inches: it is a plain number, and the formula that would need more of it is at fault.
+    """
+    for scale in _RATIOS:
+        if any(math.isclose(scale, one, rel_tol=1e-9) for one in scales):
+            return (scale,)
+    sheet = declarations.workbook.sheet(key[0])
+    cell = None if sheet is None else sheet.cells.get(key[1])
+    value = cell.value if cell is not None and isinstance(cell.value, float) else None
+    if value and any(math.isclose(abs(value), one, rel_tol=1e-3) for s in scales for one in (s, 1 / s)):
+        return scales
+    return scales if is_conversion(declarations.label(*key).words) else (1.0,)
 
 
 def _parties(said: list[_Vote]) -> list[tuple[tuple[float, ...], list[_Vote]]]:
