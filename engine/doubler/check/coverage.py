@@ -5,6 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator
 
 from doubler.check.finding import Finding
+from doubler.check.recognise import quantity_at
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined, Key, cell_name_of
@@ -26,13 +27,19 @@ def not_recalculated(book: Examined) -> Iterator[Finding]:
             first[0],
             cell_name(*first[1]),
             "not-recalculated",
-            "warning",
+            "warning" if any(_bears_on_strength(book, key) for key in keys) else "note",
             f"Not recalculated: {_sentence(reason)} Its stored value is not confirmed{_more(others)}.",
             "",
             "",
             (),
             tuple(cell_name_of(key) for key in others),
         )
+
+
+def _bears_on_strength(book: Examined, key: Key) -> bool:
+    """Return whether a cell is a quantity with a unit, or a margin: one that a result may hang on."""
+    declared = book.declarations.unit(*key)
+    return quantity_at(book, key) is not None or (declared is not None and not declared.weak)
 
 
 def not_traced(book: Examined) -> Iterator[Finding]:

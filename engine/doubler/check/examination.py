@@ -2,13 +2,14 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable, Iterator
+from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
 from doubler.check import coverage, elastic, margins, shear_form, strength, structure, units, values
-from doubler.check.finding import FAMILY_OF, SEVERITIES, Finding, rank
+from doubler.check.finding import SEVERITIES, Finding, rank
+from doubler.check.folding import folded
 from doubler.check.short_range import short_ranges
 from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined
@@ -110,26 +111,5 @@ def report_on(book: Examined, path: Path, rules: Iterable[Rule] = RULES) -> Chec
         total += 1
         recalculated += not isinstance(book.value(key), NotEvaluated)
     lost = sum(len(keys) for keys in book.tracing.not_traced().values())
-    findings = sorted(_folded(found), key=rank)
+    findings = sorted(folded(book, found), key=rank)
     return CheckReport(path, book.workbook.sha256, total, recalculated, total - lost, findings, book)
-
-
-def _folded(findings: list[Finding]) -> Iterator[Finding]:
-    """Leave out what another finding on the same cell explains."""
-    blank = {cell for f in findings if f.kind in ("blank-input", "text-number") for cell in f.cells}
-    stale = {(f.sheet, f.cell) for f in findings if f.kind == "stale-value" and f.severity == "error"}
-    pasted = {(f.sheet, f.cell.lstrip("ABCDEFGHIJKLMNOPQRSTUVWXYZ")) for f in findings if f.kind == "pasted-number"}
-    seen: set[tuple[str, str, str]] = set()
-    for finding in findings:
-        where = f"{finding.sheet}!{finding.cell}"
-        if finding.kind == "error-value" and (where in blank or (finding.sheet, finding.cell) in stale):
-            continue
-        if FAMILY_OF[finding.kind] == "units" and where in blank:
-            continue
-        row = finding.cell.lstrip("ABCDEFGHIJKLMNOPQRSTUVWXYZ")
-        if finding.kind == "unused-input" and (finding.sheet, row) in pasted:
-            continue
-        if (finding.sheet, finding.cell, finding.kind) in seen and finding.severity == "note":
-            continue
-        seen.add((finding.sheet, finding.cell, finding.kind))
-        yield finding

@@ -56,6 +56,8 @@ class Finding:
         Other cells that bear on it, with their sheets.
     follows
         Cells that are wrong because this one is: what was folded under it.
+    turns
+        Whether a margin that is positive as written is negative when this is mended: such a finding comes first.
     """
 
     sheet: str
@@ -67,6 +69,7 @@ class Finding:
     expected: str = ""
     cells: tuple[str, ...] = ()
     follows: tuple[str, ...] = field(default=())
+    turns: bool = False
 
     def __post_init__(self) -> None:
         if self.kind not in FAMILY_OF:
@@ -95,7 +98,7 @@ class Finding:
         return found
 
 
-def rank(finding: Finding) -> tuple[int, int, str, str]:
+def rank(finding: Finding) -> tuple[bool, int, int, str, str]:
     """Return a sort key: worst first, then family by family, then where it stands."""
     order = list(FAMILY_OF)
-    return SEVERITIES.index(finding.severity), order.index(finding.kind), finding.sheet, finding.cell
+    return not finding.turns, SEVERITIES.index(finding.severity), order.index(finding.kind), finding.sheet, finding.cell

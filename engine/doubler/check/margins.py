@@ -10,12 +10,17 @@ from doubler.workbook.addresses import cell_name
 from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 
 
+def margins_in(book: Examined) -> Iterator[Key]:
+    """Yield the cells that are margins of safety."""
+    return (key for key, name in quantities(book) if name == "margin of safety")
+
+
 def negative_margins(book: Examined) -> Iterator[Finding]:
     """Find margins of safety below zero; of a line of like formulas and of envelopes over it, the lowest one."""
     below: dict[Key, float] = {}
-    for key, name in quantities(book):
+    for key in margins_in(book):
         value = book.number(key)
-        if name == "margin of safety" and value is not None and value < 0:
+        if value is not None and value < 0:
             below[key] = value
     groups: dict[object, list[Key]] = {}
     for key in below:

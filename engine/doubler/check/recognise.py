@@ -9,6 +9,7 @@ from __future__ import annotations
 import re
 from collections.abc import Iterator
 from functools import lru_cache
+from weakref import WeakKeyDictionary
 
 from doubler.units import kind
 from doubler.workbook.examined import Examined, Key
@@ -34,8 +35,8 @@ _SYMBOLS = {
 }
 _KINDS = {name: unit for name, unit, _, _ in _TERMS}
 _NO_MARGIN = re.compile(
-    r"\b(?:policy|required|minimum required|target|allowable margin|page|edge margin|negative margins?|count|number of|"
-    r"cases below|governing (?:case|mode|item))\b",
+    r"\b(?:profit|gross|operating|contribution|sales|price|policy|required|minimum required|target|allowable margin|"
+    r"page|edge margin|negative margins?|count|number of|cases below|governing (?:case|mode|item))\b",
     re.IGNORECASE,
 )
 _OTHER_MODULUS = re.compile(
@@ -86,11 +87,30 @@ def quantity_at(book: Examined, key: Key) -> str | None:
         name = quantity_of(words) if words else None
         if name is None:
             continue
-        if name == "margin of safety" and _NO_MARGIN.search(words):
+        if name == "margin of safety" and (_NO_MARGIN.search(words) or not _of_safety(book, key[0], words)):
             return None
         if _agrees(declared, name, words):
             return name
     return None
+
+
+_STRICT = re.compile(r"(?<!\w)(?:margins? of safety|safety margins?|M\.?S\.?|MoS)(?!\w)|(?<!\w)MS_\w+", re.IGNORECASE)
+
+
+def _of_safety(book: Examined, sheet: str, words: str) -> bool:
+    """Return whether a margin is one of safety: its words say so, or its sheet deals with loads or stresses."""
+    if _STRICT.search(words):
+        return True
+    known = _MECHANICAL.setdefault(book, {})
+    if sheet not in known:
+        page = book.workbook.sheet(sheet)
+        wanted = {kind(name).dimension for name in ("stress", "force", "moment")}
+        units = (book.declarations.unit(sheet, address) for address in (page.cells if page is not None else ()))
+        known[sheet] = any(unit is not None and unit.unit.dimension in wanted for unit in units)
+    return known[sheet]
+
+
+_MECHANICAL: WeakKeyDictionary[Examined, dict[str, bool]] = WeakKeyDictionary()
 
 
 def _agrees(declared: object, name: str, words: str) -> bool:

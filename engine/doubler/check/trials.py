@@ -17,8 +17,8 @@ class Trials:
     """Questions about a workbook, collected and then answered together.
 
     In every question all cells that any question changes are held at what they give today, except those that the
-    question itself changes. So questions that change formula cells and questions that change what these read do not
-    belong into one collection.
+    question itself changes; a cell that one question changes and another wants parts the two. So questions that change
+    formula cells and questions that change what these read do not belong into one collection.
     """
 
     def __init__(self, book: Examined) -> None:
@@ -35,12 +35,24 @@ class Trials:
 
     def run(self) -> None:
         """Answer all questions; a question without a number for its answer gets None."""
-        self.answers = []
-        for start in range(0, len(self._changes), MOST):
-            self._run(self._changes[start : start + MOST], self._wanted[start : start + MOST])
+        self.answers = [None] * len(self._changes)
+        batches: list[tuple[list[int], set[Key], set[Key]]] = []
+        for number, (changed, wanted) in enumerate(zip(self._changes, self._wanted, strict=True)):
+            for numbers, all_changed, all_wanted in batches:
+                if len(numbers) < MOST and wanted not in all_changed and all_wanted.isdisjoint(changed):
+                    break
+            else:
+                numbers, all_changed, all_wanted = [], set(), set()
+                batches.append((numbers, all_changed, all_wanted))
+            numbers.append(number)
+            all_changed.update(changed)
+            all_wanted.add(wanted)
+        for numbers, _, _ in batches:
+            self._run(numbers)
 
-    def _run(self, changes: list[Mapping[Key, float]], wanted: list[Key]) -> None:
-        count = len(changes)
+    def _run(self, numbers: list[int]) -> None:
+        count = len(numbers)
+        changes, wanted = [self._changes[n] for n in numbers], [self._wanted[n] for n in numbers]
         inputs: dict[Key, np.ndarray[tuple[int], np.dtype[np.float64]]] = {}
         for at, changed in enumerate(changes):
             for key, number in changed.items():
@@ -53,4 +65,4 @@ class Trials:
             if isinstance(value, np.ndarray):
                 value = value[at]
             known = isinstance(value, int | float) and not isinstance(value, bool) and np.isfinite(value)
-            self.answers.append(float(value) if known and isinstance(value, int | float) else None)
+            self.answers[numbers[at]] = float(value) if known and isinstance(value, int | float) else None

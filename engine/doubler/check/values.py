@@ -265,7 +265,12 @@ def blank_inputs(book: Examined) -> Iterator[Finding]:
                 key = _blank(book, use, group, lane)
                 if key is not None and (use.how == ARITHMETIC or _is_quantity(book, reader)):
                     found.setdefault(key, []).append(reader)
+    waiting = _not_filled_in(book, found)
+    if waiting:
+        yield _rows_waiting(waiting)
     for key, readers in found.items():
+        if key in waiting:
+            continue
         first = cell_name_of(readers[0]) if readers[0][0] != key[0] else cell_name(*readers[0][1])
         label = book.label(key).text
         named = f" ({label})" if label else ""
@@ -280,6 +285,46 @@ def blank_inputs(book: Examined) -> Iterator[Finding]:
             "a number",
             tuple(dict.fromkeys(cell_name_of(reader) for reader in readers))[:12],
         )
+
+
+def _not_filled_in(book: Examined, found: dict[Key, list[Key]]) -> dict[Key, list[Key]]:
+    """Return the empty cells of a form's rows that nobody has filled in: their formula reads nothing else there."""
+    waiting: dict[Key, list[Key]] = {}
+    for key, readers in found.items():
+        for reader in readers:
+            row = reader[1][0]
+            same = [read.single for read in book.reads(reader) if read.sheet == reader[0] and read.single is not None]
+            here = [address for address in same if address[0] == row]
+            if reader[0] != key[0] or row != key[1][0] or len(here) < 2:
+                break
+            if any((reader[0], address) not in found for address in here) or not _goes_on(book, reader):
+                break
+        else:
+            waiting[key] = readers
+    return waiting
+
+
+def _goes_on(book: Examined, reader: Key) -> bool:
+    """Return whether a formula is a copy of the one above it, which has something to read."""
+    at = book.graph.group_at(*reader)
+    return at is not None and book.graph.groups[at[0]].run.count >= 2
+
+
+def _rows_waiting(waiting: dict[Key, list[Key]]) -> Finding:
+    first = next(iter(waiting))
+    rows = sorted({key[1][0] for key in waiting if key[0] == first[0]})
+    named = ", ".join(str(row) for row in rows[:6]) + (", …" if len(rows) > 6 else "")
+    return Finding(
+        first[0],
+        cell_name(*first[1]),
+        "blank-input",
+        "note",
+        f"Row{'s' if len(rows) > 1 else ''} {named} {'are' if len(rows) > 1 else 'is'} not filled in; the formulas "
+        "there read 0.",
+        "empty",
+        "",
+        tuple(dict.fromkeys(cell_name_of(reader) for readers in waiting.values() for reader in readers))[:12],
+    )
 
 
 def _blank(book: Examined, use: Use, group: Group, lane: int) -> Key | None:

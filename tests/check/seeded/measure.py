@@ -41,9 +41,16 @@ def outcome(book: Written, fault: Fault | None, folder: Path) -> Outcome:
     for finding in report.findings:
         if fault is not None and finding.kind == fault.kind and stands_at(book, fault, finding):
             result.hits.append(finding)
-        elif finding.severity != "note":
+        elif finding.severity != "note" and not _goes_with(book, fault, finding):
             result.strays.append(finding)
     return result
+
+
+def _goes_with(book: Written, fault: Fault | None, finding: Finding) -> bool:
+    """Return whether a finding is right beside the fault: a margin below zero too, or trouble at one cell."""
+    if fault is None:
+        return False
+    return fault.kind == finding.kind == "negative-margin" or stands_at(book, fault, finding)
 
 
 def stands_at(book: Written, fault: Fault, finding: Finding) -> bool:
