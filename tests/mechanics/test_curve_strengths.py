@@ -83,13 +83,14 @@ def test_a_round_curve_and_a_drop_at_the_strength_are_no_yield_point() -> None:
         curve_strength.lower_yield(strain, noisy)
 
 
-def test_elongations_of_the_steel() -> None:
+@pytest.mark.parametrize("toe", [0.0, 0.004])
+def test_elongations_of_the_steel_whatever_its_toe(toe: float) -> None:
     strain, stress = steel()
     top, end = int(np.argmax(stress)), stress.size - 3
     for part, share in (("plastic", 1.0), ("total", 0.0)):
-        uniform = curve_elongation.uniform_elongation(strain, stress, part)
+        uniform = curve_elongation.uniform_elongation(strain + toe, stress, part)
         assert uniform == pytest.approx(strain[top] - share * stress[top] / 200e3, abs=1e-6)
-        broken = curve_elongation.break_elongation(strain, stress, part)
+        broken = curve_elongation.break_elongation(strain + toe, stress, part)
         assert broken == pytest.approx(strain[end] - share * stress[end] / 200e3, abs=1e-6)
 
 
