@@ -81,3 +81,18 @@ def test_a_fault_in_the_last_row_leaves_the_old_table(ready: tuple[Path, Path], 
 def test_targets_that_will_not_do(ready: tuple[Path, Path], tmp_path: Path, out: str, message: str) -> None:
     with pytest.raises(InputError, match=message):
         sweep(*ready, tmp_path / out)
+
+
+def test_a_scheduler_s_workers_give_the_same_table(ready: tuple[Path, Path], tmp_path: Path) -> None:
+    from distributed import LocalCluster
+
+    sweep(*ready, tmp_path / "here.parquet")
+    with LocalCluster(n_workers=1, threads_per_worker=1, processes=False, dashboard_address=None) as cluster:
+        report = sweep(*ready, tmp_path / "there.parquet", scheduler=cluster.scheduler_address)
+    assert report.cases == 3
+    assert parquet.read_table(tmp_path / "here.parquet").equals(parquet.read_table(tmp_path / "there.parquet"))
+
+
+def test_no_scheduler_at_the_address(ready: tuple[Path, Path], tmp_path: Path) -> None:
+    with pytest.raises(InputError, match="no scheduler answers at nowhere"):
+        sweep(*ready, tmp_path / "r.parquet", scheduler="nowhere")
