@@ -112,3 +112,10 @@ def test_results_and_errors_can_be_pickled() -> None:
     assert error.reasons == ("one", "two")
     unread = pickle.loads(pickle.dumps(ArgumentError("a reason", ErrorValue.NA)))
     assert (str(unread), unread.value) == ("a reason", ErrorValue.NA)
+
+
+def test_an_argument_left_out_keeps_its_default_beside_quantities() -> None:
+    shear_out = lookup("STRESS_LUG_SHEAR_OUT")
+    assert shear_out is not None
+    given = [Q(30.0, "kN"), Q(20.0, "mm"), Q(16.0, "mm"), Q(8.0, "mm")]
+    assert shear_out(*given).to("MPa").magnitude == shear_out(*given, Q(0.0, "deg")).to("MPa").magnitude

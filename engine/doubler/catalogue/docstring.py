@@ -7,7 +7,9 @@ import re
 from dataclasses import dataclass
 
 _HEADING = re.compile(r"^(?P<title>[A-Z][A-Za-z ]+)\n-{3,}\n", re.MULTILINE)
-_EXAMPLE = re.compile(r">>> cell\((?P<quote>'{3}|')(?P<formula>.+?)(?P=quote)\)\n(?P<result>(?:(?!>>>).+\n?)+)")
+_EXAMPLE = re.compile(r">>> cell\((?P<quote>'{3}|')(?P<formula>(?:.|\n)+?)(?P=quote)\)\n(?P<result>(?:(?!>>>).+\n?)+)")
+_CONTINUED = re.compile(r"'\s*\n\s*\.\.\.\s*'")
+"""Where the text of a formula is broken over two lines of an example."""
 _MATH = re.compile(r"^\.\. math::[ \t]*(?P<first>.*)\n(?P<rest>(?:[ \t]+.*\n|\n(?=[ \t]))*)", re.MULTILINE)
 
 
@@ -62,7 +64,7 @@ def read(function: object) -> Documentation:
         returns=(name, type_, description),
         notes=sections.get("Notes", "").strip(),
         sources=sections.get("References", "").strip(),
-        example=example["formula"].replace("\\\\", "\\") if example else "",
+        example=_CONTINUED.sub("", example["formula"]).replace("\\\\", "\\") if example else "",
         example_result=example["result"].strip() if example else "",
     )
 

@@ -38,6 +38,7 @@ def call(function: WorksheetFunction, positional: Sequence[Any], named: Mapping[
         Arguments are missing or unknown.
     """
     binding = inspect.signature(function.kernel).bind(*positional, **named)
+    named_here = set(binding.arguments)
     binding.apply_defaults()
     given = [binding.arguments[argument.name] for argument in function.arguments]
     with_units = any(is_pint_quantity(item) for item in given)
@@ -47,7 +48,8 @@ def call(function: WorksheetFunction, positional: Sequence[Any], named: Mapping[
     single = True
     for argument, item in zip(function.arguments, given, strict=True):
         try:
-            value, unit = _read(argument, item, with_units)
+            # A default stands in the kernel's own units.
+            value, unit = _read(argument, item, with_units and argument.name in named_here)
         except InputError as error:
             reasons.append(str(error))
             continue

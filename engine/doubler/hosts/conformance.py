@@ -306,8 +306,10 @@ def _scale(grid: Grid) -> float:
 def _alike(value: Any, expected: Any, scale: float) -> bool:
     if isinstance(expected, ErrorValue) or isinstance(value, ErrorValue):
         return value is expected
-    if isinstance(expected, str) or expected is None:
-        return (value or "") == (expected or "")
+    if expected is None or expected == "":
+        return value is None or value == ""
+    if isinstance(expected, str):
+        return bool(value == expected)
     if isinstance(value, str) or value is None:
         return False
     return bool(abs(float(value) - float(expected)) <= TOLERANCE * max(abs(float(expected)), 1e-3 * scale))

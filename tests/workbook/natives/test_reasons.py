@@ -2,10 +2,10 @@
 
 import numpy as np
 import pytest
-from workbook.evaluated_books import run, shown
 
 from doubler.errors import ErrorValue
 from doubler.workbook.evaluate import evaluate_formula
+from workbook.evaluated_books import run, shown
 
 ZERO_AREA = "STRESS_AXIAL: area must be positive; it is 0 mm^2"
 CELLS = {
