@@ -221,7 +221,7 @@ def limit_lines(function: Any) -> Iterator[str]:
         return
     yield from ("**Assumptions and limits.**", "")
     for rule in function.conditions:
-        yield f"- Refused unless: {prose(rule.words)}."
+        yield f"- Refused with: {prose(rule.words)}."
     if function.conditions:
         yield ""
     if function.documentation.notes:

@@ -57,7 +57,7 @@ def direct_shear(force: Force, area: Area, shear_planes: Ratio = 1.0) -> Stress:
     area : area
         Area of one shear plane.
     shear_planes : ratio
-        Number of planes that share the force alike: 1 for single shear, 2 for double shear.
+        Number of planes that share the force equally: 1 for single shear, 2 for double shear.
 
     Returns
     -------
@@ -67,7 +67,7 @@ def direct_shear(force: Force, area: Area, shear_planes: Ratio = 1.0) -> Stress:
     Notes
     -----
     A mean: the true distribution is uneven, and a pin bends as well where its joint is not close-fitting.
-    Planes share alike only in a symmetric joint.
+    Planes share equally only in a symmetric joint.
 
     References
     ----------
@@ -94,7 +94,7 @@ def pin_shear(force: Force, diameter: Length, shear_planes: Ratio = 1.0) -> Stre
     diameter : length
         Diameter where it is sheared; for a thread in the shear plane, the diameter of its stress area.
     shear_planes : ratio
-        Number of planes that share the force alike: 1 for single shear, 2 for double shear.
+        Number of planes that share the force equally: 1 for single shear, 2 for double shear.
 
     Returns
     -------

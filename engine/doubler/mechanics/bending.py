@@ -66,7 +66,7 @@ def bending(moment: Moment, distance: Length, second_moment: SecondMoment) -> St
 def bending_modulus(moment: Moment, section_modulus: SectionModulus) -> Stress:
     r"""Bending stress at the outer fibre from the section modulus.
 
-    .. math:: \sigma = \frac{M}{Z}
+    .. math:: \sigma = \frac{M}{W}
 
     Parameters
     ----------

@@ -94,7 +94,7 @@ def centroid(group_x: LengthColumn, group_y: LengthColumn, areas: AreaColumn | N
     group_y : column of length
         y of each fastener.
     areas : column of area, optional
-        Area of each fastener; one serves for all; left out: all alike.
+        Area of each fastener; one serves for all; left out: all equal.
 
     Returns
     -------
@@ -161,7 +161,7 @@ def shear(
     moment : moment
         Moment on the group beside the load's own, counter-clockwise positive; zero where there is none.
     areas : column of area, optional
-        Area of each fastener; one serves for all; left out: all alike.
+        Area of each fastener; one serves for all; left out: all equal.
 
     Returns
     -------
@@ -238,7 +238,7 @@ def tension(
     moment_y : moment
         Moment about the y axis, right-handed: positive stretches fasteners at smaller x.
     areas : column of area, optional
-        Area of each fastener; one serves for all; left out: all alike.
+        Area of each fastener; one serves for all; left out: all equal.
 
     Returns
     -------
@@ -305,7 +305,7 @@ def heel(arm: Length, group_arms: LengthColumn, moment: Moment) -> Force:
 
     Notes
     -----
-    Heel method: rigid fitting, fasteners alike, contact along the heel line alone, preload left out. A pull on the
+    Heel method: rigid fitting, equal fasteners, contact along the heel line alone, preload left out. A pull on the
     group enters as its moment about the heel. Prying is not in it.
 
     References

@@ -18,7 +18,7 @@ from doubler.catalogue.annotations import (
     Stiffness,
     row,
 )
-from doubler.catalogue.limits import NOT_NEGATIVE, POSITIVE, between, condition
+from doubler.catalogue.limits import NOT_NEGATIVE, POSITIVE, Limit, between, condition
 
 Thread = Literal["ISO", "unified"]
 Preloads: Any = row(Force, "least", "nominal", "largest")
@@ -137,7 +137,7 @@ def _lead(pitch: Any, pitch_diameter: Any) -> Any:
         "thread_friction": NOT_NEGATIVE,
         "bearing_diameter": POSITIVE,
         "bearing_friction": NOT_NEGATIVE,
-        "flank_angle": between(0.0, np.pi / 4.0),
+        "flank_angle": Limit(0.0, np.pi / 4.0, False, False, "must lie from 0 to 45°"),
     },
     conditions=(
         condition(
@@ -178,7 +178,7 @@ def preload_friction(
     bearing_diameter : length
         Mean diameter of the face that turns (nut or head).
     bearing_friction : ratio
-        Coefficient of friction under it.
+        Coefficient of friction under that face.
     flank_angle : angle, optional
         Half of the thread angle; 30 degrees where left out.
 
@@ -214,7 +214,7 @@ def preload_friction(
         "hole": POSITIVE,
         "bearing_diameter": POSITIVE,
         "modulus": POSITIVE,
-        "cone_angle": between(0.0, np.pi / 4.0, low_open=True),
+        "cone_angle": Limit(0.0, np.pi / 4.0, True, False, "must be above 0 and at most 45°"),
     },
     conditions=(
         condition(
@@ -251,7 +251,7 @@ def members(
 
     Notes
     -----
-    Frustum method: parts wider than the cones, one material, alike at both ends. Edges cut the cones off and
+    Frustum method: parts wider than the cones, one material, the same at both ends. Edges cut the cones off and
     make the parts softer, which raises the bolt's share.
 
     References

@@ -41,7 +41,7 @@ def hole(width: Length, diameter: Length) -> Ratio:
 
     References
     ----------
-    R. B. Heywood’s and Peterson’s charts as fitted in Pytel, Kiusalaas, Mechanics of Materials, section 12.7
+    R. B. Heywood's and Peterson’s charts as fitted in Pytel, Kiusalaas, Mechanics of Materials, section 12.7
     (from memory).
 
     Examples
@@ -204,7 +204,7 @@ def groove(width: Length, net_width: Length, radius: Length) -> Ratio:
     net_width : length
         Width between the grooves, d.
     radius : length
-        Radius at the ground of the grooves, ρ.
+        Radius at the bottom of the grooves, ρ.
 
     Returns
     -------

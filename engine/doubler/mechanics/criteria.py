@@ -32,7 +32,7 @@ def von_mises(sigma_x: Stress, sigma_y: Stress, tau_xy: Stress) -> Stress:
 
     Notes
     -----
-    Compare with the yield strength in tension. For ductile materials that yield alike in tension and
+    Compare with the yield strength in tension. For ductile materials that yield equally in tension and
     compression; it says nothing of brittle fracture, of buckling or of fatigue.
 
     References
@@ -118,7 +118,7 @@ def von_mises_3d(
 
     Notes
     -----
-    Compare with the yield strength in tension. For ductile materials that yield alike in tension and
+    Compare with the yield strength in tension. For ductile materials that yield equally in tension and
     compression; it says nothing of brittle fracture, of buckling or of fatigue.
 
     References

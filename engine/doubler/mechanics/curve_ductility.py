@@ -13,7 +13,7 @@ _EXPONENT = between(0.0, 1.0, low_open=True)
 
 @worksheet_function("CURVE_DUCTILITY", valid={"elongation": NOT_NEGATIVE, "limit": POSITIVE})
 def ductility(elongation: Strain, limit: Strain = 0.05) -> Text:
-    r"""Say whether a material counts as ductile or brittle by its elongation at break: the 5 % rule.
+    r"""Whether a material counts as ductile or brittle by its elongation at break: the 5 % rule.
 
     .. math:: A \ge 0.05 \Rightarrow \text{ductile}, \quad A < 0.05 \Rightarrow \text{brittle}
 

@@ -111,7 +111,7 @@ def break_elongation(
     -----
     Break: the last point before the stress falls at once by a tenth of the strength or more, five times as steeply as
     in the step before, without coming back; else the last point of 2 % of the strength or more. The extensometer must
-    have stayed on, and the neck lie within its gauge length. Only elongations over alike gauge lengths compare.
+    have stayed on, and the neck lie within its gauge length. Only elongations over equal gauge lengths compare.
 
     References
     ----------
@@ -231,7 +231,7 @@ def elongation_after_break(first_length: Length, length: Length) -> Strain:
 
     Notes
     -----
-    Only elongations over alike gauge lengths (4 d, 5 d, 50 mm …) compare, since the neck's share falls with length.
+    Only elongations over equal gauge lengths (4 d, 5 d, 50 mm …) compare, since the neck's share falls with length.
 
     References
     ----------

@@ -65,7 +65,7 @@ def slope(x: XColumn, y: YColumn) -> YPerX:
 
     Notes
     -----
-    All rows have one trust, and the error lies in y. Look at the points: a curve, or one wrong row, gives a slope all
+    All rows count equally, and the error lies in y. Look at the points: a curve, or one wrong row, gives a slope all
     the same.
 
     References
@@ -101,7 +101,7 @@ def intercept(x: XColumn, y: YColumn) -> Y:
 
     Notes
     -----
-    All rows have one trust, and the error lies in y. Far from the points it is an extrapolation: see
+    All rows count equally, and the error lies in y. Far from the points it is an extrapolation: see
     CURVE_LINE_INTERCEPT_ERROR.
 
     References
@@ -137,7 +137,7 @@ def slope_error(x: XColumn, y: YColumn) -> YPerX:
 
     Notes
     -----
-    The scatter is alike along the line, independent from row to row; one standard deviation, no confidence bound.
+    The scatter is the same along the line, independent from row to row; one standard deviation, no confidence bound.
 
     References
     ----------
@@ -173,7 +173,7 @@ def intercept_error(x: XColumn, y: YColumn) -> Y:
 
     Notes
     -----
-    The scatter is alike along the line, independent from row to row; one standard deviation, no confidence bound.
+    The scatter is the same along the line, independent from row to row; one standard deviation, no confidence bound.
 
     References
     ----------
@@ -243,7 +243,7 @@ def slope_origin(x: XColumn, y: YColumn) -> YPerX:
 
     Notes
     -----
-    Only where zero of x surely belongs to zero of y: slack or a toe falsifies the slope. All rows have one trust.
+    Only where zero of x surely belongs to zero of y: slack or a toe falsifies the slope. All rows count equally.
 
     References
     ----------
@@ -278,7 +278,7 @@ def slope_origin_error(x: XColumn, y: YColumn) -> YPerX:
 
     Notes
     -----
-    The scatter is alike along the line, independent from row to row; one standard deviation, no confidence bound.
+    The scatter is the same along the line, independent from row to row; one standard deviation, no confidence bound.
 
     References
     ----------

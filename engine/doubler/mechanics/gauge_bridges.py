@@ -214,7 +214,7 @@ def gauge_factor(change: Resistance, gauge_resistance: Resistance, strain: Strai
     "STRAIN_SHUNT", valid={"gauge_resistance": POSITIVE, "shunt_resistance": POSITIVE, "gauge_factor": POSITIVE}
 )
 def shunt(gauge_resistance: Resistance, shunt_resistance: Resistance, gauge_factor: Ratio) -> Strain:
-    r"""Strain that a shunt resistor across a gauge feigns.
+    r"""Strain that a shunt resistor across a gauge simulates.
 
     .. math:: \varepsilon_s = -\frac{R_g}{k (R_g + R_s)}
 
@@ -230,7 +230,7 @@ def shunt(gauge_resistance: Resistance, shunt_resistance: Resistance, gauge_fact
     Returns
     -------
     strain : strain
-        Feigned strain: negative, as the resistance falls. Laid across the neighbouring arm it reads as
+        Simulated strain: negative, as the resistance falls. Laid across the neighbouring arm it reads as
         positive.
 
     Notes

@@ -149,7 +149,7 @@ def thermal_output(
     transverse_sensitivity: Ratio = 0.0,
     calibration_poissons_ratio: Ratio = 0.285,
 ) -> Strain:
-    r"""Strain that an unloaded gauge feigns when its temperature changes.
+    r"""Thermal output (apparent strain) of an unloaded gauge when its temperature changes.
 
     .. math:: \varepsilon_{T} = \left[\frac{\beta}{k} + \frac{1 + K_t}{1 - \nu_0 K_t}(\alpha_s -
         \alpha_g)\right]\Delta T
@@ -174,7 +174,7 @@ def thermal_output(
     Returns
     -------
     strain : strain
-        Feigned strain in an indicator set to the gauge factor.
+        Apparent strain in an indicator set to the gauge factor.
 
     Notes
     -----
@@ -202,7 +202,7 @@ def thermal_output(
 def thermal_corrected(
     strain: Strain, thermal_output: Strain, set_factor: Ratio, gauge_factor: Ratio, output_factor: Ratio = 2.0
 ) -> Strain:
-    r"""Strain freed from the output that temperature feigns, then brought to the gauge's own factor.
+    r"""Strain freed from thermal output (apparent strain), then brought to the gauge's own factor.
 
     .. math:: \varepsilon = \left(\hat\varepsilon - \varepsilon_T\frac{k_T}{k_{set}}\right)\frac{k_{set}}{k}
 
@@ -211,7 +211,7 @@ def thermal_corrected(
     strain : strain
         Indicated strain.
     thermal_output : strain
-        Feigned strain at the temperature of the test, from the data sheet or a gauge on an unloaded piece.
+        Apparent strain at the temperature of the test, from the data sheet or a gauge on an unloaded piece.
     set_factor : ratio
         Gauge factor to which the indicator was set.
     gauge_factor : ratio

@@ -205,7 +205,7 @@ def check(
     poissons_ratio_23: Ratio,
     poissons_ratio_13: Ratio,
 ) -> Text:
-    r"""Say whether the constants of an orthotropic material are possible, and which rule is broken.
+    r"""Whether the constants of an orthotropic material are possible, and which rule is broken.
 
     .. math:: |\nu_{ij}| < \sqrt{E_i / E_j}, \quad 1 - \nu_{12}\nu_{21} - \nu_{23}\nu_{32} - \nu_{13}\nu_{31} -
         2\nu_{21}\nu_{32}\nu_{13} > 0

@@ -95,7 +95,7 @@ def shear(
     safety_factor : ratio
         Factor of safety on the force.
     shear_planes : ratio, optional
-        Number of planes that share the force alike; 1 where left out.
+        Number of planes that share the force equally; 1 where left out.
     fitting_factor : ratio, optional
         Fitting factor; 1 where left out.
 

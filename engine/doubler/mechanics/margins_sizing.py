@@ -12,7 +12,7 @@ _WANTED = {"margin": NOT_NEGATIVE, "safety_factor": AT_LEAST_ONE, "fitting_facto
 
 
 def _no_load(name: str) -> str:
-    return f"a {name} of zero needs no section; give the load that sizes the part"
+    return f"with {name} zero no section is needed; give the load that sizes the part"
 
 
 def _needed(load: Values, safety_factor: Values, fitting_factor: Values, margin: Values) -> Values:

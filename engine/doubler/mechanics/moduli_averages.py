@@ -86,8 +86,8 @@ def bulk(stiffness: Entries) -> Averages:
 
     Notes
     -----
-    Linear elastic, grains in all directions alike: no texture, no pores. Voigt (strain alike in all grains) is
-    an upper bound, Reuss (stress alike) a lower one. Bare numbers need a set as the last argument, such as
+    Linear elastic, grains equally in all directions: no texture, no pores. Voigt (equal strain in all grains) is
+    an upper bound, Reuss (equal stress) a lower one. Bare numbers need a set as the last argument, such as
     "N-mm" for MPa.
 
     References
@@ -123,8 +123,8 @@ def shear(stiffness: Entries) -> Averages:
 
     Notes
     -----
-    Linear elastic, grains in all directions alike: no texture, no pores. Voigt (strain alike in all grains) is
-    an upper bound, Reuss (stress alike) a lower one. Bare numbers need a set as the last argument, such as
+    Linear elastic, grains equally in all directions: no texture, no pores. Voigt (equal strain in all grains) is
+    an upper bound, Reuss (equal stress) a lower one. Bare numbers need a set as the last argument, such as
     "N-mm" for MPa.
 
     References

@@ -121,7 +121,7 @@ def check(
     p_wave: Modulus | None = None,
     tolerance: Ratio = 0.02,
 ) -> Text:
-    r"""Say whether three or more elastic constants of an isotropic material agree, and which one does not.
+    r"""Whether three or more elastic constants of an isotropic material agree, and which one does not.
 
     .. math:: \left|\frac{c_i^{calculated}}{c_i} - 1\right| \le d
 

@@ -175,7 +175,7 @@ def zener(c11: Modulus, c12: Modulus, c44: Modulus) -> Ratio:
     Returns
     -------
     ratio : ratio
-        Ratio of the two shear moduli; 1 where all directions are alike.
+        Ratio of the two shear moduli; 1 where it is the same in all directions.
 
     Notes
     -----
@@ -250,7 +250,7 @@ def shear_averages(c11: Modulus, c12: Modulus, c44: Modulus) -> Averages:
 
     Notes
     -----
-    Linear elastic, crystals in all directions alike: no texture, no pores. With MODULUS_CUBIC_BULK and
+    Linear elastic, crystals equally in all directions: no texture, no pores. With MODULUS_CUBIC_BULK and
     MODULUS_YOUNG it gives the other constants.
 
     References

@@ -18,7 +18,7 @@ _ELASTIC = {"modulus": POSITIVE, "poissons_ratio": POISSON}
 
 @worksheet_function("MODULUS_PLANE_STRAIN", valid=_ELASTIC)
 def plane_strain(modulus: Modulus, poissons_ratio: Ratio) -> Modulus:
-    r"""Effective Young's modulus of plane strain: put into a formula of plane stress, it turns it.
+    r"""Effective Young's modulus that turns a formula of plane stress into one of plane strain.
 
     .. math:: E' = \frac{E}{1 - \nu^2}
 
@@ -53,7 +53,7 @@ def plane_strain(modulus: Modulus, poissons_ratio: Ratio) -> Modulus:
 
 @worksheet_function("MODULUS_PLANE_STRAIN_POISSON", valid={"poissons_ratio": POISSON})
 def plane_strain_ratio(poissons_ratio: Ratio) -> Ratio:
-    r"""Effective Poisson's ratio of plane strain: put into a formula of plane stress, it turns it.
+    r"""Effective Poisson's ratio that turns a formula of plane stress into one of plane strain.
 
     .. math:: \nu' = \frac{\nu}{1 - \nu}
 
@@ -87,7 +87,7 @@ def plane_strain_ratio(poissons_ratio: Ratio) -> Ratio:
     "MODULUS_PLANE_STRESS", valid={"modulus": POSITIVE, "poissons_ratio": between(-0.5, 0.5, low_open=True)}
 )
 def plane_stress(modulus: Modulus, poissons_ratio: Ratio) -> Modulus:
-    r"""Effective Young's modulus of plane stress: put into a formula of plane strain, it turns it.
+    r"""Effective Young's modulus that turns a formula of plane strain into one of plane stress.
 
     .. math:: E'' = \frac{E (1 + 2\nu)}{(1 + \nu)^2}
 
@@ -122,7 +122,7 @@ def plane_stress(modulus: Modulus, poissons_ratio: Ratio) -> Modulus:
 
 @worksheet_function("MODULUS_PLANE_STRESS_POISSON", valid={"poissons_ratio": between(-0.5, 0.5, low_open=True)})
 def plane_stress_ratio(poissons_ratio: Ratio) -> Ratio:
-    r"""Effective Poisson's ratio of plane stress: put into a formula of plane strain, it turns it.
+    r"""Effective Poisson's ratio that turns a formula of plane strain into one of plane stress.
 
     .. math:: \nu'' = \frac{\nu}{1 + \nu}
 
@@ -154,7 +154,7 @@ def plane_stress_ratio(poissons_ratio: Ratio) -> Ratio:
 
 @worksheet_function("MODULUS_BIAXIAL", valid=_ELASTIC)
 def biaxial(modulus: Modulus, poissons_ratio: Ratio) -> Modulus:
-    r"""Stress over strain of a sheet that is strained alike in both directions.
+    r"""Stress over strain of a sheet that is strained equally in both directions.
 
     .. math:: E_b = \frac{E}{1 - \nu}
 

@@ -265,13 +265,13 @@ def transverse_compliance(
     modulus_1 : modulus
         Young's modulus along the axis of symmetry (the fibre).
     modulus_2 : modulus
-        Young's modulus across it, alike in 2 and 3.
+        Young's modulus across it, the same in 2 and 3.
     poissons_ratio_12 : ratio
         Poisson's ratio ν12: contraction across under stress along the axis.
     poissons_ratio_23 : ratio
         Poisson's ratio ν23 in the isotropic plane.
     shear_modulus_12 : modulus
-        Shear modulus along the axis, alike in 12 and 13.
+        Shear modulus along the axis, the same in 12 and 13.
 
     Returns
     -------
@@ -322,13 +322,13 @@ def transverse_stiffness(
     modulus_1 : modulus
         Young's modulus along the axis of symmetry (the fibre).
     modulus_2 : modulus
-        Young's modulus across it, alike in 2 and 3.
+        Young's modulus across it, the same in 2 and 3.
     poissons_ratio_12 : ratio
         Poisson's ratio ν12: contraction across under stress along the axis.
     poissons_ratio_23 : ratio
         Poisson's ratio ν23 in the isotropic plane.
     shear_modulus_12 : modulus
-        Shear modulus along the axis, alike in 12 and 13.
+        Shear modulus along the axis, the same in 12 and 13.
 
     Returns
     -------

@@ -130,7 +130,7 @@ def principal_angle(sigma_x: Stress, sigma_y: Stress, tau_xy: Stress) -> Angle:
 
     Notes
     -----
-    The angle belongs to the largest stress, not to whichever lies nearer to x. Where the state is alike in
+    The angle belongs to the largest stress, not to whichever lies nearer to x. Where the state is the same in
     all directions there is no such direction, and no result.
 
     References

@@ -118,7 +118,7 @@ def thin_sphere(pressure: Pressure, radius: Length, thickness: Length) -> Stress
     Returns
     -------
     stress : stress
-        Tension, alike in all directions of the wall.
+        Tension, the same in all directions of the wall.
 
     Notes
     -----

@@ -188,7 +188,7 @@ def angle(strain_a: Strain, strain_b: Strain, strain_c: Strain, layout: Layout) 
     -----
     The gauges must stand counter-clockwise in the order a, b, c: seen the other way round, the shear strain and
     the angle change sign. Readings already corrected for temperature, lead wires and transverse sensitivity;
-    strain even under the gauges. Refused where all directions are alike.
+    strain even under the gauges. Refused where the strain is the same in all directions.
 
     References
     ----------
@@ -311,7 +311,7 @@ def fit(strains: Strains, angles: Angles) -> Plane:
 
     Notes
     -----
-    All gauges at one point, with one trust. With more than three see STRAIN_ROSETTE_RESIDUAL. Geometry alone:
+    All gauges at one point, all trusted equally. With more than three see STRAIN_ROSETTE_RESIDUAL. Geometry alone:
     any material, small strains.
 
     References

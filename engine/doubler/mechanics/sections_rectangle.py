@@ -107,7 +107,7 @@ def second_moment(
 
     Notes
     -----
-    Sharp corners, centred hollow. Change height and width over for the other axis.
+    Sharp corners, centred hollow. Exchange height and width for the other axis.
 
     References
     ----------

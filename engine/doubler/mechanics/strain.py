@@ -28,7 +28,7 @@ UNSQUASHED = above(-1.0)
     ),
 )
 def engineering(elongation: Length, length: Length) -> Strain:
-    r"""Engineering strain: change of length for each unit of first length; longer is positive.
+    r"""Engineering strain: change of length for each unit of original length; longer is positive.
 
     .. math:: \varepsilon = \frac{\Delta L}{L_0}
 
@@ -181,7 +181,7 @@ def thermal(expansion: ThermalExpansion, temperature_change: TemperatureChange) 
     Returns
     -------
     strain : strain
-        Strain alike in all directions, extension positive.
+        Strain, the same in all directions, extension positive.
 
     Notes
     -----

@@ -212,7 +212,7 @@ def principal_angle(strain_x: Strain, strain_y: Strain, shear_strain: ShearStrai
     Notes
     -----
     The branch is settled by the signs of both parts, so that the angle always belongs to the larger strain. In an
-    isotropic material the principal stresses lie alike. Small strains.
+    isotropic material the principal stresses have the same directions. Small strains.
 
     References
     ----------

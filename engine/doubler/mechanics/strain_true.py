@@ -107,7 +107,7 @@ def true_stress(stress: Stress, strain: Strain, necking_strain: Strain | None = 
     Parameters
     ----------
     stress : stress
-        Engineering stress (load over first area), tension positive.
+        Engineering stress (load over original area), tension positive.
     strain : strain
         Engineering strain, extension positive.
     necking_strain : strain, optional
@@ -137,7 +137,7 @@ def true_stress(stress: Stress, strain: Strain, necking_strain: Strain | None = 
 
 @worksheet_function("STRESS_ENGINEERING", valid={"necking_strain": POSITIVE}, conditions=(BEFORE_NECKING,))
 def engineering_stress(stress: Stress, strain: Strain, necking_strain: Strain | None = None) -> Stress:  # noqa: ARG001, judged by the condition
-    r"""Engineering stress (load over first area) from true stress and true strain, up to necking.
+    r"""Engineering stress (load over original area) from true stress and true strain, up to necking.
 
     .. math:: \sigma = \sigma_t e^{-\varepsilon_t}
 

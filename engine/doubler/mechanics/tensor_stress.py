@@ -215,7 +215,7 @@ def hydrostatic(sigma_x: Stress, sigma_y: Stress, sigma_z: Stress) -> Stress:
 def octahedral_shear(
     sigma_x: Stress, sigma_y: Stress, sigma_z: Stress, tau_xy: Stress, tau_yz: Stress, tau_zx: Stress
 ) -> Stress:
-    r"""Shear stress on the octahedral planes, alike inclined to the three principal directions.
+    r"""Shear stress on the octahedral planes, equally inclined to the three principal directions.
 
     .. math:: \tau_{oct} = \sqrt{\tfrac23 J_2}
 
@@ -273,7 +273,7 @@ def invariant_1(sigma_x: Stress, sigma_y: Stress, sigma_z: Stress) -> Stress:
     Returns
     -------
     invariant : stress
-        The sum of the normal stresses, alike in all axes.
+        The sum of the normal stresses, the same in all axes.
 
     Notes
     -----
@@ -318,7 +318,7 @@ def invariant_2(
     Returns
     -------
     invariant : stress squared
-        The sum of the principal minors, alike in all axes.
+        The sum of the principal minors, the same in all axes.
 
     Notes
     -----
@@ -364,7 +364,7 @@ def invariant_3(
     Returns
     -------
     invariant : stress cubed
-        The product of the principal stresses, alike in all axes.
+        The product of the principal stresses, the same in all axes.
 
     Notes
     -----

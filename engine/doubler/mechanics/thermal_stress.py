@@ -174,7 +174,7 @@ def plate(
     Returns
     -------
     stress : stress
-        Stress in the plane, alike in all directions, tension positive: compression when heated.
+        Stress in the plane, the same in all directions, tension positive: compression when heated.
 
     Notes
     -----
@@ -217,7 +217,7 @@ def plate_gradient(
     Returns
     -------
     stress : stress
-        Stress at the surface of the face asked for, alike in all directions: compression where it is the
+        Stress at the surface of the face asked for, the same in all directions: compression where it is the
         hotter one. The other face has the opposite sign.
 
     Notes

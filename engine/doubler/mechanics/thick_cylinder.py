@@ -202,7 +202,7 @@ def axial(
     Notes
     -----
     Linear elastic, homogeneous, away from the ends. Hoop, radial and axial stress are principal stresses. A
-    wall under outer pressure may buckle first. Away from the ends.
+    wall under outer pressure may buckle first.
 
     References
     ----------
@@ -321,7 +321,7 @@ def sphere_hoop(
     Returns
     -------
     stress : stress
-        Stress in the wall, alike in all its directions and largest at the bore.
+        Stress in the wall, the same in all its directions and largest at the bore.
 
     Notes
     -----

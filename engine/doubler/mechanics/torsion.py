@@ -146,7 +146,7 @@ def torsion_shear_flow(torque: Moment, enclosed_area: Area) -> ShearFlow:
     Returns
     -------
     flow : shear flow
-        Force per length, alike all round the wall.
+        Force per length, the same all round the wall.
 
     Notes
     -----

@@ -106,7 +106,7 @@ def torsion_cells(
 
     Notes
     -----
-    Thin walls of one material, free to warp; all cells twist alike. Each wall stands once in the columns: an
+    Thin walls of one material, free to warp; all cells twist equally. Each wall stands once in the columns: an
     inner wall with the numbers of the two cells it parts.
 
     References
@@ -176,7 +176,7 @@ def torsion_cells_max(
 
     Notes
     -----
-    Thin walls of one material, free to warp; all cells twist alike. Each wall stands once in the columns.
+    Thin walls of one material, free to warp; all cells twist equally. Each wall stands once in the columns.
     Re-entrant corners have more.
 
     References
@@ -244,7 +244,7 @@ def twist_rate_cells(
 
     Notes
     -----
-    Thin walls of one material, free to warp; all cells twist alike. Each wall stands once in the columns.
+    Thin walls of one material, free to warp; all cells twist equally. Each wall stands once in the columns.
 
     References
     ----------
