@@ -242,7 +242,10 @@ def _single(item: Any) -> Any:
 
 
 def _names_a_unit(item: Any) -> bool:
-    if not isinstance(item, str) or not item.strip() or item.strip()[0].isdigit():
+    if not isinstance(item, str) or not item.strip():
+        return False
+    text = item.strip()
+    if text[0].isdigit() and not text.startswith("1/"):
         return False
     try:
         return consistent_set(item) is not None or parse_unit(item) is not None
