@@ -116,7 +116,10 @@ class Envelope:
             if isinstance(values, np.ndarray) and values.dtype == np.float64:
                 self._take_numbers(running, values, names, np.arange(len(names)), port)
                 continue
-            lanes = values.tolist() if isinstance(values, np.ndarray) else [values] * len(names)
+            if not isinstance(values, np.ndarray):  # the same in all cases: the first one stands for them
+                self._take_one(running, values, names, port)
+                continue
+            lanes = values.tolist()
             for index, value in enumerate(lanes):
                 if isinstance(value, ErrorValue):
                     running.faults += 1
@@ -124,6 +127,16 @@ class Envelope:
             at = np.array([i for i, value in enumerate(lanes) if type(value) is float], dtype=int)
             if at.size:
                 self._take_numbers(running, np.array([lanes[i] for i in at]), names, at, port)
+
+    @staticmethod
+    def _take_one(running: _Running, value: Any, names: Sequence[str], port: Port) -> None:
+        if isinstance(value, ErrorValue):
+            running.faults += len(names)
+            running.fault = running.fault or Extreme(value, names[0])
+        elif type(value) is float:
+            Envelope._take_numbers(running, np.array([value]), names, np.array([0]), port)
+            if port.is_margin and value < 0:
+                running.below += len(names) - 1
 
     @staticmethod
     def _take_numbers(running: _Running, values: Any, names: Sequence[str], at: Any, port: Port) -> None:

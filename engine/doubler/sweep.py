@@ -217,6 +217,9 @@ def _columns(outputs: list[Port], names: list[str], results: dict[str, Any]) -> 
         if isinstance(values, np.ndarray) and values.dtype == np.float64:
             columns.append(values)
             continue
+        if type(values) is float:
+            columns.append(np.full(len(names), values))
+            continue
         lanes = values.tolist() if isinstance(values, np.ndarray) else [values] * len(names)
         for index, value in enumerate(lanes):
             if isinstance(value, ErrorValue):
