@@ -13,6 +13,7 @@ from doubler.workbook.addresses import cell_name
 from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 from doubler.workbook.syntax import Number
 
+_MARGIN_RULES = frozenset({"margin-form", "factor-missing", "allowable-mixed"})
 MOST_MENDED = 40
 """Roots that are mended on trial to see what becomes of the margins behind them."""
 MOST_MARGINS = 200
@@ -127,7 +128,8 @@ def _one_a_cell(findings: list[Finding]) -> tuple[list[_Root], list[Finding]]:
 
 
 def _root(finding: Finding) -> _Root:
-    return _Root(finding, tuple(keys_of(finding)))
+    line = (key for cell in finding.follows if (key := _key_in(cell)) is not None)
+    return _Root(finding, (*keys_of(finding), *(line if finding.kind in _MARGIN_RULES else ())))
 
 
 def _cause(book: Examined, root: _Root, by_kind: dict[str, list[_Root]], dropped: set[int]) -> _Root | None:
@@ -144,9 +146,17 @@ def _cause(book: Examined, root: _Root, by_kind: dict[str, list[_Root]], dropped
                 if kind in ("circular", "blank-input"):  # the ring itself; an empty cell has readers and no place
                     starts.update(key for key in map(_key_in, other.finding.cells) if key is not None)
                 other.reached = book.downstream(starts) | starts
-            if root.keys[0] in other.reached and _explains(book, other, root):
+            if _reaches(other.reached, root) and _explains(book, other, root):
                 return other
     return None
+
+
+def _reaches(reached: set[Key], root: _Root) -> bool:
+    """Return whether a finding lies in what is reached; one about an input's label, where all that it spoils does."""
+    if root.keys[0] in reached:
+        return True
+    spoilt = [_key_in(cell) for cell in root.finding.follows or root.finding.cells]
+    return root.finding.kind in _UNITS and bool(spoilt) and all(key in reached for key in spoilt)
 
 
 def _key_in(cell: str) -> Key | None:

@@ -113,6 +113,7 @@ def _finding(margins: Margins, margin: Anatomy, key: Key, role: Role, served: fr
         f"={formula}",
         f"={mended}" if mended else "",
         (cell_name_of(key), *(cell_name_of(load) for load in margin.applied[:3])),
+        tuple(map(cell_name_of, margin.line)),
     )
 
 

@@ -19,6 +19,7 @@ from doubler.workbook.syntax import Number
 
 DEEPEST = 8
 WIDEST_READ = 64
+LONGEST_LINE = 4096
 _CLOSE = 0.02
 
 PROPER, LACKS_ONE, INVERTED, UTILISATION, COMPLEMENT, UNKNOWN = (
@@ -41,6 +42,8 @@ class Anatomy:
         All formula cells between it and its constants, itself included.
     constants
         The constants behind it.
+    line
+        The other cells of its line of like formulas.
     form
         One of the forms above.
     answers
@@ -56,6 +59,7 @@ class Anatomy:
     applied: list[Key]
     chain: set[Key]
     constants: set[Key]
+    line: tuple[Key, ...] = ()
     form: str = UNKNOWN
     answers: dict[str, float] = field(default_factory=dict)
     load_answer: float = 0.5
@@ -123,7 +127,8 @@ class Margins:
                 continue
             found = self._frontier(key)
             if found is not None:
-                yield Anatomy(key, role, value, *found)
+                lanes = range(1, min(group.run.count, LONGEST_LINE))
+                yield Anatomy(key, role, value, *found, tuple((key[0], group.run.cell(lane)) for lane in lanes))
 
     def _is_margin(self, key: Key) -> bool:
         role = self.roles.at(key)

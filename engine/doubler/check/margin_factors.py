@@ -106,7 +106,7 @@ def _missing(margins: Margins, group: FactorGroup, missing: list[Anatomy]) -> It
             "not applied",
             f"applied once: {shown(group.value)}",
             tuple(cell_name_of(k) for k in group.keys[:3]),
-            tuple(cell_name_of(m.key) for m in missing) if root is not None else (),
+            tuple(cell_name_of(m.key) for m in missing) if root is not None else tuple(map(cell_name_of, margin.line)),
         )
 
 
@@ -144,6 +144,7 @@ def _twice(group: FactorGroup, margin: Anatomy, ultimate: bool) -> Finding:
         "applied twice",
         f"applied once: {shown(group.value)}",
         tuple(cell_name_of(key) for key in (*group.keys[:3], *margin.applied[:3])),
+        tuple(map(cell_name_of, margin.line)),
     )
 
 

@@ -56,6 +56,7 @@ def _finding(margins: Margins, margin: Anatomy, due: str) -> Finding:
         f"={formula}",
         f"={mended}",
         tuple(cell_name_of(key) for key in (*margin.allowables, *margin.applied)[:12]),
+        tuple(map(cell_name_of, margin.line)),
     )
 
 

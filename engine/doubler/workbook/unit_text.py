@@ -103,6 +103,8 @@ def read_unit_text(text: str) -> UnitText:
         return NOTHING  # '1/K' is a unit, '10 mm' a quantity
     if _SYMBOL_FIRST.match(bare):
         return NOTHING  # 'A (in2)' and 't mm' are symbols with their units
+    if _symbol_over_unit(bare):
+        return NOTHING  # 'F / kN' and 'A/mm²' too, though F is a farad and A an ampere
     try:
         unit = parse_unit(bare)
     except UnitError as error:
@@ -110,6 +112,28 @@ def read_unit_text(text: str) -> UnitText:
     letters = sum(c.isalpha() for c in bare)
     doubtful = bare in _WORDLIKE or (letters <= 1 and not any(c in "%°/µ‰" for c in bare) and bare != "m")
     return UnitText(unit, doubtful)
+
+
+_USUAL = {
+    **dict.fromkeys("FPQVNRHS", "force"), **dict.fromkeys("MT", "moment"), **dict.fromkeys("EGK", "stress"),
+    **dict.fromkeys("IJ", "second_moment"), **dict.fromkeys("WZ", "volume"),
+    **dict.fromkeys("lLbBhHdDtrRsewa", "length"),
+    "A": "area", "m": "mass", "p": "stress",
+}  # fmt: skip
+"""What single letters stand for in labels (common practice)."""
+_OVER = re.compile(r"^(?P<symbol>[A-Za-z])\s*/\s*(?P<unit>[^\s/]+)$")
+
+
+def _symbol_over_unit(text: str) -> bool:
+    """Return whether a text is a symbol over its unit, as DIN and ISO 80000 head columns: the two agree."""
+    match = _OVER.match(text)
+    usual = _USUAL.get(match["symbol"]) if match else None
+    if match is None or usual is None:
+        return False
+    try:
+        return bool(parse_unit(match["unit"]).dimension == kind(usual).dimension)
+    except UnitError:
+        return False
 
 
 _BY_CASE = (

@@ -26,7 +26,8 @@ class Outcome:
     @property
     def found(self) -> bool:
         """Whether the fault was found, once and where it is."""
-        return len(self.hits) == 1
+        several = self.fault is not None and self.fault.kind == "negative-margin"
+        return len(self.hits) == 1 or (several and bool(self.hits))
 
     @property
     def name(self) -> str:
