@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from doubler.check import coverage, elastic, margins, shear_form, strength, structure, units, values
 from doubler.check.finding import SEVERITIES, Finding, rank
@@ -13,6 +13,9 @@ from doubler.check.folding import folded
 from doubler.check.short_range import short_ranges
 from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined
+
+if TYPE_CHECKING:
+    from doubler.workbook.second import SecondRecalculation
 
 Rule = Callable[[Examined], Iterable[Finding]]
 
@@ -54,6 +57,8 @@ class CheckReport:
         Worst first.
     book
         The workbook as examined, for the record.
+    second
+        The second engine's recalculation, where it was asked for (`doubler.check.confirmation`).
     """
 
     path: Path
@@ -63,6 +68,7 @@ class CheckReport:
     traced: int
     findings: list[Finding]
     book: Examined
+    second: SecondRecalculation | None = None
 
     @property
     def counts(self) -> dict[str, int]:
@@ -71,10 +77,17 @@ class CheckReport:
 
     def as_object(self) -> dict[str, Any]:
         """Return the check as the contract's JSON object."""
+        coverage: dict[str, Any] = {
+            "formulas": self.formulas,
+            "recalculated": self.recalculated,
+            "traced": self.traced,
+        }
+        if self.second is not None:
+            coverage["second"] = self.second.as_object()
         return {
             "workbook": self.path.name,
             "sha256": self.sha256,
-            "coverage": {"formulas": self.formulas, "recalculated": self.recalculated, "traced": self.traced},
+            "coverage": coverage,
             "counts": self.counts,
             "findings": [finding.as_object() for finding in self.findings],
         }

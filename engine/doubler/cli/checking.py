@@ -29,7 +29,7 @@ def run_check(options: argparse.Namespace) -> int:
         from doubler.check.record import refuse_shared_names
 
         refuse_shared_names(paths, Path(options.record))
-    reports = check_books(paths)
+    reports = check_books(paths, second=options.second)
     records = []
     if options.record:
         from doubler.check.record import write_record
@@ -48,14 +48,19 @@ def run_check(options: argparse.Namespace) -> int:
     return 1 if any(report.counts["error"] for report in reports) else 0
 
 
-def check_books(paths: Sequence[Path]) -> list[CheckReport]:
-    """Check workbooks one after the other, with a bar on a terminal."""
+def check_books(paths: Sequence[Path], *, second: bool = False) -> list[CheckReport]:
+    """Check workbooks one after the other, with a bar on a terminal; with a second engine where that is wanted."""
     from doubler.check.examination import check
 
     reports = []
     with progress("checking", len(paths)) as advance:
         for path in paths:
-            reports.append(check(path))
+            report = check(path)
+            if second:
+                from doubler.check.confirmation import confirmed
+
+                report = confirmed(report)
+            reports.append(report)
             advance(1)
     return reports
 
@@ -75,6 +80,13 @@ def show_reports(reports: Sequence[CheckReport]) -> None:
             "their units",
             "dim",
         )
+        if report.second is not None:
+            told = report.second.as_object()
+            title.append(
+                f"\n  second engine: {told['match']} match, {told['differ']} differ, "
+                f"{told['not_evaluated']} not evaluated",
+                "dim",
+            )
         screen.print(title)
         if not report.findings:
             screen.print(Text("  Nothing found: every formula was recalculated and every unit traced.", "green"))
