@@ -138,6 +138,7 @@ class Fills:
         assert sheet is not None
         trees = self.trees[gap.sheet]
         own, model = gap.cells[0], gap.model
+        far = gap.after[0] if gap.inside else None
         others = [a for a in self._line_through(sheet, model, row=gap.down) if a != model]
         alike = same = 0
         for address in others:
@@ -146,6 +147,10 @@ class Fills:
             mine = sheet.cells.get(here)
             if cell.formula is None and not _is_number(cell):
                 continue
+            if far is not None:
+                beyond = (far[0], address[1]) if gap.down else (address[0], far[1])
+                if not _alike(trees, sheet, address, beyond):
+                    continue  # the lines on both sides of the gap do not agree here: a total, a remark
             if mine is None:
                 return False
             if cell.formula is not None:
@@ -217,6 +222,14 @@ def walk(node: Node) -> Iterator[Node]:
     elif isinstance(node, Call):
         for argument in node.arguments:
             yield from walk(argument)
+
+
+def _alike(trees: dict[Address, Node], sheet: Sheet, one: Address, other: Address) -> bool:
+    """Return whether two cells hold copies of one formula, or both a number."""
+    first, second = sheet.cells[one], sheet.cells.get(other)
+    if second is None or (first.formula is None) != (second.formula is None):
+        return False
+    return trees.get(one) is trees.get(other) if first.formula is not None else _is_number(second)
 
 
 def _offset(axis: Axis, number: int, moving: bool) -> bool:
