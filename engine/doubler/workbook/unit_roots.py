@@ -52,7 +52,8 @@ def roots(
         place = suspect.source.place
         for need, items in sorted(suspect.by_need.items(), key=lambda pair: -len(pair[1])):
             left = [(j, f) for j, f in items.values() if id(f) not in taken]
-            if len({id(j) for j, _ in left}) < 2 or place in trusted:
+            lines = {(tracing.graph.group_at(*j.host) or (id(j), 0))[0] for j, _ in left}
+            if len(lines) < 2 or place in trusted:  # a fill is one formula
                 continue
             finding = _root_finding(tracing, suspect.source, need, left, cells)
             if finding is not None:
