@@ -68,6 +68,15 @@ def is_named(words: str, quantity: str) -> bool:
 
 def quantities(book: Examined) -> Iterator[tuple[Key, str]]:
     """Yield every cell that holds a number whose label and unit say what it is."""
+    if book not in _QUANTITIES:
+        _QUANTITIES[book] = list(_quantities(book))
+    yield from _QUANTITIES[book]
+
+
+_QUANTITIES: WeakKeyDictionary[Examined, list[tuple[Key, str]]] = WeakKeyDictionary()
+
+
+def _quantities(book: Examined) -> Iterator[tuple[Key, str]]:
     for sheet in book.workbook.sheets:
         for address, cell in sheet.cells.items():
             if cell.formula is None and not isinstance(cell.value, float):

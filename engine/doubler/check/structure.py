@@ -201,6 +201,9 @@ def external_links(book: Examined) -> Iterator[Finding]:
 
 def hidden_inputs(book: Examined) -> Iterator[Finding]:
     """Find hidden cells that hold numbers and feed visible results, one finding a hidden row, column or sheet."""
+    sheets = book.workbook.sheets
+    if not any(sheet.visibility != "visible" or sheet.hidden_rows or sheet.hidden_columns for sheet in sheets):
+        return
     places: dict[tuple[str, str], list[Key]] = {}
     for key in book.readers:
         cell = book.cell(key)
