@@ -145,6 +145,11 @@ OURS = [
     ('=STRESS_AXIAL(B1:C1,B2:C2,"MPa")', "kN", [("B3", "unit-label", "error")]),
     ('=STRESS_AXIAL(B2:C2,B1:C1,"MPa")', "MPa", [("B3", "unit-clash", "error")]),
     ('=STRESS_AXIAL(B1,B2,"N-mm")', "MPa", [("B3", "unit-scale", "error")]),
+    ('=STRESS_AXIAL(B1&" "&C1,B2&" "&C2,"MPa")', "MPa", []),
+    ('=STRESS_AXIAL(UNIT_ATTACH(B1,C1),B2&C2,"MPa")', "MPa", []),
+    ('=STRESS_AXIAL(B1&" kN",B2&" mm2","MPa")', "MPa", []),
+    ('=STRESS_AXIAL(B1&" N",B2&" mm2","MPa")', "MPa", [("B3", "unit-scale", "error")]),
+    ('=STRESS_AXIAL(UNIT_ATTACH(B1,C2),B2:C2,"MPa")', "MPa", [("B3", "unit-clash", "error")]),
 ]
 
 

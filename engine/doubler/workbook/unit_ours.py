@@ -5,9 +5,9 @@ from __future__ import annotations
 from dataclasses import replace
 from typing import Any
 
-from doubler.workbook.alike import UnitFault, describe, independent
+from doubler.workbook.alike import NotTraced, UnitFault, describe, independent
 from doubler.workbook.carried import RATIO, TEXT, Carried, Reading, Source, State
-from doubler.workbook.syntax import Call, Node, Omitted
+from doubler.workbook.syntax import Binary, Call, Node, Omitted
 from doubler.workbook.unit_rules import Rule
 from doubler.workbook.unit_walk import Walk
 
@@ -36,12 +36,17 @@ def ours(walk: Walk, call: Call, function: Any) -> Carried:
     from doubler.catalogue.plan import CallError, plan_for
     from doubler.errors import InputError
 
-    grids = [None if isinstance(a, Omitted) else _given(walk, a) for a in call.arguments]
+    attached = [_attached(walk, argument) for argument in call.arguments]
+    grids = [
+        None if isinstance(a, Omitted) else f"1 {put[1]}" if put else _given(walk, a)
+        for a, put in zip(call.arguments, attached, strict=True)
+    ]
     nodes = [RATIO if isinstance(a, Omitted) else None for a in call.arguments]
     sources: tuple[Source, ...] = ()
     for index, argument in enumerate(call.arguments):
         if nodes[index] is None:
-            found = _unit_of(walk, argument)
+            put = attached[index]
+            found = _unit_of(walk, put[0] if put else argument)
             nodes[index] = found
             sources += found.sources
     for node in nodes:
@@ -51,9 +56,13 @@ def ours(walk: Walk, call: Call, function: Any) -> Carried:
         bound, wanted = bind_all(function, grids)
         plan = plan_for(function, tuple(b.unit for b in bound), wanted)
     except (CallError, InputError) as error:
+        if any(
+            node is not None and node.state is State.TEXT and _is_bare(g) for node, g in zip(nodes, grids, strict=True)
+        ):
+            raise NotTraced(f"{function.name} takes text that a formula puts together") from error
         raise UnitFault("unit-clash", str(error), nodes[0] or RATIO) from error
-    for item, node, given, argument in zip(bound, nodes, grids, function.arguments, strict=False):
-        if item.unit is not None and node is not None and _is_bare(given):
+    for item, node, given, put, argument in zip(bound, nodes, grids, attached, function.arguments, strict=False):
+        if item.unit is not None and node is not None and (put or _is_bare(given)):
             _bare_fits(function.name, argument.name, item.unit, node)
     if function.result.quantity is None:
         return TEXT
@@ -74,6 +83,27 @@ def _unit_of(walk: Walk, argument: Node) -> Carried:
         return bad[0]
     numbers = [node for node in items if node.state is State.KNOWN]
     return numbers[0] if numbers else (items[0] if items else RATIO)
+
+
+def _attached(walk: Walk, argument: Node) -> tuple[Node, str] | None:
+    """Return number and unit of an argument such as ``B3&" "&B$2`` or ``UNIT_ATTACH(B3,B$2)``, else None."""
+    if isinstance(argument, Call) and argument.name == "UNIT_ATTACH" and len(argument.arguments) == 2:
+        number, *pieces = argument.arguments
+    elif isinstance(argument, Binary) and argument.operator == "&":
+        number, *pieces = _joined(argument)
+    else:
+        return None
+    texts = [_given(walk, piece) for piece in pieces]
+    if not all(isinstance(text, str) for text in texts) or isinstance(_given(walk, number), str):
+        return None
+    return number, "".join(texts).strip()
+
+
+def _joined(node: Node) -> list[Node]:
+    """Return what a chain of ``&`` joins, from left to right."""
+    if isinstance(node, Binary) and node.operator == "&":
+        return [*_joined(node.left), *_joined(node.right)]
+    return [node]
 
 
 def _given(walk: Walk, argument: Node) -> Any:
