@@ -55,7 +55,7 @@ def _callback(name: str, left_out: set[int]) -> Callable[..., Any]:
     assert function is not None
 
     def call(*arguments: Any) -> Any:
-        # That engine hands over 0.0 for an argument left out: it cannot be told from a zero, so it is told from outside.
+        # That engine hands over 0.0 for an argument left out, which looks like a zero; so it is told from outside.
         given = [None if index in left_out else _given(argument) for index, argument in enumerate(arguments)]
         grid = [[_shown(value) for value in row] for row in catalogue.call_cells(function, given).grid]
         return grid[0][0] if len(grid) == 1 and len(grid[0]) == 1 else grid

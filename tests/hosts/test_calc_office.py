@@ -32,20 +32,6 @@ CALLS = {
 
 
 @pytest.fixture(scope="module")
-def profile(tmp_path_factory):
-    made = tmp_path_factory.mktemp("calc") / "profile"
-    report = calc_commands.install(made)
-    assert report.right
-    return made
-
-
-@pytest.fixture(scope="module")
-def office(profile):
-    with calc_profile.Driven(profile) as session:
-        yield session
-
-
-@pytest.fixture(scope="module")
 def book(tmp_path_factory):
     path = tmp_path_factory.mktemp("books") / "calls.xlsx"
     made = openpyxl.Workbook()
