@@ -124,10 +124,12 @@ def alike(left: float, right: float) -> bool:
     return f"{left:.14e}" == f"{right:.14e}"
 
 
-def _compared(ufunc: Callable[..., Any], left: Any, right: Any) -> Any:
+def compared(ufunc: Callable[..., Any], left: Any, right: Any) -> Any:
     """Compare numbers at 15 digits: lanes that differ beyond these count as equal."""
     truth = ufunc(left, right)
     if type(right) is float:
+        if right == 0.0:  # no other number agrees with it in 15 digits
+            return truth
         size = NEAR * abs(right)
         near = (left >= right - size) & (left <= right + size)
     else:
@@ -142,6 +144,17 @@ def _compared(ufunc: Callable[..., Any], left: Any, right: Any) -> Any:
             if alike(float(a[lane]), float(b[lane])):
                 truth[lane] = bool(ufunc(0.0, 0.0))
     return truth
+
+
+COMPARING: dict[str, np.ufunc] = {
+    "=": np.equal,
+    "<>": np.not_equal,
+    "<": np.less,
+    "<=": np.less_equal,
+    ">": np.greater,
+    ">=": np.greater_equal,
+}
+"""The NumPy function of each comparison."""
 
 
 def _comparison(ufunc: Callable[..., Any], holds: Callable[[int], bool]) -> Callable[[Any, Any], Any]:
@@ -160,7 +173,7 @@ def _comparison(ufunc: Callable[..., Any], holds: Callable[[int], bool]) -> Call
         ):
             if a is float and b is float:
                 return holds(0) if alike(left, right) else bool(ufunc(left, right))
-            return _compared(ufunc, left, right)
+            return compared(ufunc, left, right)
         return over_lanes(left, right)
 
     return rule
@@ -187,12 +200,12 @@ BINARY: dict[str, Callable[[Any, Any], Any]] = {
     "/": quotient,
     "^": raised,
     "&": ScalarRule(_joined),
-    "=": _comparison(np.equal, lambda order: order == 0),
-    "<>": _comparison(np.not_equal, lambda order: order != 0),
-    "<": _comparison(np.less, lambda order: order < 0),
-    "<=": _comparison(np.less_equal, lambda order: order <= 0),
-    ">": _comparison(np.greater, lambda order: order > 0),
-    ">=": _comparison(np.greater_equal, lambda order: order >= 0),
+    "=": _comparison(COMPARING["="], lambda order: order == 0),
+    "<>": _comparison(COMPARING["<>"], lambda order: order != 0),
+    "<": _comparison(COMPARING["<"], lambda order: order < 0),
+    "<=": _comparison(COMPARING["<="], lambda order: order <= 0),
+    ">": _comparison(COMPARING[">"], lambda order: order > 0),
+    ">=": _comparison(COMPARING[">="], lambda order: order >= 0),
 }
 """The value rule of each infix operator."""
 

@@ -16,9 +16,19 @@ from doubler.workbook.graph import Graph
 from doubler.workbook.lanes import shape_of, tidy
 from doubler.workbook.lift import strict
 from doubler.workbook.program import Frame
+from doubler.workbook.tape import Tape
+from doubler.workbook.tape_writing import taped
 
 BLOCK = 12288
 """Cases a block: 96 kB a live column, so that a block stays in cache and the calls around it cost little."""
+
+LIVE_NUMBERS = 850_000
+LEAST_BLOCK, LARGEST_BLOCK = BLOCK, 28672
+"""Where cases are many, a block has so many that all its live columns together hold `LIVE_NUMBERS`: few calls for a
+sheet of few formulas, and a third of a shared cache at most for one of many."""
+
+TAPED_CASES = 32768
+"""From how many cases on formulas are put onto tapes: below, writing these costs more than they bring."""
 
 KEPT_BYTES = 1 << 24
 
@@ -186,7 +196,8 @@ class CaseRun:
         with strict():
             for node in once:
                 self._evaluate(node, store)
-        size = block or self._block_size(often)
+            stretches = self._stretches(often)
+        size = block or self._block_size(often, stretches)
         if self.cases > size:
             keep_memory()
         start = 0
@@ -197,15 +208,36 @@ class CaseRun:
                 if shape_of(value) != ():
                     store.values[node] = tidy(value[:, start : start + count])
             with strict():
-                for node in often:
-                    self._evaluate(node, store)
+                for stretch in stretches:
+                    self._advance(stretch, count)
             yield self._collected(start, count, store)
             start += count
 
-    def _block_size(self, often: list[int]) -> int:
+    def _stretches(self, often: list[int]) -> list[int | Tape]:
+        """Put stretches of formulas onto tapes where the cases are so many that it pays."""
+        often = [node for node in often if node not in self.reasons]
+        if self.cases < TAPED_CASES:
+            return list(often)
+        outputs = {node for _, node, _, _ in self.outputs}
+        return taped(self.graph, self.plan.binder, self.plan.store, often, outputs)
+
+    def _advance(self, stretch: int | Tape, count: int) -> None:
+        """Evaluate a group, or a stretch of them, for the block that the store holds."""
+        store = self.plan.store
+        if isinstance(stretch, int):
+            self._evaluate(stretch, store)
+        elif stretch.idle or not self.reasons.keys().isdisjoint(stretch.nodes) or not stretch.run(store, count):
+            for node in stretch.nodes:
+                self._evaluate(node, store)
+
+    def _block_size(self, often: list[int], stretches: list[int | Tape]) -> int:
         """Choose the cases a block so that wide fills do not leave the cache."""
         widest = max((self.graph.groups[node].run.count for node in often), default=1)
-        return max(BLOCK // max(widest // 4, 1), 64)
+        size = BLOCK
+        if self.cases >= TAPED_CASES:
+            live = sum(1 if isinstance(stretch, int) else stretch.live for stretch in stretches)
+            size = min(max(LIVE_NUMBERS // max(live, 1) // 1024 * 1024, LEAST_BLOCK), LARGEST_BLOCK)
+        return max(size // max(widest // 4, 1), 64)
 
     def _evaluate(self, node: int, store: Store) -> None:
         if node in self.reasons:
