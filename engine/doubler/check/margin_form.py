@@ -21,6 +21,7 @@ from doubler.workbook.addresses import cell_name
 from doubler.workbook.examined import cell_name_of, shown
 
 _MINUS_ONE = re.compile(r"^(.*\S)\s*-\s*1(?:\.0*)?\s*$", re.DOTALL)
+_ROUNDS = re.compile(r"(?:ROUND|ROUNDUP|ROUNDDOWN|TRUNC|INT|FLOOR|CEILING|MROUND)(?:\.MATH)?\(", re.IGNORECASE)
 _SAYS = {
     LACKS_ONE: "it is allowable over load, a reserve factor: the -1 is missing",
     INVERTED: "it is load over allowable: the ratio is upside down",
@@ -42,19 +43,22 @@ def margin_forms(margins: Margins) -> Iterator[Finding]:
 def _finding(margins: Margins, margin: Anatomy, due: str) -> Finding:
     cell = margins.book.cell(margin.key)
     formula = (cell.formula if cell is not None else None) or ""
-    mended = _mended(formula, margin.form, due)
+    rounded = margin.form not in (LACKS_ONE, PROPER) and _ROUNDS.search(formula)
+    mended = "" if rounded else _mended(formula, margin.form, due)
     reserve = margin.reserve(margin.value)
     right = None if reserve is None else reserve - 1 if due == PROPER else reserve
     name = "margin of safety" if due == PROPER else "reserve factor"
     value = "" if right is None else f" ({shown(margin.value)} as written, {shown(right)} when mended)"
+    law = "allowable/(factors × load)" + (" - 1" if due == PROPER else "")
+    advice = f"write ={mended}" if mended else f"write {law} inside the rounding"
     return Finding(
         margin.key[0],
         cell_name(*margin.key[1]),
         "margin-form",
         "error",
-        f"The cell is labelled a {name} and {_SAYS[margin.form]}{value}; write ={mended}.",
+        f"The cell is labelled a {name} and {_SAYS[margin.form]}{value}; {advice}.",
         f"={formula}",
-        f"={mended}",
+        f"={mended}" if mended else "",
         tuple(cell_name_of(key) for key in (*margin.allowables, *margin.applied)[:12]),
         tuple(map(cell_name_of, margin.line)),
     )

@@ -74,6 +74,7 @@ def parser() -> argparse.ArgumentParser:
     p.add_argument("books", nargs="+", metavar="BOOK", help="workbooks to check")
     p.add_argument("--record", metavar="DIR", help="write the check record there")
     p.add_argument("--json", metavar="FILE", help="write the findings as JSON; - prints them")
+    p.add_argument("--mended", metavar="FILE", help="write a copy with the mends that are beyond doubt, marked")
     p.add_argument("--second", action="store_true", help="let a second, independent engine recalculate too")
 
     p = verb("explain", "show the chain behind one cell as a hand calculation", "doubler explain strap.xlsx Strap!D30")

@@ -11,6 +11,7 @@ from typing import TYPE_CHECKING
 
 from doubler.cli.progress import progress
 from doubler.cli.terminal import CAUTION, console
+from doubler.errors import InputError
 
 if TYPE_CHECKING:
     from doubler.check.examination import CheckReport
@@ -25,6 +26,10 @@ def run_check(options: argparse.Namespace) -> int:
     paths = [Path(book) for book in options.books]
     if options.json and options.json != "-":
         refuse_target(Path(options.json))
+    if options.mended:
+        if len(paths) > 1:
+            raise InputError(f"--mended {options.mended} is for one workbook, and {len(paths)} are given; name one")
+        refuse_target(Path(options.mended))
     if options.record:
         from doubler.check.record import refuse_shared_names
 
@@ -40,6 +45,11 @@ def run_check(options: argparse.Namespace) -> int:
         print(text)
     else:
         show_reports(reports)
+    if options.mended:
+        from doubler.check.mended_copy import mended_as_text, write_mended
+
+        lines = mended_as_text(write_mended(reports[0], Path(options.mended)))
+        print(f"{len(lines)} mended in {options.mended}", *lines, sep="\n  ", file=sys.stderr)
     for record in records:
         print(f"check record of {record.name}: {record.html}", file=sys.stderr)
     if options.json and options.json != "-":
