@@ -330,7 +330,7 @@ def exponent_from_secants(stress_70: Stress, stress_85: Stress) -> Ratio:
     Notes
     -----
     The curve then has its proof stress at stress_70 with the offset 3/7 of stress_70/E: give these two to the other
-    functions of CURVE_RO_.
+    Ramberg–Osgood functions, such as CURVE_RO_STRAIN.
 
     References
     ----------
