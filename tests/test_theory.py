@@ -24,15 +24,26 @@ STATED = [
 ]
 
 
-@pytest.fixture(scope="module")
-def sketches() -> ModuleType:
-    spec = importlib.util.spec_from_file_location("make_sketches", DOCS / "make_sketches.py")
+def script(name: str) -> ModuleType:
+    spec = importlib.util.spec_from_file_location(name, DOCS / f"{name}.py")
     assert spec is not None
     assert spec.loader is not None
     module = importlib.util.module_from_spec(spec)
-    sys.modules["make_sketches"] = module
+    sys.modules[name] = module
     spec.loader.exec_module(module)
     return module
+
+
+@pytest.fixture(scope="module")
+def sketches() -> ModuleType:
+    return script("make_sketches")
+
+
+@pytest.fixture(scope="module")
+def section_sketches(sketches: ModuleType) -> ModuleType:
+    """The other script takes its colours from the first."""
+    del sketches
+    return script("make_section_sketches")
 
 
 @pytest.mark.parametrize(("name", "formula"), STATED)
@@ -56,8 +67,10 @@ def test_every_topic_has_formulas_sketches_limits_and_sources() -> None:
         assert f"({page.name})" in index
 
 
-def test_every_sketch_is_drawn_and_stored_as_the_script_draws_it(sketches: ModuleType, tmp_path: Path) -> None:
-    drawn = {path.name for path in sketches.draw_all(tmp_path)}
+def test_every_sketch_is_drawn_and_stored_as_the_script_draws_it(
+    sketches: ModuleType, section_sketches: ModuleType, tmp_path: Path
+) -> None:
+    drawn = {path.name for made in (sketches, section_sketches) for path in made.draw_all(tmp_path)}
     stored = {path.name for path in (DOCS / "images").glob("sketch_*.svg")}
     assert drawn == stored
     assert all((tmp_path / name).stat().st_size > 2000 for name in drawn)
@@ -97,3 +110,17 @@ def test_centroids_are_drawn_where_the_functions_put_them(sketches: ModuleType) 
         loops = [outline.closed(*np.transpose(np.asarray(ring, dtype=float))) for ring in rings]
         whole = loops[0] if len(loops) == 1 else outline.without(*loops)
         assert sketches.centroid(rings) == pytest.approx([float(c) for c in outline.centroid(whole)], abs=1e-9), name
+
+
+def test_the_sketched_column_curve_and_interaction_are_those_of_the_functions(section_sketches: ModuleType) -> None:
+    mechanics.load()
+    column, pair = catalogue.lookup("BUCKLING_COLUMN_STRESS"), catalogue.lookup("MARGIN_BOLT_COMBINED")
+    assert column is not None
+    assert pair is not None
+    curves = section_sketches.column_curve().axes[0].lines[:2]
+    for line in curves:
+        slenderness, stress = np.asarray(line.get_xdata()), np.asarray(line.get_ydata())
+        assert np.allclose(column(slenderness, 70e3, 300.0), stress, rtol=1e-9)
+    ray = section_sketches.interaction().axes[0].lines
+    low, high = np.ravel(ray[2].get_data()), np.ravel(ray[3].get_data())
+    assert np.allclose(high / low, 1.0 + pair(low[0], low[1], 1.0, 1.0, 1.0, "exponents 2 and 3"), rtol=1e-6)
