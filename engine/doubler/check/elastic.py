@@ -44,7 +44,7 @@ def poisson_ranges(book: Examined) -> Iterator[Finding]:
         yield Finding(key[0], cell_name(*key[1]), "poisson-range", "error", message, text, expected)
 
 
-def modulus_mismatches(book: Examined) -> Iterator[Finding]:
+def modulus_mismatches(book: Examined, doubtful: float = DOUBTFUL) -> Iterator[Finding]:
     """Find E, G, K and ν given side by side for one isotropic material that do not agree."""
     for cells in _materials(book):
         values = {name: _si(book, key) for name, key in cells.items()}
@@ -53,7 +53,7 @@ def modulus_mismatches(book: Examined) -> Iterator[Finding]:
         numbers = {name: value for name, value in values.items() if value is not None}
         if not -1.0 < numbers.get(_NU, 0.3) < 0.5 or any(v <= 0 for n, v in numbers.items() if n != _NU):
             continue
-        yield from _judge(book, cells, numbers)
+        yield from _judge(book, cells, numbers, doubtful)
 
 
 def _si(book: Examined, key: Key) -> float | None:
@@ -97,10 +97,10 @@ def _decisive(group: dict[str, Key]) -> bool:
     return len(group) >= 3
 
 
-def _judge(book: Examined, cells: dict[str, Key], values: dict[str, float]) -> Iterator[Finding]:
+def _judge(book: Examined, cells: dict[str, Key], values: dict[str, float], doubtful: float) -> Iterator[Finding]:
     """Compare each constant with what the others give; report the one whose change mends all."""
     worst = max(_disagreements(values).items(), key=lambda item: item[1], default=None)
-    if worst is None or worst[1] < DOUBTFUL:
+    if worst is None or worst[1] < doubtful:
         return
     name = _culprit(values)
     key = cells[name]
@@ -114,7 +114,7 @@ def _judge(book: Examined, cells: dict[str, Key], values: dict[str, float]) -> I
         key[0],
         cell_name(*key[1]),
         "modulus-mismatch",
-        "error" if worst[1] >= SURE else "warning",
+        "error" if worst[1] >= max(SURE, doubtful) else "warning",
         f"{_NAMES[name]} = {given} does not agree with {others} of the same isotropic material, which give {right} "
         f"({100 * worst[1]:.1f} % apart); correct the constant that is wrong, or say that the material is not "
         "isotropic.",

@@ -3,13 +3,16 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+from functools import partial
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from doubler.check import coverage, elastic, margins, shear_form, strength, structure, units, values
 from doubler.check.finding import SEVERITIES, Finding, rank
 from doubler.check.folding import folded
+from doubler.check.policy import Policy, policy_for
+from doubler.check.policy_rules import margins_too_small, units_not_allowed
 from doubler.check.short_range import short_ranges
 from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined
@@ -43,6 +46,17 @@ RULES: tuple[Rule, ...] = (
 """All rules; each looks at the whole workbook and yields what it finds."""
 
 
+def rules_under(policy: Policy) -> tuple[Rule, ...]:
+    """Return all rules with a policy's tolerances, factors, smallest margin and units."""
+    given: dict[Rule, Rule] = {
+        values.stale_values: partial(values.stale_values, relative=policy.stored),
+        elastic.modulus_mismatches: partial(elastic.modulus_mismatches, doubtful=policy.moduli),
+        strength.margin_findings: partial(strength.margin_findings, policy=policy),
+    }
+    more = (partial(margins_too_small, policy=policy), partial(units_not_allowed, policy=policy))
+    return (*(given.get(rule, rule) for rule in RULES), *more)
+
+
 @dataclass(frozen=True)
 class CheckReport:
     """The check of one workbook.
@@ -59,6 +73,8 @@ class CheckReport:
         The workbook as examined, for the record.
     second
         The second engine's recalculation, where it was asked for (`doubler.check.confirmation`).
+    policy, silenced
+        The policy under which it was checked, and the findings that it silences.
     """
 
     path: Path
@@ -69,6 +85,8 @@ class CheckReport:
     findings: list[Finding]
     book: Examined
     second: SecondRecalculation | None = None
+    policy: Policy = field(default_factory=Policy)
+    silenced: list[Finding] = field(default_factory=list)
 
     @property
     def counts(self) -> dict[str, int]:
@@ -84,16 +102,19 @@ class CheckReport:
         }
         if self.second is not None:
             coverage["second"] = self.second.as_object()
-        return {
+        found = {
             "workbook": self.path.name,
             "sha256": self.sha256,
             "coverage": coverage,
             "counts": self.counts,
             "findings": [finding.as_object() for finding in self.findings],
         }
+        if self.policy.path is not None:
+            found["policy"] = self.policy.as_object(self.silenced)
+        return found
 
 
-def check(path: Path | str, rules: Iterable[Rule] = RULES) -> CheckReport:
+def check(path: Path | str, rules: Iterable[Rule] | None = None, policy: Path | str | None = None) -> CheckReport:
     """Check a workbook.
 
     Parameters
@@ -101,7 +122,9 @@ def check(path: Path | str, rules: Iterable[Rule] = RULES) -> CheckReport:
     path : Path or str
         An ``.xlsx`` or ``.xlsm`` file; it is only read.
     rules : iterable of Rule, optional
-        The rules to apply.
+        The rules to apply; all where they are left out.
+    policy : Path or str, optional
+        The policy file; where it is left out, ``doubler.toml`` beside the workbook, if there is one.
 
     Returns
     -------
@@ -112,17 +135,30 @@ def check(path: Path | str, rules: Iterable[Rule] = RULES) -> CheckReport:
     InputError
         The file is no workbook, is damaged, encrypted or hostile.
     """
-    book = Examined.read(path)
-    return report_on(book, Path(path), rules)
+    asked = policy_for(Path(path), policy)
+    return report_on(Examined.read(path), Path(path), rules, asked)
 
 
-def report_on(book: Examined, path: Path, rules: Iterable[Rule] = RULES) -> CheckReport:
+def report_on(
+    book: Examined, path: Path, rules: Iterable[Rule] | None = None, policy: Policy | None = None
+) -> CheckReport:
     """Apply the rules to a workbook that has been examined."""
-    found = [finding for rule in rules for finding in rule(book)]
+    policy = policy or Policy()
+    found = [finding for rule in (rules_under(policy) if rules is None else rules) for finding in rule(book)]
     total = recalculated = 0
     for key, _ in book.formulas():
         total += 1
         recalculated += not isinstance(book.value(key), NotEvaluated)
     lost = sum(len(keys) for keys in book.tracing.not_traced().values())
-    findings = sorted(folded(book, found), key=rank)
-    return CheckReport(path, book.workbook.sha256, total, recalculated, total - lost, findings, book)
+    kept, silenced = policy.applied(folded(book, found))
+    return CheckReport(
+        path,
+        book.workbook.sha256,
+        total,
+        recalculated,
+        total - lost,
+        sorted(kept, key=rank),
+        book,
+        policy=policy,
+        silenced=silenced,
+    )

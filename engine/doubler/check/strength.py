@@ -9,13 +9,18 @@ from doubler.check.margin_allowables import allowables_mixed
 from doubler.check.margin_anatomy import Margins
 from doubler.check.margin_factors import factor_findings
 from doubler.check.margin_form import margin_forms
-from doubler.check.roles import Roles
+from doubler.check.policy import Policy
+from doubler.check.policy_rules import factors_too_small
+from doubler.check.roles import Roles, Table
 from doubler.workbook.examined import Examined
 
+NO_POLICY = Policy()
 
-def margin_findings(book: Examined) -> Iterator[Finding]:
+
+def margin_findings(book: Examined, policy: Policy = NO_POLICY) -> Iterator[Finding]:
     """Find margins of the wrong form, with the wrong allowable, without a factor or with one too many."""
-    margins = Margins(book, Roles(book))
+    margins = Margins(book, Roles(book, Table(policy.terms)))
+    yield from factors_too_small(margins, policy)
     yield from margin_forms(margins)
     yield from allowables_mixed(margins)
     yield from factor_findings(margins)

@@ -25,7 +25,7 @@ RELATIVE = 1e-9
 _NUMBER_TEXT = re.compile(r"^\s*[+\-−]?\s*(?:\d[\d\s.,'’\u00a0]*|[.,]\d+)(?:[eE][+\-]?\d+)?\s*%?\s*$")
 
 
-def stale_values(book: Examined) -> Iterator[Finding]:
+def stale_values(book: Examined, relative: float = RELATIVE) -> Iterator[Finding]:
     """Find stored values that are not what the formula gives; what only follows from them stands under them."""
     stale: dict[Key, Any] = {}
     empty: list[Key] = []
@@ -36,7 +36,7 @@ def stale_values(book: Examined) -> Iterator[Finding]:
         if cell.value is None and value not in (None, ""):
             empty.append(key)
         elif (
-            not _same(cell.value, value)
+            not _same(cell.value, value, relative)
             and not _cancelled(book, key, cell.value, value)
             and not _both_reasons(book, key, cell.value, value)
         ):
@@ -79,11 +79,11 @@ def _never_stored(book: Examined, empty: list[Key]) -> Finding:
     )
 
 
-def _same(stored: Any, value: Any) -> bool:
+def _same(stored: Any, value: Any, relative: float = RELATIVE) -> bool:
     if isinstance(stored, bool) or isinstance(value, bool):
         return stored is value
     if isinstance(stored, float) and isinstance(value, float):
-        return math.isclose(stored, value, rel_tol=RELATIVE, abs_tol=1e-12)
+        return math.isclose(stored, value, rel_tol=relative, abs_tol=1e-12)
     if stored in (None, "") and value in (None, ""):
         return True
     if value is None and stored == 0.0:

@@ -75,6 +75,8 @@ def parser() -> argparse.ArgumentParser:
     p.add_argument("--record", metavar="DIR", help="write the check record there")
     p.add_argument("--json", metavar="FILE", help="write the findings as JSON; - prints them")
     p.add_argument("--mended", metavar="FILE", help="write a copy with the mends that are beyond doubt, marked")
+    p.add_argument("--policy", metavar="FILE", help="the policy file (default: doubler.toml beside the workbook)")
+    p.add_argument("--against", metavar="OLD", help="an earlier revision: say what changed, and which findings")
     p.add_argument("--second", action="store_true", help="let a second, independent engine recalculate too")
 
     p = verb("explain", "show the chain behind one cell as a hand calculation", "doubler explain strap.xlsx Strap!D30")

@@ -26,6 +26,8 @@ def run_check(options: argparse.Namespace) -> int:
     paths = [Path(book) for book in options.books]
     if options.json and options.json != "-":
         refuse_target(Path(options.json))
+    if options.against and len(paths) > 1:
+        raise InputError(f"--against {options.against} is for one workbook, and {len(paths)} are given; name one")
     if options.mended:
         if len(paths) > 1:
             raise InputError(f"--mended {options.mended} is for one workbook, and {len(paths)} are given; name one")
@@ -34,17 +36,27 @@ def run_check(options: argparse.Namespace) -> int:
         from doubler.check.record import refuse_shared_names
 
         refuse_shared_names(paths, Path(options.record))
-    reports = check_books(paths, second=options.second)
+    reports = check_books(paths, second=options.second, policy=options.policy)
     records = []
     if options.record:
         from doubler.check.record import write_record
 
         records = [write_record(report, Path(options.record)) for report in reports]
-    text = json.dumps([report.as_object() for report in reports], ensure_ascii=False, indent=1)
+    objects = [report.as_object() for report in reports]
+    lines: list[str] = []
+    if options.against:
+        from doubler.check.against import as_lines, compare
+        from doubler.check.examination import check
+
+        comparison = compare(reports[0], check(Path(options.against), policy=options.policy))
+        objects[0]["against"] = comparison.as_object()
+        lines = as_lines(comparison)
+    text = json.dumps(objects, ensure_ascii=False, indent=1)
     if options.json == "-":
         print(text)
     else:
         show_reports(reports)
+        print(*lines, sep="\n", end="\n" if lines else "")
     if options.mended:
         from doubler.check.mended_copy import mended_as_text, write_mended
 
@@ -58,14 +70,14 @@ def run_check(options: argparse.Namespace) -> int:
     return 1 if any(report.counts["error"] for report in reports) else 0
 
 
-def check_books(paths: Sequence[Path], *, second: bool = False) -> list[CheckReport]:
+def check_books(paths: Sequence[Path], *, second: bool = False, policy: str | None = None) -> list[CheckReport]:
     """Check workbooks one after the other, with a bar on a terminal; with a second engine where that is wanted."""
     from doubler.check.examination import check
 
     reports = []
     with progress("checking", len(paths)) as advance:
         for path in paths:
-            report = check(path)
+            report = check(path, policy=policy)
             if second:
                 from doubler.check.confirmation import confirmed
 
