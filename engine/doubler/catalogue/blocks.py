@@ -6,7 +6,6 @@ function of its arrays; blocks are independent of one another: the result is the
 
 from __future__ import annotations
 
-import itertools
 import os
 import threading
 from collections.abc import Callable
@@ -19,12 +18,12 @@ BLOCK = 65536
 SHARED = 262144
 """From how many lanes on the blocks are shared over threads; below, waking a thread costs more than it brings."""
 
-SHARED_BLOCK = 524288
-"""Lanes at a time where threads share the work. A thread that finds the interpreter's lock taken wakes later than a
-short NumPy loop lasts, so that with small blocks one thread would wait until the other is done."""
+SHARED_BLOCK = 196608
+"""Lanes at a time where threads share the work, each taking the next block when it is done with one.
 
-HEAD_START = 65536
-"""Lanes that the calling thread takes more than the others: they have to be woken first."""
+A thread that finds the interpreter's lock taken wakes later than a short NumPy loop lasts: small blocks would make one
+wait for the other. Large ones would make the first wait for a second whose core is busy elsewhere.
+"""
 
 MOST_THREADS = 4
 """More threads than these wait for the memory, not for one another."""
@@ -72,36 +71,43 @@ def in_shares(lanes: int, work: Callable[[int, int], list[Found]]) -> list[Found
     count = threads_for(lanes)
     if count < 2:
         return work(0, lanes)
-    others = (lanes - HEAD_START) // count
-    ends = [0, *(lanes - others * k for k in range(count - 1, -1, -1))]
-    waiting: list[Future[list[Found]] | None] = [
-        _submitted(work, start, stop) for start, stop in itertools.pairwise(ends[1:])
-    ]
-    found: list[Found] = []
-    fault: BaseException | None = None
-    try:
-        found += work(ends[0], ends[1])
-    except BaseException as error:  # raised again below, when no thread writes any more
-        fault = error
-    for k, future in enumerate(waiting, start=1):
-        try:
-            found += work(ends[k], ends[k + 1]) if future is None else future.result()
-        except BaseException as error:
-            fault = fault or error
-    if fault is not None:
-        raise fault
-    return found
+    starts = iter(range(0, lanes, SHARED_BLOCK))
+    taking = threading.Lock()
+    found: dict[int, list[Found]] = {}
+    faults: list[BaseException] = []
+
+    def take_blocks() -> None:
+        """Take one block after the other until none is left, or one has failed."""
+        while not faults:
+            with taking:
+                start = next(starts, None)
+            if start is None:
+                return
+            try:
+                found[start] = work(start, min(start + SHARED_BLOCK, lanes))
+            except BaseException as error:  # raised again below, when no thread writes any more
+                faults.append(error)
+
+    helping = [_submitted(take_blocks) for _ in range(count - 1)]
+    take_blocks()
+    for future in helping:
+        # One that has not begun by now, its core being busy, has nothing left to do.
+        if future is not None and not future.cancel():
+            future.result()
+    if faults:
+        raise faults[0]
+    return [item for start in sorted(found) for item in found[start]]
 
 
-def _submitted(work: Callable[[int, int], list[Found]], start: int, stop: int) -> Future[list[Found]] | None:
-    """Hand a share to the pool; None where no thread can be had (the interpreter is ending)."""
+def _submitted(work: Callable[[], None]) -> Future[None] | None:
+    """Hand work to the pool; None where no thread can be had (the interpreter is ending)."""
     global _pool  # noqa: PLW0603  # one pool for the process, made when first needed
     with _lock:
         if _pool is None:
             _pool = ThreadPoolExecutor(MOST_THREADS, thread_name_prefix="doubler-block")
         pool = _pool
     try:
-        return pool.submit(work, start, stop)
+        return pool.submit(work)
     except RuntimeError:
         return None
 

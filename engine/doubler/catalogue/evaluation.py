@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from collections.abc import Sequence
 from dataclasses import dataclass
 from typing import Any
@@ -121,7 +122,7 @@ def _evaluate_long(function: WorksheetFunction, plan: Plan, values: Sequence[Any
                 # The limits are looked at after the kernel has run: its arguments are then in the core's cache. What it
                 # gave for lanes outside them is thrown away.
                 fault: Exception | None = None
-                raw: Any = None
+                raw: Any = None  # the last block's memory, still in the core's cache, is taken for the next
                 try:
                     raw = function.kernel(*scaled)
                 except Exception as error:  # told below where the limits hold, else the limits are to blame
@@ -161,8 +162,19 @@ def _into(function: WorksheetFunction, plan: Plan, raw: Any, out: Array, marks: 
         out[...] = raw
     if plan.result_offset:
         out -= shift(plan)
-    np.isfinite(out, out=marks)
-    return Outcome(out) if np.logical_and.reduce(marks, axis=None) else _without_lost(function, out)
+    return Outcome(out) if _all_finite(out, marks) else _without_lost(function, out)
+
+
+def _all_finite(values: Array, marks: Any) -> bool:
+    """Return whether all numbers are finite; `marks` is room for one bool a number.
+
+    The sum of numbers of which one is NaN or infinite is not finite: a finite one settles it in one quick pass. (One
+    that is not may be the overflow of a sum of finite numbers: then each is looked at.)
+    """
+    if math.isfinite(np.einsum("i->", values.reshape(-1))):
+        return True
+    np.isfinite(values, out=marks)
+    return bool(np.logical_and.reduce(marks, axis=None))
 
 
 def _scaled(value: Any, factor: float | None, offset: float, out: Any = None) -> Any:
