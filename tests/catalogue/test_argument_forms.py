@@ -220,3 +220,17 @@ def test_the_same_texts_do_not_share_a_reading_with_look_alikes() -> None:
     assert axial("12 kN", AREA, "MPa").grid == [[80.0]]
     for _ in range(2):
         assert axial("12 kN", "0 mm^2", "MPa").grid == [[NUM]]
+
+
+def test_a_unit_that_begins_with_one_heads_a_column_and_is_wanted_of_a_result() -> None:
+    result = call("STRAIN_THERMAL", [["1/K"], [1e-5], [2e-5]], "100 K", "mm/mm")
+    assert result.grid == [[1e-3], [2e-3]]
+    loads, none, constants = (
+        [["N/mm"], [100.0], [0.0], [0.0]],
+        [["N"], [0.0], [0.0], [0.0]],
+        ("2 mm", "70 GPa", "70 GPa"),
+    )
+    curved = call("PLY_LAMINATE_CURVATURE", loads, none, "0 deg", *constants, 0.3, "27 GPa", "1/m")
+    assert not curved.reasons
+    fraction = call("STRAIN_THERMAL", [["1/2"], [1e-5]], "100 K", "mm/mm")
+    assert fraction.reasons

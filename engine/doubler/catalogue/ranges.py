@@ -118,6 +118,8 @@ def _is_heading(text: str) -> bool:
             f"entry 1 is {text!r}, which may stand for a missing value; write a number, or a heading with its unit in "
             "brackets such as 'Margin [-]'"
         )
+    if stripped.startswith("1/") and not stripped[2:3].isdigit():  # a unit: 1/K, 1/GPa
+        return True
     return not (stripped[:1].isdigit() or (stripped[:1] in "+-.−" and stripped[1:2].isdigit()))
 
 
