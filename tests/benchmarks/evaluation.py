@@ -2,15 +2,13 @@
 
 from __future__ import annotations
 
-import statistics
-import subprocess
-import sys
 import time
+import tracemalloc
 from pathlib import Path
 from typing import Any
 
 import numpy as np
-from tests.benchmarks.ratio import Ratio, side_by_side
+from tests.benchmarks.ratio import Ratio, in_fresh_processes, side_by_side
 
 from doubler.workbook.evaluate import evaluate_blocks
 from doubler.workbook.graph import Graph, build_graph
@@ -151,18 +149,28 @@ def script() -> Any:
 
 
 def once(which: str) -> float:
-    """Run one of the two once and return its seconds: called in a process of its own, as a script runs."""
-    graph, given, code = shaft(), inputs(CASES), script()
-    start = time.perf_counter()
-    _ = ours(graph, given) if which == "ours" else plain(code, given)
-    return time.perf_counter() - start
+    """Run one of the two once and return its seconds: called in a process of its own."""
+    graph, code = shaft(), script()
+
+    def run(given: dict[str, Any]) -> float:
+        start = time.perf_counter()
+        _ = ours(graph, given) if which == "ours" else plain(code, given)
+        return time.perf_counter() - start
+
+    run(inputs(1000))
+    return run(inputs(CASES))
 
 
-def alone(which: str) -> float:
-    """Return the seconds of one run in a fresh process: memory that an earlier run left behind helps neither."""
-    call = f"from tests.benchmarks.evaluation import once; print(once({which!r}))"
-    done = subprocess.run([sys.executable, "-c", call], check=True, capture_output=True, text=True)
-    return float(done.stdout)
+def peak_memory(graph: Graph, count: int) -> int:
+    """Return the most memory that an evaluation in blocks holds at a time, beside its inputs, in bytes."""
+    given = {("S", _address(cell)): values for cell, values in inputs(count).items()}
+    every = [("S", _address(cell)) for cell, _, _ in _lines()]
+    tracemalloc.start()
+    for _ in evaluate_blocks(graph, given, every):
+        pass
+    _, peak = tracemalloc.get_traced_memory()
+    tracemalloc.stop()
+    return peak
 
 
 def ratios() -> list[Ratio]:
@@ -171,8 +179,8 @@ def ratios() -> list[Ratio]:
     mine, theirs = ours(graph, given), plain(code, given)
     for cell in ("B25", "B60"):
         np.testing.assert_allclose(mine[cell], theirs[cell], rtol=1e-9, atol=1e-9)
-    times = [(alone("plain"), alone("ours")) for _ in range(9)]
-    faster = statistics.median(first / second for first, second in times)
+    faster = in_fresh_processes("evaluation", "plain", "ours")
+    memory = peak_memory(graph, CASES) / peak_memory(graph, CASES // 10)
     long, short = fill(FILL), fill(10)
     outputs = [("S", (1, 2))]
 
@@ -183,5 +191,6 @@ def ratios() -> list[Ratio]:
     many, few = side_by_side(lambda: run(long), lambda: run(short), rounds=15)
     return [
         Ratio("60 formulas over 1,000,000 cases: whole-array NumPy / ours", faster, 3.0, "at least"),
+        Ratio("peak memory beside the inputs: 1,000,000 cases / 100,000 cases", memory, 1.25, "at most"),
         Ratio("a fill of 10,000 copies / of 10 copies, evaluated", many / few, 10.0, "at most"),
     ]

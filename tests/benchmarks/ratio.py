@@ -2,6 +2,9 @@
 
 from __future__ import annotations
 
+import statistics
+import subprocess
+import sys
 import time
 from collections.abc import Callable
 from dataclasses import dataclass
@@ -71,3 +74,28 @@ def side_by_side(
                 work()
             best[index] = min(best[index], (time.perf_counter() - start) / calls[index])
     return best[0], best[1]
+
+
+def in_fresh_processes(module: str, first: str, second: str, *, rounds: int = 11) -> float:
+    """Return how many times as long the first of two things takes as the second, each run as a script runs.
+
+    Each is run once in a process of its own, in turn, and the median over the rounds counts. A process that has just
+    begun has to be given its memory page by page; that is part of what large arrays cost, and a second run in the same
+    process would not show it. Before the clock starts, the module's `once` runs the same on few cases, so that imports
+    and first calls count for neither.
+
+    Parameters
+    ----------
+    module : str
+        A module of this folder with a function ``once(which)`` that returns the seconds of one run.
+    first, second : str
+        What `once` is called with.
+    rounds : int, optional
+    """
+
+    def alone(which: str) -> float:
+        call = f"from tests.benchmarks.{module} import once; print(once({which!r}))"
+        done = subprocess.run([sys.executable, "-c", call], check=True, capture_output=True, text=True)
+        return float(done.stdout)
+
+    return statistics.median(alone(first) / alone(second) for _ in range(rounds))
