@@ -117,16 +117,6 @@ def test_constant_offsets_and_indirect_places_move_with_their_copies() -> None:
     assert [shown(found, "C1"), shown(found, "C2")] == [6.0, 5.0]
 
 
-def test_a_subtotal_over_other_subtotals_or_hidden_rows_is_not_evaluated() -> None:
-    cells = {"A1": 1, "A2": 2, "A3": "=SUBTOTAL(9,A1:A2)", "A4": "=SUBTOTAL(9,A1:A3)", "A5": "=SUM(A1:A3)"}
-    found = run(cells)
-    assert [shown(found, "A3"), shown(found, "A5")] == [3.0, 6.0]
-    assert "other subtotals in its range" in shown(found, "A4")
-    hidden = sheet("S", {"A1": 1, "A2": 2, "A3": "=SUBTOTAL(109,A1:A2)"})
-    hidden.hidden_rows.add(2)
-    assert "hidden rows" in shown(run(book(hidden)), "A3")
-
-
 def test_every_native_function_names_a_unit_rule_and_has_words() -> None:
     from doubler.workbook.natives import NATIVES
 

@@ -21,6 +21,7 @@ from doubler.workbook.graph import Graph, build_graph
 from doubler.workbook.lanes import Grid
 from doubler.workbook.model import Cell, Sheet, Workbook
 from doubler.workbook.run import BLOCK, CaseRun
+from doubler.workbook.whole import WholeRun
 
 __all__ = [
     "BLOCK",
@@ -124,7 +125,8 @@ def evaluate_blocks(
     block: int | None = None,
 ) -> Iterator[Evaluation]:
     """Evaluate a workbook block by block of cases; see `evaluate`. Memory does not grow with the number of cases."""
-    yield from CaseRun(graph, inputs or {}, outputs).blocks(block)
+    run = WholeRun(graph) if not inputs and outputs is None else CaseRun(graph, inputs or {}, outputs)
+    yield from run.blocks(block)
 
 
 @dataclass(frozen=True, slots=True)

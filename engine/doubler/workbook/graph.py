@@ -15,7 +15,7 @@ from doubler.workbook.parse import FormulaError, FormulaParser
 from doubler.workbook.program import Program, compile_tree
 from doubler.workbook.references import address_text, read_area
 from doubler.workbook.resolve import Resolver
-from doubler.workbook.subtotals_within import refuse_nested_subtotals
+from doubler.workbook.subtotals_within import SubtotalRanges, holds_subtotal
 from doubler.workbook.syntax import Node, RangeRef
 
 
@@ -120,7 +120,6 @@ def build_graph(workbook: Workbook) -> Graph:
     """
     builder = _Builder(workbook)
     groups = builder.groups()
-    refuse_nested_subtotals(workbook, builder.geometry, groups)
     while True:
         occupancy = _occupied(workbook, groups)
         edges, areas = _edges(builder.geometry, groups, occupancy)
@@ -156,6 +155,8 @@ class _Builder:
         self.resolver = Resolver(workbook)
         self.programs: dict[tuple[int, bool], Program | str] = {}
         self.kept: list[Node] = []
+        self.subtotals: dict[int, bool] = {}
+        self.ranges: SubtotalRanges | None = None
 
     def groups(self) -> list[Group]:
         found: list[Group] = []
@@ -165,15 +166,17 @@ class _Builder:
 
     def _sheet(self, index: int, sheet: Sheet) -> list[Group]:
         groups: list[Group] = []
-        trees: dict[Address, Node] = {}
         shared: dict[int, Node] = {}
+        columns: dict[int, _Fill] = {}
+        fills: list[_Fill] = []
+        parsed = self.parser.tree
         for address, cell in sheet.cells.items():
             if cell.formula is None:
                 continue
             try:
                 tree = shared.get(cell.shared) if cell.shared is not None else None
                 if tree is None:
-                    tree = self.parser.tree(cell.formula, address)
+                    tree = parsed(cell.formula, address)
                     if cell.shared is not None:
                         shared[cell.shared] = tree
             except FormulaError as error:
@@ -181,11 +184,16 @@ class _Builder:
                 continue
             if cell.array_range is not None or cell.dynamic:
                 groups.append(self._array_group(index, sheet, address, cell, tree))
+                continue
+            row, column = address
+            fill = columns.get(column)
+            if fill is not None and fill.tree is tree and fill.last == row - 1:
+                fill.last = row
             else:
-                trees[address] = tree
-        runs = _runs(index, trees)
-        for run in runs:
-            groups += self._grouped(run, sheet, trees[run.row, run.column])
+                fill = columns[column] = _Fill(tree, column, row, row)
+                fills.append(fill)
+        for run, tree in _runs(index, fills):
+            groups += self._grouped(run, sheet, tree)
         return groups
 
     def _array_group(self, index: int, sheet: Sheet, address: Address, cell: Cell, tree: Node) -> Group:
@@ -204,6 +212,8 @@ class _Builder:
         return group
 
     def _grouped(self, run: Run, sheet: Sheet, tree: Node) -> list[Group]:
+        if self._holds_subtotal(tree):
+            return [part for part in _split(Group(run, tree)) if self._compile(part, sheet, array=False)]
         if run.count > 1 and not self.resolver.is_plain(tree) and not self._alike(run, sheet, tree):
             return [part for part in _split(Group(run, tree)) if self._compile(part, sheet, array=False)]
         group = Group(run, tree)
@@ -211,6 +221,12 @@ class _Builder:
         if group.program is not None and any(self.geometry.must_split(slot, run) for slot in group.program.slots):
             return _split(group)
         return [group]
+
+    def _holds_subtotal(self, tree: Node) -> bool:
+        known = self.subtotals.get(id(tree))
+        if known is None:
+            known = self.subtotals[id(tree)] = holds_subtotal(tree)
+        return known
 
     def _alike(self, run: Run, sheet: Sheet, tree: Node) -> bool:
         """Whether 'this row' of a table means the same in all copies: some may stand beside the table's end."""
@@ -226,6 +242,10 @@ class _Builder:
         try:
             if not self.resolver.is_plain(tree):
                 tree = self.resolver.resolve(tree, sheet, group.run.cell(0))
+                self.kept.append(tree)
+            if self._holds_subtotal(group.tree):
+                self.ranges = self.ranges or SubtotalRanges(self.workbook, self.geometry)
+                tree = self.ranges.cut(tree, group.run)
                 self.kept.append(tree)
         except CannotEvaluateError as error:
             group.reason = str(error)
@@ -247,32 +267,47 @@ class _Builder:
         return True
 
 
-def _runs(sheet: int, trees: dict[Address, Node]) -> list[Run]:
-    """Find runs of equal trees, first down the columns, then along the rows."""
-    runs: list[Run] = []
-    single: list[Address] = []
-    by_column = sorted(trees, key=lambda address: (address[1], address[0]))
-    for start, count in _stretches(by_column, trees, (1, 0)):
-        if count == 1:
-            single.append(by_column[start])
+@dataclass(slots=True)
+class _Fill:
+    """Copies of one formula below each other."""
+
+    tree: Node
+    column: int
+    first: int
+    last: int
+
+
+def _runs(sheet: int, fills: list[_Fill]) -> Iterable[tuple[Run, Node]]:
+    """Yield runs of equal trees: first those down the columns, then along the rows what is left."""
+    single: list[_Fill] = []
+    for fill in _joined(fills):
+        if fill.first == fill.last:
+            single.append(fill)
         else:
-            runs.append(Run(sheet, *by_column[start], count, 1, 0))
-    single.sort()
-    for start, count in _stretches(single, trees, (0, 1)):
-        across = 1 if count > 1 else 0
-        runs.append(Run(sheet, *single[start], count, 0, across))
-    return runs
-
-
-def _stretches(cells: list[Address], trees: dict[Address, Node], step: tuple[int, int]) -> Iterable[tuple[int, int]]:
+            yield Run(sheet, fill.first, fill.column, fill.last - fill.first + 1, 1, 0), fill.tree
+    single.sort(key=lambda fill: (fill.first, fill.column))
     start = 0
-    for at in range(1, len(cells) + 1):
-        if at < len(cells):
-            row, column = cells[at - 1]
-            if cells[at] == (row + step[0], column + step[1]) and trees[cells[at]] is trees[cells[at - 1]]:
+    for at in range(1, len(single) + 1):
+        if at < len(single):
+            here, before = single[at], single[at - 1]
+            if here.first == before.first and here.column == before.column + 1 and here.tree is before.tree:
                 continue
-        yield start, at - start
+        across = 1 if at - start > 1 else 0
+        yield Run(sheet, single[start].first, single[start].column, at - start, 0, across), single[start].tree
         start = at
+
+
+def _joined(fills: list[_Fill]) -> list[_Fill]:
+    """Order fills by column and row; join those that were read out of order."""
+    fills.sort(key=lambda fill: (fill.column, fill.first))
+    found: list[_Fill] = []
+    for fill in fills:
+        last = found[-1] if found else None
+        if last and last.column == fill.column and last.last == fill.first - 1 and last.tree is fill.tree:
+            last.last = fill.last
+        else:
+            found.append(fill)
+    return found
 
 
 def _occupied(workbook: Workbook, groups: list[Group]) -> list[Occupancy]:

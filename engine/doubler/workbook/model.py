@@ -115,6 +115,8 @@ class Sheet:
     merged: list[Area] = field(default_factory=list)
     comments: dict[Address, str] = field(default_factory=dict)
     validations: list[Validation] = field(default_factory=list)
+    filtered: list[Area] = field(default_factory=list)
+    """Where a filter with criteria hides rows, heading included."""
 
 
 @dataclass(slots=True)

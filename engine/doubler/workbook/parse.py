@@ -42,6 +42,10 @@ _SCAN = re.compile(
     re.VERBOSE,
 )
 
+_FIRST_MARK = 0xE000
+"""Marks are characters of the private use area, which no formula needs."""
+_MOST_MARKS = 16
+
 _columns: dict[str, int] = {}
 
 
@@ -86,20 +90,63 @@ def relative_key(text: str, host: Address) -> str:
     return _SCAN.sub(replace, text)
 
 
+def _fill_down(text: str, row: int) -> tuple[str, tuple[tuple[str, int], ...]] | None:
+    """Return a formula's text with marks in place of its relative rows, and the offset that each mark stands for.
+
+    None where its copies below are not this text with other row numbers.
+    """
+    marks: dict[int, str] = {}
+    pieces: list[str] = []
+    done = 0
+    for match in _SCAN.finditer(text):
+        if match.lastindex == 4 and not match[3]:
+            offset = int(match[4]) - row
+            pieces += (text[done : match.start(4)], marks.setdefault(offset, chr(_FIRST_MARK + len(marks))))
+            done = match.end()
+        elif match.lastindex == 12 and not (match[9] and match[11]):
+            return None
+    pieces.append(text[done:])
+    if len(marks) > _MOST_MARKS or any(chr(_FIRST_MARK + at) in text for at in range(len(marks))):
+        return None
+    return "".join(pieces), tuple((mark, offset) for offset, mark in marks.items())
+
+
 class FormulaParser:
     """Parses formulas, once for each distinct relative formula."""
 
     def __init__(self) -> None:
         self._trees: dict[str, Node | FormulaError] = {}
+        self._last: dict[int, Node] = {}
+        self._fills: dict[int, tuple[str, tuple[tuple[str, int], ...], Node]] = {}
 
     def tree(self, text: str, host: Address) -> Node:
         """Return the syntax tree of a formula at `host`; copies of one formula share one tree.
+
+        Where a column is being filled down, the text of the next copy is foretold and only compared.
 
         Raises
         ------
         FormulaError
             Where the text is no formula.
         """
+        row, column = host
+        fill = self._fills.get(column)
+        if fill is not None:
+            foretold, marks, tree = fill
+            for mark, offset in marks:
+                foretold = foretold.replace(mark, str(row + offset))
+            if foretold == text:
+                return tree
+            del self._fills[column]
+        found = self._scanned(text, host)
+        if self._last.get(column) is found:
+            pattern = _fill_down(text, row)
+            if pattern is not None:
+                self._fills[column] = (*pattern, found)
+        self._last[column] = found
+        return found
+
+    def _scanned(self, text: str, host: Address) -> Node:
         key = relative_key(text, host)
         tree = self._trees.get(key)
         if tree is None:

@@ -13,7 +13,7 @@ from doubler.workbook.addresses import parse_area
 from doubler.workbook.model import DefinedName, Sheet, Table, Workbook
 from doubler.workbook.notes_part import read_comments
 from doubler.workbook.package import Package
-from doubler.workbook.sheet_part import SheetContext, read_sheet
+from doubler.workbook.sheet_part import SheetContext, filtered_areas, read_sheet
 from doubler.workbook.strings_part import read_shared_texts, unescape
 from doubler.workbook.styles_part import read_number_formats
 from doubler.workbook.xml_guard import child, children, is_true, local_name, relationship_id
@@ -197,6 +197,8 @@ def _tables(package: Package, sheet: Sheet) -> list[Table]:
         names = (
             [] if columns is None else [unescape(column.get("name", "")) for column in children(columns, "tableColumn")]
         )
+        buttons = child(root, "autoFilter")
+        sheet.filtered += [] if buttons is None else filtered_areas(buttons)
         header, total = root.get("headerRowCount", "1"), root.get("totalsRowCount", "0")
         try:
             area = parse_area(root.get("ref", ""))

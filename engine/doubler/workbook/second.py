@@ -17,8 +17,8 @@ from doubler.errors import ErrorValue
 from doubler.workbook.evaluation import Evaluation, NotEvaluated, Where
 from doubler.workbook.graph import Graph
 from doubler.workbook.model import Address, Cell
-from doubler.workbook.syntax import Call
-from doubler.workbook.weak_points import nodes, weakness
+from doubler.workbook.syntax import Call, nodes
+from doubler.workbook.weak_points import weakness
 
 RELATIVE = 1e-9
 SECONDS = 20

@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import contextlib
+import io
 import math
 from dataclasses import dataclass, field
 from datetime import date, datetime, time
-from typing import TYPE_CHECKING
+from typing import IO, TYPE_CHECKING
 
 from doubler.errors import ErrorValue, InputError
 from doubler.workbook.addresses import (
@@ -19,6 +21,7 @@ from doubler.workbook.addresses import (
 )
 from doubler.workbook.model import Address, Area, Cell, Scalar, Sheet, Validation
 from doubler.workbook.package import Package
+from doubler.workbook.sheet_scan import NotPlainError, Scan, attributes, plain_text
 from doubler.workbook.shift import MovableFormula
 from doubler.workbook.strings_part import rich_text, unescape
 from doubler.workbook.xml_guard import children, is_true, local_name, main_tags, stream_part
@@ -28,6 +31,7 @@ if TYPE_CHECKING:
 
 _VALIDATION_EXTENSION = "{http://schemas.microsoft.com/office/spreadsheetml/2009/9/main}dataValidation"
 _ROW, _COLUMN, _MERGED, _VALIDATION = (main_tags(name) for name in ("row", "col", "mergeCell", "dataValidation"))
+_FILTER = main_tags("autoFilter")
 _ERRORS = {member.value: member for member in ErrorValue}
 
 
@@ -49,6 +53,7 @@ class _Reading:
     sheet: Sheet
     context: SheetContext
     columns: dict[str, int] = field(default_factory=dict)
+    marks: dict[str, dict[str, str]] = field(default_factory=dict)
     shared: dict[str, tuple[MovableFormula, int, int]] = field(default_factory=dict)
     waiting: list[tuple[Address, str]] = field(default_factory=list)
     row: int = 0
@@ -77,9 +82,83 @@ def read_sheet(sheet: Sheet, context: SheetContext) -> None:
     """
     package = context.package
     reading = _Reading(sheet, context)
-    tags = (*_ROW, *_COLUMN, *_MERGED, *_VALIDATION, _VALIDATION_EXTENSION)
     with package.open(sheet.part) as stream:
-        for element in stream_part(stream, f"{package.path}, part {sheet.part}", tags):
+        try:
+            around = _scan_cells(stream, reading)
+        except NotPlainError:
+            around = None
+            reading = _Reading(sheet, context)
+            sheet.cells, sheet.hidden_rows = {}, set()
+    if around is not None:
+        _parse_part(io.BytesIO(around), reading)
+    else:
+        with package.open(sheet.part) as stream:
+            _parse_part(stream, reading)
+    for (row, column), index in reading.waiting:
+        sheet.cells[row, column].formula = _copy_of(index, row, column, reading)
+
+
+def _scan_cells(stream: IO[bytes], reading: _Reading) -> bytes:
+    """Read all cells the quick way; return what stands around them in the part."""
+    cells, hidden = reading.sheet.cells, reading.sheet.hidden_rows
+    columns = reading.columns
+    count = 0
+    scan = Scan(stream)
+    for number, tag, raw in scan.rows():
+        row = _row(number, reading)
+        if "hidden" in tag and is_true(attributes(tag).get("hidden")):
+            hidden.add(row)
+        for letters, digits, style, kind, metadata, marks, formula, stored, inline in raw:
+            column = columns.get(letters)
+            if column is None:
+                _address(f"{letters}{number}", reading)
+                column = columns[letters]
+            if digits != number:
+                raise NotPlainError  # the parser says what is wrong
+            value: Scalar
+            if not kind or kind == "n":
+                if not stored:
+                    value = None
+                else:
+                    try:
+                        value = float(stored)
+                    except ValueError:
+                        value = _odd_number(plain_text(stored))
+                    else:
+                        if value - value != 0.0:
+                            value = ErrorValue.NUM
+            elif kind == "inlineStr":
+                value = unescape(plain_text(inline.split(">", 2)[2])) if inline else None
+            elif stored or kind == "str":
+                value = _typed(kind, plain_text(stored), row, column, reading)
+            else:
+                value = None
+            cell = cells[row, column] = Cell(value, None, int(style) if style else 0)
+            if formula:
+                if "&" in formula:
+                    formula = plain_text(formula)  # noqa: PLW2901  the same formula, read
+                if "_x" in formula:
+                    formula = unescape(formula)  # noqa: PLW2901
+                if not marks and formula[0] != "=":
+                    cell.formula = formula
+                    continue
+            if marks or formula:
+                about = reading.marks.get(marks)
+                if about is None:
+                    about = reading.marks[marks] = attributes(marks)
+                _read_formula(cell, about, formula, metadata or None, row, column, reading)
+        count += len(raw)
+        if len(cells) != count:
+            raise NotPlainError  # a cell stands there twice
+    return scan.around
+
+
+def _parse_part(stream: IO[bytes], reading: _Reading) -> None:
+    """Read a part, or what stands around its cells, through the XML parser."""
+    sheet = reading.sheet
+    tags = (*_ROW, *_COLUMN, *_MERGED, *_VALIDATION, *_FILTER, _VALIDATION_EXTENSION)
+    with contextlib.closing(stream):
+        for element in stream_part(stream, f"{reading.context.package.path}, part {sheet.part}", tags):
             tag = element.tag
             if tag in _ROW:
                 _read_row(element, reading)
@@ -87,10 +166,10 @@ def read_sheet(sheet: Sheet, context: SheetContext) -> None:
                 _read_hidden_columns(element, sheet)
             elif tag in _MERGED:
                 sheet.merged += _areas(element.get("ref"))
+            elif tag in _FILTER:
+                sheet.filtered += filtered_areas(element)
             else:
                 _read_validation(element, sheet)
-    for (row, column), index in reading.waiting:
-        sheet.cells[row, column].formula = _copy_of(index, row, column, reading)
 
 
 def _read_row(element: _Element, reading: _Reading) -> None:
@@ -166,7 +245,8 @@ def _read_cell(element: _Element, row: int, column: int, reading: _Reading) -> C
     style = element.get("s")
     cell = Cell(value, None, int(style) if style and style.isdigit() else 0)
     if formula is not None:
-        _read_formula(cell, formula, element.get("cm"), row, column, reading)
+        about = {str(key): str(mark) for key, mark in formula.attrib.items()}
+        _read_formula(cell, about, unescape(formula.text or ""), element.get("cm"), row, column, reading)
     return cell
 
 
@@ -212,12 +292,12 @@ def _serial(text: str, *, date1904: bool) -> Scalar:
 
 
 def _read_formula(
-    cell: Cell, element: _Element, metadata: str | None, row: int, column: int, reading: _Reading
+    cell: Cell, about: dict[str, str], text: str, metadata: str | None, row: int, column: int, reading: _Reading
 ) -> None:
-    kind = element.get("t")
-    text = unescape(element.text or "").removeprefix("=")
+    kind = about.get("t")
+    text = text.removeprefix("=")
     if kind == "shared":
-        index = element.get("si", "")
+        index = about.get("si", "")
         cell.shared = int(index) if index.isdigit() else None
         if not text:
             if index in reading.shared:
@@ -225,24 +305,24 @@ def _read_formula(
             else:
                 reading.waiting.append(((row, column), index))
             return
-        if index not in reading.shared or element.get("ref"):
+        if index not in reading.shared or about.get("ref"):
             reading.shared[index] = (MovableFormula(text), row, column)
     elif kind == "array":
-        cell.array_range = element.get("ref") or cell_name(row, column)
+        cell.array_range = about.get("ref") or cell_name(row, column)
         dynamic = reading.context.dynamic
         cell.dynamic = metadata is not None and metadata != "0" and (dynamic is None or metadata in dynamic)
     elif kind == "dataTable":
-        cell.array_range = element.get("ref") or cell_name(row, column)
-        text = _data_table(element)
+        cell.array_range = about.get("ref") or cell_name(row, column)
+        text = _data_table(about)
     cell.formula = text or None
 
 
-def _data_table(element: _Element) -> str:
+def _data_table(about: dict[str, str]) -> str:
     """Write a what-if table as the spreadsheet shows it: TABLE(row input, column input)."""
-    first, second = element.get("r1", ""), element.get("r2", "")
-    if is_true(element.get("dt2D")):
+    first, second = about.get("r1", ""), about.get("r2", "")
+    if is_true(about.get("dt2D")):
         return f"TABLE({first},{second})"
-    return f"TABLE({first},)" if is_true(element.get("dtr")) else f"TABLE(,{first})"
+    return f"TABLE({first},)" if is_true(about.get("dtr")) else f"TABLE(,{first})"
 
 
 def _copy_of(index: str, row: int, column: int, reading: _Reading) -> str:
@@ -287,6 +367,11 @@ def _areas(text: str | None) -> list[Area]:
         except InputError:
             continue
     return found
+
+
+def filtered_areas(element: _Element) -> list[Area]:
+    """Return the area of an ``autoFilter`` element where it holds criteria; none where it only offers buttons."""
+    return _areas(element.get("ref")) if children(element, "filterColumn") else []
 
 
 def _read_hidden_columns(element: _Element, sheet: Sheet) -> None:

@@ -6,7 +6,9 @@ filled-down formula share one tree: that is what lets a column of copies be eval
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from collections.abc import Iterator
+from dataclasses import dataclass, fields, is_dataclass
+from typing import cast
 
 from doubler.errors import ErrorValue
 
@@ -172,3 +174,20 @@ Node = (
     | Apply
     | ArrayLiteral
 )
+
+
+def nodes(tree: Node | None) -> Iterator[Node]:
+    """Yield every node of a syntax tree.
+
+    Parameters
+    ----------
+    tree : Node or None
+    """
+    work: list[object] = [tree]
+    while work:
+        node = work.pop()
+        if isinstance(node, tuple):
+            work += node
+        elif is_dataclass(node):
+            yield cast(Node, node)
+            work += [getattr(node, item.name) for item in fields(node)]

@@ -6,13 +6,11 @@ the third witness (``second.yaml`` there holds every formula on which it stands 
 
 from __future__ import annotations
 
-from collections.abc import Iterator
-from dataclasses import fields, is_dataclass
 from typing import Any
 
 from doubler.workbook.graph import Group
 from doubler.workbook.natives import NATIVES
-from doubler.workbook.syntax import ArrayLiteral, Binary, Call, Node, Omitted, RangeRef, TableRef, Unary
+from doubler.workbook.syntax import ArrayLiteral, Binary, Call, Omitted, RangeRef, TableRef, Unary, nodes
 
 _DATES = """DATE DATEDIF DATEVALUE DAY DAYS DAYS360 EDATE EOMONTH HOUR ISOWEEKNUM MINUTE MONTH NETWORKDAYS
 NETWORKDAYS.INTL NOW SECOND TIME TIMEVALUE TODAY WEEKDAY WEEKNUM WORKDAY WORKDAY.INTL YEAR YEARFRAC"""
@@ -68,20 +66,3 @@ def _weak_node(node: Any) -> str:
         if node.name not in NATIVES and any(isinstance(argument, Omitted) for argument in node.arguments):
             return f"it leaves out an argument of {node.name}, which reaches the second engine as 0"
     return ""
-
-
-def nodes(tree: Node | None) -> Iterator[Any]:
-    """Yield every node of a syntax tree.
-
-    Parameters
-    ----------
-    tree : Node or None
-    """
-    work: list[Any] = [tree]
-    while work:
-        node = work.pop()
-        if isinstance(node, tuple):
-            work += node
-        elif is_dataclass(node):
-            yield node
-            work += [getattr(node, item.name) for item in fields(node)]
