@@ -35,6 +35,7 @@ _MISES = re.compile(
 )
 _TRESCA = re.compile(r"\btresca\b|\bmaximum shear theory\b", re.IGNORECASE)
 _CIRCLE = re.compile(r"\bprincipal\b|\bmohr\b|\bradius of (?:the )?circle\b|^radius\b|\bcircle radius\b", re.IGNORECASE)
+_RADIUS = re.compile(r"\bradius\b", re.IGNORECASE)
 _NOT_VALUE = re.compile(r"\b(?:direction|angle|allowable|strength|sum|invariant)\b", re.IGNORECASE)
 
 CLOSE = 0.01
@@ -106,6 +107,8 @@ class _Shear:
         if not (strains or stresses) or _NOT_VALUE.search(words) or self.book.number(key) is None:
             return
         reads = list(dict.fromkeys(self.book.cells_read(key)))
+        if len(reads) == 1 and strains and self._is_shear_strain(key):
+            self._restated(key, reads[0])
         if not 2 <= len(reads) <= 12:
             return
         shear_strains = [read for read in reads if self._is_shear_strain(read)]
@@ -130,6 +133,16 @@ class _Shear:
         if self._dimension(key) not in (self.ratio, None):
             return False
         return bool(_SHEAR_STRAIN.search(words) or _TENSOR.search(words))
+
+    def _restated(self, key: Key, read: Key) -> None:
+        """Ask a shear strain made of one other strain: tensor of engineering, or twice the circle's radius."""
+        tensor, words = bool(_TENSOR.search(self.words(key))), self.words(read)
+        if self._dimension(read) not in (self.ratio, None):
+            return
+        if self._is_shear_strain(read) and bool(_TENSOR.search(words)) != tensor:
+            self._ask(key, read, [], self._scale(read), (0.5 if tensor else 2.0,), "tensor shear strain", None)
+        elif _RADIUS.search(words) and not self._is_shear_strain(read):
+            self._ask(key, read, [], self._scale(read), (1.0 if tensor else 2.0,), "Mohr's circle of strain", None)
 
     def _law_of_hooke(self, key: Key, shear: Key, reads: list[Key], *, inverse: bool) -> None:
         named = {read: quantity_at(self.book, read) for read in reads}
