@@ -14,6 +14,7 @@ from doubler.units.table import PREFIX_WORDS, PREFIXES, atoms, pint_names
 from doubler.units.unit import Unit, UnitError
 
 _lock = threading.Lock()
+_reading = threading.RLock()
 _registry: Any = None
 _BASE_UNITS = ("meter", "kilogram", "second", "kelvin", "ampere", "radian")
 
@@ -133,9 +134,17 @@ def to_pint(value: Any, unit: Unit) -> Any:
     return own.Quantity(value * unit.scale + unit.offset, base)
 
 
-@lru_cache(maxsize=1024)
 def _pint_unit(unit: Unit) -> Any:
-    """Return pint's unit for ours, but only where pint's factor is the same as ours."""
+    """Return pint's unit for ours, but only where pint's factor is the same as ours.
+
+    Pint fills its tables when they are first read, and fails where several threads do that at once: one at a time.
+    """
+    with _reading:
+        return _found_in_pint(unit)
+
+
+@lru_cache(maxsize=1024)
+def _found_in_pint(unit: Unit) -> Any:
     own = registry()
     if unit.offset:
         return own.Unit("degree_Celsius" if "C" in unit.text else "degree_Fahrenheit")
