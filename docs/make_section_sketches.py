@@ -142,7 +142,7 @@ def thick_wall() -> Any:
     left.text(1.03, 0.84, "mean of the hoop stress", color=SOFT, fontsize=8)
     left.set_xlabel("radius, from the bore a to the outside b = 2a")
     left.set_xticks([1, 2], ["a", "b"])
-    depth = np.linspace(0.0, 3.0, 300)
+    depth = np.linspace(0.0, 3.0, 1001)
     root = np.sqrt(1.0 + depth**2)
     across, down = -((1.0 + 2.0 * depth**2) / root - 2.0 * depth), -1.0 / root
     for value, color, name, place in ((across, WARM, "$\\sigma_x$", 1.05), (down, INK, "$\\sigma_z$", 1.7)):
@@ -217,7 +217,7 @@ def column_curve() -> Any:
     axes.text(meet + 3.0, 0.5 * strength + 6.0, "$\\sigma_y/2$ at $\\lambda_1$", color=WARM)
     axes.text(20.0, 0.76 * strength, "Johnson", color=ACCENT)
     axes.text(118.0, 66.0, "Euler")
-    axes.text(40.0, 1.16 * strength, "Euler, unsafe here", color=SOFT, ha="right", fontsize=8.5)
+    axes.text(41.0, 1.12 * strength, "Euler, unsafe here", color=SOFT, ha="right", fontsize=8.5)
     axes.text(158.0, strength + 6.0, "$\\sigma_y$", color=SOFT, ha="right")
     _graph(axes, "slenderness $K L / r$", "critical stress [MPa]")
     axes.set_ylim(0.0, 1.3 * strength)

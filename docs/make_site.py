@@ -1,7 +1,7 @@
 """Make a static site of README and docs in a folder: ``.venv/bin/python docs/make_site.py site``.
 
 Needs the extra ``docs``. The site is read from the disk or from any server: no script, nothing from the network;
-formulas are MathML.
+formulas are MathML, with their font beside the style.
 """
 
 from __future__ import annotations
@@ -14,6 +14,7 @@ import posixpath
 import re
 import shutil
 from collections.abc import Sequence
+from importlib.util import find_spec
 from pathlib import Path
 from typing import Any
 
@@ -23,6 +24,8 @@ from markdown_it.token import Token
 
 ROOT = Path(__file__).parent.parent
 STYLE = Path(__file__).with_name("site.css")
+FONT = "STIXTwoMath-Regular.ttf"
+"""The font of the formulas, under the SIL Open Font License; ziamath carries it."""
 SECTIONS = {
     "Guide": (
         "README.md",
@@ -61,6 +64,10 @@ def write_site(folder: Path) -> list[Path]:
         write(target, whole_page(page, sections, titles))
         written.append(target)
     write(folder / "site.css", STYLE.read_text(encoding="utf-8"))
+    package = find_spec("ziamath")
+    if package is None or package.origin is None:
+        raise SystemExit("ziamath, which carries the formulas' font, is missing: pip install 'doubler[docs]'")
+    shutil.copyfile(Path(package.origin).parent / "fonts" / FONT, folder / FONT)
     for picture in (*ROOT.glob("docs/**/*.png"), *ROOT.glob("docs/**/*.svg")):
         target = folder / picture.relative_to(ROOT)
         target.parent.mkdir(parents=True, exist_ok=True)
@@ -176,7 +183,9 @@ def fence(_renderer: Any, tokens: Sequence[Token], index: int, _options: Any, _e
     token = tokens[index]
     if token.info.strip() == "math":
         return f"<div class=formula>{mathml(token.content.strip(), display=True)}</div>\n"
-    return f"<pre><code>{html.escape(token.content)}</code></pre>\n"
+    # One line, such as a formula as typed, may turn over; more lines stand as they are.
+    turning = "" if token.content.rstrip("\n").count("\n") else " class=turning"
+    return f"<pre{turning}><code>{html.escape(token.content)}</code></pre>\n"
 
 
 def mathml(latex: str, *, display: bool) -> str:

@@ -110,7 +110,7 @@ def convert(value: X) -> X:
 def attach(number: Ratio, unit: Text) -> Text:
     r"""A number and a unit put together as text that every function reads as a quantity.
 
-    .. math:: \text{``12.5''} \; \text{``kN''} \to \text{``12.5 kN''}
+    .. math:: \text{“12.5”} \; \text{“kN”} \to \text{“12.5 kN”}
 
     Parameters
     ----------
@@ -149,7 +149,7 @@ def attach(number: Ratio, unit: Text) -> Text:
 def unit_of(quantity: TextColumn) -> Text:
     r"""Unit of a quantity, of a heading, or of a value cell with its unit cell, as it is spelt here.
 
-    .. math:: \text{``12.5 N/mm2''} \to \text{``N/mm²''}
+    .. math:: \text{“12.5 N/mm2”} \to \text{“N/mm²”}
 
     Parameters
     ----------
