@@ -13,13 +13,14 @@ from test_docs import script
 
 LOOK = """<!doctype html><meta charset=utf-8><title>waiting</title><body><script>
 const pages = PAGES, found = [];
+const RAW = /\\\\(?:[dt]?frac|sqrt|sum|int|left|right|quad|text|cdot|begin|[a-z]*sigma|tau|pi)|\\$`|`\\$/g;
 function look(page, frame) {
   const d = frame.contentDocument, w = frame.contentWindow;
   const boxes = [...d.querySelectorAll('math')].map(m => m.getBoundingClientRect());
   const plain = d.body.cloneNode(true);
   plain.querySelectorAll('pre, code').forEach(e => e.remove());
   found.push({page, formulas: boxes.length, flat: boxes.filter(b => b.width < 4 || b.height < 4).length,
-    faults: d.querySelectorAll('merror').length, raw: plain.textContent.match(/\\\\(?:[dt]?frac|sqrt|sum|int|left|right|quad|text|cdot|begin|[a-z]*sigma|tau|pi)|\\$`|`\\$/g) || [],
+    faults: d.querySelectorAll('merror').length, raw: plain.textContent.match(RAW) || [],
     wide: d.documentElement.scrollWidth - w.innerWidth, style: w.getComputedStyle(d.body).display,
     pictures: [...d.images].filter(i => i.complete && !i.naturalWidth).map(i => i.src)});
 }
