@@ -64,7 +64,7 @@ def secant_stress(
     compression : force
         Compressive force, a positive magnitude, factors of safety included.
     eccentricity : length
-        Distance of the force from the centroid, alike at both ends.
+        Distance of the force from the centroid, the same at both ends.
     fibre_distance : length
         Distance of the farthest fibre on the side of the force from the centroid.
     length : length
@@ -125,7 +125,7 @@ def secant_deflection(
     compression : force
         Compressive force, a positive magnitude.
     eccentricity : length
-        Distance of the force from the centroid, alike at both ends.
+        Distance of the force from the centroid, the same at both ends.
     length : length
         Length between the ends.
     second_moment : second moment
@@ -182,7 +182,7 @@ def secant_load(
     allowable : stress
         Stress not to be passed, at most the proportional limit in compression; a positive magnitude.
     eccentricity : length
-        Distance of the force from the centroid, alike at both ends; stands for crookedness too.
+        Distance of the force from the centroid, the same at both ends; stands for crookedness too.
     fibre_distance : length
         Distance of the farthest fibre on the side of the force from the centroid.
     length : length

@@ -31,12 +31,12 @@ CURVE = {"modulus": POSITIVE, "proof_stress": POSITIVE, "exponent": AT_LEAST_ONE
 
 
 def secant_share(stress: Any, modulus: Any, proof_stress: Any, exponent: Any, offset: Any) -> Any:
-    """Return secant over Young's modulus of a Ramberg-Osgood curve."""
+    """Return secant over Young's modulus of a Ramberg–Osgood curve."""
     return 1.0 / (1.0 + offset * modulus / proof_stress * (stress / proof_stress) ** (exponent - 1.0))
 
 
 def tangent_share(stress: Any, modulus: Any, proof_stress: Any, exponent: Any, offset: Any) -> Any:
-    """Return tangent over Young's modulus of a Ramberg-Osgood curve."""
+    """Return tangent over Young's modulus of a Ramberg–Osgood curve."""
     return 1.0 / (1.0 + exponent * offset * modulus / proof_stress * (stress / proof_stress) ** (exponent - 1.0))
 
 
@@ -87,7 +87,7 @@ def _balanced(elastic: Any, top: Any, share: Any) -> Any:
 def tangent_stress(
     slenderness: Ratio, modulus: Modulus, proof_stress: Stress, exponent: Ratio, offset: Strain = 0.002
 ) -> Stress:
-    r"""Critical stress of a column by the tangent modulus (Engesser), with a Ramberg-Osgood curve; a magnitude.
+    r"""Critical stress of a column by the tangent modulus (Engesser), with a Ramberg–Osgood curve; a magnitude.
 
     .. math:: \sigma_{cr} = \frac{\pi^2 E_t(\sigma_{cr})}{\lambda^2}, \quad \frac{1}{E_t} = \frac{1}{E} +
         \frac{n\,\varepsilon_o}{\sigma_{p}} \left(\frac{\sigma}{\sigma_{p}}\right)^{n-1}
@@ -101,7 +101,7 @@ def tangent_stress(
     proof_stress : stress
         Proof stress in compression, a positive magnitude.
     exponent : ratio
-        Exponent n of the Ramberg-Osgood curve, at least 1.
+        Exponent n of the Ramberg–Osgood curve, at least 1.
     offset : strain, optional
         Plastic strain at the proof stress; 0.002 where left out.
 
@@ -149,7 +149,7 @@ def plasticity(
     exponent: Ratio,
     offset: Strain = 0.002,
 ) -> Ratio:
-    r"""Plasticity reduction factor of a plate at a stress, by Stowell and Gerard, with a Ramberg-Osgood curve.
+    r"""Plasticity reduction factor of a plate at a stress, by Stowell and Gerard, with a Ramberg–Osgood curve.
 
     .. math:: \eta = \frac{E_s}{E}\,\frac{1 - \nu_e^2}{1 - \nu^2}\left(a + b\sqrt{1 + 3\frac{E_t}{E_s}}\right), \quad
         \nu = \tfrac12 - \left(\tfrac12 - \nu_e\right)\frac{E_s}{E}
@@ -168,7 +168,7 @@ def plasticity(
     proof_stress : stress
         Proof stress in compression, a positive magnitude.
     exponent : ratio
-        Exponent n of the Ramberg-Osgood curve, at least 1.
+        Exponent n of the Ramberg–Osgood curve, at least 1.
     offset : strain, optional
         Plastic strain at the proof stress; 0.002 where left out.
 
@@ -260,7 +260,7 @@ def plate_plastic(
     proof_stress : stress
         Proof stress in compression, a positive magnitude.
     exponent : ratio
-        Exponent n of the Ramberg-Osgood curve, at least 1.
+        Exponent n of the Ramberg–Osgood curve, at least 1.
     offset : strain, optional
         Plastic strain at the proof stress; 0.002 where left out.
 
@@ -340,7 +340,7 @@ def crippling(
         angle, tube or V groove (first form: distorted unloaded edges; other multi-corner sections and hats too); tee,
         cruciform or H (second form: straight unloaded edges); zee or channel (third form: two corners).
     thickness : length
-        Thickness of the walls, alike in all.
+        Thickness of the walls, the same in all.
     area : area
         Area of the section.
     modulus : modulus
