@@ -138,6 +138,8 @@ def _missed(
         cell = line.sheet.cells.get(address)
         if cell is None or (cell.formula is None) != (own.formula is None):
             break
+        if any(read.sheet == name and _overlap(read.area, line.area) for read in book.reads((name, address))):
+            break  # it sums up the range itself
         if not (_margin(book, (name, inside)) and _margin(book, (name, address))):
             if cell.formula is not None and trees.get(address) is not trees.get(inside):
                 break
