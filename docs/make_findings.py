@@ -142,7 +142,7 @@ def main() -> None:
         for family, kinds in FAMILIES.items():
             index += [f"## {family.capitalize()}", ""]
             index += [*(f"- [`{kind}`]({kind}.md): {WHEN[kind]}" for kind in kinds), ""]
-        (FOLDER / "index.md").write_text("\n".join(index), encoding="utf-8")
+        (FOLDER / "README.md").write_text("\n".join(index), encoding="utf-8")
         missed = [found.name for found in seeded if not found.found]
         how = (
             "Workbooks of differing habit, each recalculated so that only the fault gives it away; one fault each. "
