@@ -16,9 +16,15 @@ def unit_findings(book: Examined) -> Iterator[Finding]:
             fault.place,
             fault.kind,
             fault.severity,
-            fault.message,
+            _sentence(fault.message),
             fault.found,
             fault.expected,
             tuple(cell_name_of(key) for key in fault.cells),
             tuple(cell_name_of(key) for key in fault.follows),
         )
+
+
+def _sentence(text: str) -> str:
+    """Begin with a capital, unless it is a cell's address already, and end with a full stop."""
+    text = text[0].upper() + text[1:]
+    return text if text.endswith((".", "!", "?")) else f"{text}."
