@@ -14,7 +14,7 @@ from doubler.workbook.examined import Examined, Key, cell_name_of
 def not_recalculated(book: Examined) -> Iterator[Finding]:
     """Name the formulas that could not be recalculated, once a root."""
     found: dict[str, tuple[str, list[Key]]] = {}
-    for key, _ in book.formulas():
+    for key, _ in book.formulas() if book.values.not_evaluated else ():
         value = book.value(key)
         if isinstance(value, NotEvaluated):
             found.setdefault(value.root, (value.reason, []))[1].append(key)

@@ -20,8 +20,8 @@ _NAMES = {_E: "E", _G: "G", _K: "K", _NU: "ν"}
 def poisson_ranges(book: Examined) -> Iterator[Finding]:
     """Find a Poisson's ratio outside -1 … 0.5 and a modulus that is not positive."""
     for key, name in quantities(book):
-        value = book.number(key)
-        if value is None or name not in _NAMES:
+        value = book.number(key) if name in _NAMES else None
+        if value is None:
             continue
         unit = book.declarations.unit(*key)
         text = shown(value, "" if unit is None or unit.weak else unit.unit.text)

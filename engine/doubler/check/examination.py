@@ -14,6 +14,7 @@ from doubler.check.folding import folded
 from doubler.check.policy import Policy, policy_for
 from doubler.check.policy_rules import margins_too_small, units_not_allowed
 from doubler.check.short_range import short_ranges
+from doubler.workbook.collector import collector_held
 from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined
 
@@ -145,10 +146,10 @@ def report_on(
     """Apply the rules to a workbook that has been examined."""
     policy = policy or Policy()
     found = [finding for rule in (rules_under(policy) if rules is None else rules) for finding in rule(book)]
-    total = recalculated = 0
-    for key, _ in book.formulas():
-        total += 1
-        recalculated += not isinstance(book.value(key), NotEvaluated)
+    total = sum(1 for _ in book.formulas())
+    recalculated = total
+    if book.values.not_evaluated:
+        recalculated = sum(not isinstance(book.value(key), NotEvaluated) for key, _ in book.formulas())
     lost = sum(len(keys) for keys in book.tracing.not_traced().values())
     kept, silenced = policy.applied(folded(book, found))
     return CheckReport(

@@ -91,8 +91,8 @@ def quantity_at(book: Examined, key: Key) -> str | None:
     """Return the quantity that a cell holds, or None; label and declared unit must agree."""
     label = book.label(key)
     declared = book.declarations.unit(*key)
-    texts = list(dict.fromkeys((" ".join(label.left), *label.above[:3], label.name.replace("_", " "))))
-    for words in texts:
+    left = " ".join(label.left) if len(label.left) > 1 else label.left[0] if label.left else ""
+    for words in (left, *label.above[:3], label.name.replace("_", " ")):
         name = quantity_of(words) if words else None
         if name is None:
             continue

@@ -248,7 +248,9 @@ def _hidden_by(book: Examined, key: Key) -> str | None:
 
 def unused_inputs(book: Examined) -> Iterator[Finding]:
     """Find labelled numbers with a unit that no formula reads, on sheets that compute."""
-    read = {read for key, _ in book.formulas() for read in book.cells_read(key)}
+    read: set[Key] = set()
+    for key, _ in book.formulas():
+        read.update(book.cells_read(key))
     for sheet in book.workbook.sheets:
         mine = {address for name, address in read if name == sheet.name}
         if not mine or sheet.visibility != "visible":

@@ -28,7 +28,7 @@ class Dimension:
     exponents: tuple[Fraction, ...]
 
     def __init__(self, exponents: tuple[Fraction | int, ...]) -> None:
-        object.__setattr__(self, "exponents", tuple(Fraction(e) for e in exponents))
+        object.__setattr__(self, "exponents", tuple([e if type(e) is Fraction else Fraction(e) for e in exponents]))
         object.__setattr__(self, "_hash", hash(self.exponents))
 
     def __setattr__(self, name: str, value: object) -> None:
@@ -67,7 +67,7 @@ class Dimension:
 
     def without_angle(self) -> Dimension:
         """Return the dimension with the angle left out: radians are ratios in a formula's arithmetic."""
-        return Dimension((*self.exponents[:-1], 0))
+        return Dimension((*self.exponents[:-1], 0)) if self.exponents[-1] else self
 
     @property
     def is_none(self) -> bool:

@@ -180,12 +180,13 @@ def known(
 ) -> Carried:
     """Return what a cell with a declared unit carries."""
     reading = Reading(scale, (), 1.0 if absolute else 0.0, offset if absolute else 0.0)
+    straight = dimension.without_angle()
     return Carried(
         State.KNOWN,
-        dimension.without_angle(),
+        straight,
         (reading,),
         sources=(source,),
-        angle_mark=dimension != dimension.without_angle(),
+        angle_mark=dimension is not straight,
     )
 
 

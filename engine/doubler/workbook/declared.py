@@ -133,12 +133,20 @@ class Declarations:
     def _under_header(self, sheet: str, layout: Layout, address: Address) -> tuple[str, int, int, int, bool] | None:
         """Return the column from whose header alone a cell has its unit: no text beside it could tell another."""
         row, column = address
-        if (row, column + 1) in layout.texts or (row, column + 2) in layout.texts or address in layout.sheet.comments:
-            return None
-        left = layout.left_texts(address)
-        if left and (len(left) > 1 or not is_bare_name(layout.texts[left[0]]) or layout.touches_left(address, left[0])):
-            return None
-        if (sheet, address) in self.labels.names or layout.right_text(address) is not None:
+        texts = layout.columns_of_text.get(row)
+        if texts:
+            if texts[-1] > column and (
+                (row, column + 1) in layout.texts
+                or (row, column + 2) in layout.texts
+                or layout.right_text(address) is not None
+            ):
+                return None
+            left = layout.left_texts(address) if texts[0] < column else ()
+            if left and (
+                len(left) > 1 or not is_bare_name(layout.texts[left[0]]) or layout.touches_left(address, left[0])
+            ):
+                return None
+        if address in layout.sheet.comments or (sheet, address) in self.labels.names:
             return None
         head = layout.header_row(address)
         cell = layout.cells.get(address)

@@ -18,7 +18,7 @@ from doubler.workbook.graph import Graph, build_graph
 from doubler.workbook.labels import Label
 from doubler.workbook.model import Address, Area, Cell, Scalar, Workbook
 from doubler.workbook.reader import read_workbook
-from doubler.workbook.syntax import Node
+from doubler.workbook.syntax import CellRef, Node
 from doubler.workbook.unit_flow import trace
 from doubler.workbook.unit_verdicts import Tracing
 
@@ -61,6 +61,8 @@ class Examined:
         self.declarations: Declarations = declare(workbook)
         self.values: Evaluation = evaluate(self.graph)
         self._reads: dict[Key, list[Read]] = {}
+        self._read_cells: dict[Key, tuple[Key, ...]] = {}
+        self._cells = {sheet.name: sheet.cells for sheet in workbook.sheets}
 
     @classmethod
     def read(cls, path: Path | str) -> Examined:
@@ -74,12 +76,14 @@ class Examined:
 
     def cell(self, key: Key) -> Cell | None:
         """Return a cell, or None where there is none."""
-        sheet = self.workbook.sheet(key[0])
-        return None if sheet is None else sheet.cells.get(key[1])
+        cells = self._cells.get(key[0])
+        return None if cells is None else cells.get(key[1])
 
     def value(self, key: Key) -> Any:
         """Return a cell's value: recalculated for a formula, else the constant; `NotEvaluated` where not known."""
         cell = self.cell(key)
+        if cell is not None and cell.formula is None and cell.value is not None:
+            return cell.value
         if cell is None or cell.formula is None:
             group = self.graph.group_at(*key)
             if group is None:
@@ -141,24 +145,49 @@ class Examined:
     def _read(self, place: Place) -> Read:
         return Read(self.workbook.sheets[place[0]].name, place[1])
 
-    def cells_read(self, key: Key) -> Iterator[Key]:
-        """Yield the cells that a formula reads and that hold something; of very large ranges those that are filled."""
-        for read in self.reads(key):
-            yield from self.cells_of(read)
+    def cells_read(self, key: Key) -> tuple[Key, ...]:
+        """Return the cells that a formula reads and that hold something; of very large ranges those that are filled."""
+        known = self._read_cells.get(key)
+        if known is None:
+            known = self._read_cells[key] = self._single_cells(key)
+        return known
+
+    def _single_cells(self, key: Key) -> tuple[Key, ...]:
+        """Return the cells that a formula reads; where it reads single cells only, without the way over areas."""
+        at = self.graph.group_at(*key)
+        if at is None:
+            return ()
+        group = self.graph.groups[at[0]]
+        row, column = group.run.cell(at[1])
+        found: list[Key] = []
+        for slot in group.program.slots if group.program is not None else ():
+            node = slot.node
+            if not isinstance(node, CellRef):
+                return tuple(cell for read in self.reads(key) for cell in self.cells_of(read))
+            name = self.workbook.sheets[group.run.sheet].name
+            if node.sheet is not None:
+                index = self.graph.sheet_index(node.sheet)
+                if index is None:
+                    continue
+                name = self.workbook.sheets[index].name
+            address = (node.row.at(row), node.column.at(column))
+            if address in self._cells[name]:
+                found.append((name, address))
+        return tuple(found)
 
     def cells_of(self, read: Read) -> Iterator[Key]:
         """Yield the filled cells of a reference."""
-        sheet = self.workbook.sheet(read.sheet)
-        if sheet is None:
+        cells = self._cells.get(read.sheet)
+        if cells is None:
             return
         area = read.area
         if cells_in(area) <= WIDEST:
             for row in range(area.first_row, area.last_row + 1):
                 for column in range(area.first_column, area.last_column + 1):
-                    if (row, column) in sheet.cells:
+                    if (row, column) in cells:
                         yield read.sheet, (row, column)
         else:
-            for address in sheet.cells:
+            for address in cells:
                 if address in area:
                     yield read.sheet, address
 

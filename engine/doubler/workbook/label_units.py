@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from functools import lru_cache
 
 from doubler.units import Unit
 from doubler.workbook.roles import is_pure_number
@@ -81,6 +82,7 @@ def loose_unit(text: str) -> Unit | None:
     return None
 
 
+@lru_cache(maxsize=65536)
 def is_bare_name(text: str) -> bool:
     """Return whether a text at the start of a row is a mere name that no unit can be in: ``LC 12``, ``Bolt 3``."""
     return bool(_BARE.match(text)) and read_unit_text(text).unit is None and not is_pure_number(text)

@@ -73,6 +73,9 @@ class Layout:
         self._ends: dict[tuple[int, int], int] = {}
         self._above: dict[tuple[int, int], tuple[Address, ...]] = {}
         self._gaps: dict[int, int] = {}
+        self._last_head: dict[int, tuple[int, int, int]] = {}
+        self._left: dict[Address, tuple[Address, ...]] = {}
+        self._words: dict[tuple[Address, ...], tuple[str, ...]] = {}
         self._filled = {row for (row, _), cell in self.cells.items() if cell.formula or cell.value is not None}
 
     def _spread_merged(self) -> None:
@@ -107,16 +110,33 @@ class Layout:
         index = bisect_left(columns, column) - 1
         if index < 0 or column - columns[index] > WIDEST_RUN:
             return ()
-        found = [(row, columns[index])]
+        known = self._left.get((row, columns[index]))
+        if known is not None:
+            return known
+        nearest = (row, columns[index])
+        found = [nearest]
         while index > 0 and len(found) < 3 and columns[index] - columns[index - 1] == 1:
             index -= 1
             if self.origin((row, columns[index])) != self.origin(found[-1]):
                 found.append((row, columns[index]))
-        return tuple(found)
+        known = self._left[nearest] = tuple(found)
+        return known
+
+    def words(self, places: tuple[Address, ...]) -> tuple[str, ...]:
+        """Return what stands in some cells, cut to the length of a label."""
+        known = self._words.get(places)
+        if known is None:
+            known = self._words[places] = tuple([self.texts[place][:LONGEST_LABEL] for place in places])
+        return known
 
     def touches_left(self, address: Address, text: Address) -> bool:
         """Return whether only empty cells stand between a text and the cell at its right."""
-        return not any(self.holds_number((address[0], c)) for c in range(text[1] + 1, address[1]))
+        row, cells = address[0], self.cells
+        for column in range(text[1] + 1, address[1]):
+            cell = cells.get((row, column))
+            if cell is not None and (cell.formula is not None or isinstance(cell.value, float)):
+                return False
+        return True
 
     def right_text(self, address: Address) -> Address | None:
         """Return the text right of the run of numbers in which the cell stands, or None."""
@@ -134,6 +154,9 @@ class Layout:
     def header_row(self, address: Address) -> int | None:
         """Return the row of the nearest text above in the column, if the column runs on from there to the cell."""
         row, column = address
+        last = self._last_head.get(column)
+        if last is not None and last[0] < row < last[1]:
+            return last[0] if row <= last[2] else None
         rows = self.rows_of_text.get(column)
         if not rows:
             return None
@@ -146,6 +169,7 @@ class Layout:
         if end is None:
             end = self._block_end(head, column, following)
             self._ends[head, column] = end
+        self._last_head[column] = (head, following, end)
         return head if row <= end else None
 
     def _block_end(self, head: int, column: int, following: int) -> int:
@@ -202,6 +226,7 @@ class Labels:
     def __init__(self, workbook: Workbook) -> None:
         self.workbook = workbook
         self._layouts: dict[str, Layout] = {}
+        self._known: dict[tuple[str, Address], Label] = {}
         self._sheets = {sheet.name: sheet for sheet in workbook.sheets}
 
     def layout(self, sheet: str) -> Layout:
@@ -229,11 +254,17 @@ class Labels:
 
     def label(self, sheet: str, address: Address) -> Label:
         """Return the words that belong to a cell."""
+        known = self._known.get((sheet, address))
+        if known is None:
+            known = self._known[sheet, address] = self._label(sheet, address)
+        return known
+
+    def _label(self, sheet: str, address: Address) -> Label:
         layout = self.layout(sheet)
         left = layout.left_texts(address)
         return Label(
-            tuple(layout.texts[a][:LONGEST_LABEL] for a in reversed(left)),
-            tuple(layout.texts[a][:LONGEST_LABEL] for a in layout.headers(address)),
+            layout.words(left[::-1]),
+            layout.words(layout.headers(address)),
             self.names.get((sheet, address), ""),
             layout.sheet.comments.get(address, ""),
         )

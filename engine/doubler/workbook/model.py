@@ -135,6 +135,9 @@ class Workbook:
 
     def sheet(self, name: str) -> Sheet | None:
         """Return the sheet of that name (case-insensitive, as the spreadsheet reads it), or None."""
+        for sheet in self.sheets:
+            if sheet.name == name:
+                return sheet
         wanted = name.casefold()
         return next((sheet for sheet in self.sheets if sheet.name.casefold() == wanted), None)
 

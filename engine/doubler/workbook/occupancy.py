@@ -48,6 +48,9 @@ class Occupancy:
         pieces = self.columns.get(column)
         if not pieces:
             return None
+        if len(pieces) == 1:
+            first, last, group, lane = pieces[0]
+            return (group, lane + row - first) if first <= row <= last else None
         at = bisect_right(pieces, row, key=lambda piece: piece[0]) - 1
         if at < 0 or pieces[at][1] < row:
             return None

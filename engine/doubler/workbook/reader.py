@@ -2,14 +2,12 @@
 
 from __future__ import annotations
 
-import gc
-from collections.abc import Iterator
-from contextlib import contextmanager
 from pathlib import Path
 from typing import TYPE_CHECKING
 
 from doubler.errors import InputError
 from doubler.workbook.addresses import parse_area
+from doubler.workbook.collector import collector_held
 from doubler.workbook.model import DefinedName, Sheet, Table, Workbook
 from doubler.workbook.notes_part import read_comments
 from doubler.workbook.package import Package
@@ -73,24 +71,12 @@ def workbook_from(package: Package) -> Workbook:
     )
     book.names = _names(root, [child.get("name", "") for child in _sheet_elements(root)])
     context = SheetContext(package, read_shared_texts(package, part), _dynamic_metadata(package, part), date1904)
-    with _no_collection():
+    with collector_held():
         for sheet in book.sheets:
             read_sheet(sheet, context)
             sheet.comments = read_comments(package, sheet.part)
             book.tables += _tables(package, sheet)
     return book
-
-
-@contextmanager
-def _no_collection() -> Iterator[None]:
-    """Hold the collector of circles still: it would walk over all new cells time and again, and find none."""
-    was_on = gc.isenabled()
-    gc.disable()
-    try:
-        yield
-    finally:
-        if was_on:
-            gc.enable()
 
 
 def sheet_listing(package: Package, part: str, root: _Element) -> list[Sheet | None]:
