@@ -4,6 +4,7 @@ import math
 import os
 import shutil
 import zipfile
+from collections.abc import Callable
 from pathlib import Path
 
 import openpyxl
@@ -79,6 +80,55 @@ def test_a_run_killed_in_the_middle_of_its_log_goes_on(ready: tuple[Path, Path, 
     (ready[2] / "summary.xlsx").unlink()
     report = fill(*ready)
     assert report.kept == 3
+
+
+def test_a_run_killed_between_a_file_and_its_line_in_the_log_goes_on(ready: tuple[Path, Path, Path]) -> None:
+    fill(*ready)
+    log = ready[2] / LOG
+    lines = log.read_text().splitlines()
+    last = max(at for at, line in enumerate(lines) if "heavy.xlsx" in line)
+    log.write_text("\n".join(lines[:last]))  # killed after the file was renamed, before its line
+    for later in ("steady", "summary"):
+        (ready[2] / f"{later}.xlsx").unlink()
+    assert fill(*ready).written == 2
+    again = fill(*ready)
+    assert (again.written, again.kept) == (0, 3)
+
+
+def test_a_second_run_into_the_same_folder_is_refused(ready: tuple[Path, Path, Path]) -> None:
+    def begun(_total: int) -> Callable[[int], None]:
+        return lambda _done: second()
+
+    def second() -> None:
+        with pytest.raises(InputError, match=r"another run is writing to .*out; wait until it has ended"):
+            fill(*ready)
+
+    assert fill(*ready, begun=begun).written == 3
+    assert fill(*ready).kept == 3
+
+
+@pytest.mark.parametrize("fresh", [False, True])
+def test_the_files_that_are_read_are_not_written_over(tmp_path: Path, fresh: bool) -> None:
+    table = cases_csv(tmp_path / "cases.csv", GOOD)
+    for name in ("summary.xlsx", "light.xlsx"):
+        template = strap_template(tmp_path / name)
+        with pytest.raises(InputError, match=f"{name} is a file that is read; give another folder"):
+            fill(template, table, tmp_path, fresh=fresh)
+        template.unlink()
+    template = strap_template(tmp_path / "strap.xlsx")
+    as_workbook = tmp_path / "light.xlsx"
+    book = openpyxl.Workbook()
+    for row in (["case", "load [kN]"], ["light", 10]):
+        book.active.append(row)
+    book.save(as_workbook)
+    with pytest.raises(InputError, match=r"light\.xlsx is a file that is read"):
+        fill(template, as_workbook, tmp_path, fresh=fresh)
+    assert sorted(path.name for path in tmp_path.iterdir()) == ["cases.csv", "light.xlsx", "strap.xlsx"]
+
+
+def test_a_folder_whose_name_is_too_long_is_refused(ready: tuple[Path, Path, Path]) -> None:
+    with pytest.raises(InputError, match="give another folder"):
+        fill(ready[0], ready[1], ready[2] / ("d" * 300))
 
 
 def test_changed_inputs_are_written_anew(ready: tuple[Path, Path, Path]) -> None:

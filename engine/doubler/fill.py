@@ -2,9 +2,13 @@
 
 from __future__ import annotations
 
+import errno
 import hashlib
+import io
 import json
-from collections.abc import Callable, Iterator
+import os
+import sys
+from collections.abc import Callable, Iterable, Iterator
 from dataclasses import dataclass
 from itertools import repeat
 from pathlib import Path
@@ -21,12 +25,15 @@ from doubler.workbook.addresses import full_name, parse_area
 from doubler.workbook.evaluate import Evaluation, NotEvaluated, evaluate_blocks
 from doubler.workbook.model import Scalar
 from doubler.workbook.opened import OpenedTemplate, open_template, refuse_unknown
+from doubler.workbook.output import refuse_target
 from doubler.workbook.writer import CellKey, FillPlan, PackageTemplate
 
 AT_ONCE = 512
 """Cases evaluated and then written before the next ones are: memory does not grow with their number."""
 LOG = ".doubler-fill"
 """Keeps, in the results' folder, what was written from what; a stopped run goes on by it."""
+_ANNOUNCED = ("", -1, -1)
+_FAR_OFF = 1 << 30
 
 
 @dataclass(frozen=True, slots=True)
@@ -92,12 +99,16 @@ def fill(
     """
     folder = Path(out)
     opened = open_template(template)
-    bound = bind_cases(open_cases(cases), opened.template)
+    table = open_cases(cases)
+    bound = bind_cases(table, opened.template)
     total = sum(len(batch.names) for batch in bound.batches())
     run = _Run(opened, bound, folder, fresh)
-    run.refuse_foreign_files()
-    advance = begun(total) if begun else lambda _done: None
-    return run.all(advance)
+    try:
+        run.refuse_foreign_files((opened.package.path, table.path))
+        advance = begun(total) if begun else lambda _done: None
+        return run.all(advance)
+    finally:
+        run.log.close()
 
 
 class _Run:
@@ -113,16 +124,22 @@ class _Run:
         self.stored = list(_stored_cells(opened))
         self.left_empty: dict[CellKey, str] = {}
 
-    def refuse_foreign_files(self) -> None:
-        """Refuse to write over what this tool did not write, or what was changed by hand since."""
-        if self.folder.exists() and not self.folder.is_dir():
+    def refuse_foreign_files(self, read: Iterable[Path]) -> None:
+        """Refuse to write over the files that are read, what this tool did not write, or what was changed by hand."""
+        if _is_there(self.folder) and not self.folder.is_dir():
             raise InputError(f"{self.folder} is a file; give a folder for the filled workbooks")
-        if self.log.fresh or not self.folder.is_dir():
+        if not self.folder.is_dir():
             return
+        given = {(state.st_dev, state.st_ino) for state in map(Path.stat, read)}
         for batch in self.bound.batches():
             for name in [*batch.names, "summary"]:
                 target = self.folder / f"{name}{'.xlsx' if name == 'summary' else self.suffix}"
-                if target.exists() and not self.log.is_ours(target):
+                if not _is_there(target):
+                    continue
+                state = target.stat()
+                if (state.st_dev, state.st_ino) in given:
+                    raise InputError(f"{target} is a file that is read; give another folder for the filled workbooks")
+                if not self.log.fresh and not self.log.is_ours(target):
                     raise InputError(
                         f"{target} is there already and is not as this tool wrote it; "
                         "give another folder, or --fresh to write over it"
@@ -141,14 +158,12 @@ class _Run:
             written, kept = self._workbooks(plan, envelope, summary, advance)
             target = self.folder / "summary.xlsx"
             lines = envelope.lines()
+            self.log.announce(target)
             summary.write(target, self.path.name, lines)
         except BaseException:
             summary.abandon()
             raise
-        finally:
-            self.log.close()
         self.log.note(target, "summary")
-        self.log.close()
         return FillReport(self.folder, target, written, kept, lines, sorted(set(self.left_empty.values())))
 
     def _workbooks(
@@ -161,6 +176,7 @@ class _Run:
             results = self._results(part)
             if not self.folder.is_dir():
                 _make_folder(self.folder)
+            self.log.open()
             envelope.take(batch.names, results)
             summary.take(batch, results)
             for name, inputs, values in self._rows(batch, part):
@@ -204,6 +220,7 @@ class _Run:
         mark = self._mark(inputs)
         if self.log.holds(target, mark):
             return False
+        self.log.announce(target)
         plan.write(target, inputs, values)
         self.log.note(target, mark)
         return True
@@ -238,14 +255,28 @@ def _make_folder(folder: Path) -> None:
         raise InputError(f"the folder {folder} can't be made ({error.strerror or error}); give another") from None
 
 
+def _is_there(path: Path) -> bool:
+    try:
+        return path.exists()
+    except OSError as error:  # a name that is too long, for one
+        raise InputError(f"{path} can't be looked for ({error.strerror or error}); give another folder") from None
+
+
 class _Log:
-    """What was written into the folder, from what, and how the file looked then; one line a file."""
+    """What was written into the folder, from what, and how the file looked then; one line a file.
+
+    A file is announced before it is written, so that a run killed between the two does not take its own file for
+    somebody else's. While a run goes on it holds a lock on the log, and a second run into the folder is refused.
+    """
 
     def __init__(self, folder: Path, fresh: bool) -> None:
         self.path = folder / LOG
         self.fresh = fresh
         self._known: dict[str, tuple[str, int, int]] = {}
         self._stream: Any = None
+        self._bare = False
+        if os.path.exists(self.path):  # unlike Path.exists, false for a name that is too long
+            self.open()
         if fresh:
             return
         try:
@@ -260,31 +291,72 @@ class _Log:
             self._known[name] = (mark, size, time)
 
     def is_ours(self, target: Path) -> bool:
-        """Return whether a file is as it was written."""
+        """Return whether a file is as it was written, or was being written when a run was killed."""
         known = self._known.get(target.name)
         try:
             state = target.stat()
         except OSError:
             return False
-        return known is not None and known[1:] == (state.st_size, state.st_mtime_ns)
+        return known is not None and (known == _ANNOUNCED or known[1:] == (state.st_size, state.st_mtime_ns))
 
     def holds(self, target: Path, mark: str) -> bool:
         """Return whether a file is as it was written, from these very inputs."""
         return self._known.get(target.name, ("",))[0] == mark and self.is_ours(target)
 
+    def announce(self, target: Path) -> None:
+        """Say that a file is about to be written."""
+        self._line(target.name, *_ANNOUNCED)
+
     def note(self, target: Path, mark: str) -> None:
         """Note a file just written."""
         state = target.stat()
-        if self._stream is None:
-            try:
-                self._stream = self.path.open("w" if self.fresh else "a", encoding="utf-8")
-                self.fresh = False
-            except OSError as error:
-                raise InputError(f"{self.path} can't be written ({error.strerror or error})") from None
-        print(json.dumps([target.name, mark, state.st_size, state.st_mtime_ns]), file=self._stream, flush=True)
+        self._line(target.name, mark, state.st_size, state.st_mtime_ns)
+        self._bare = False
+
+    def _line(self, *entries: str | int) -> None:
+        self.open()
+        print(json.dumps(entries), file=self._stream, flush=True)
+
+    def open(self) -> None:
+        """Open the log for more lines, and keep other runs out of the folder."""
+        if self._stream is not None:
+            return
+        refuse_target(self.path)
+        self._bare = not self.path.exists()
+        try:
+            stream = self.path.open("ab+")
+        except OSError as error:
+            raise InputError(f"{self.path} can't be written ({error.strerror or error}); give another folder") from None
+        if not _locked(stream.fileno()):
+            stream.close()
+            raise InputError(
+                f"another run is writing to {self.path.parent}; wait until it has ended, or give another folder"
+            )
+        if stream.tell() and not self.path.read_bytes().endswith(b"\n"):  # a run was killed within a line
+            stream.write(b"\n")
+        self._stream = io.TextIOWrapper(stream, encoding="utf-8")
 
     def close(self) -> None:
-        """Close the log."""
+        """Close the log and let other runs in."""
         if self._stream is not None:
+            if self._bare:  # nothing was written after all
+                self.path.unlink(missing_ok=True)
             self._stream.close()
             self._stream = None
+
+
+def _locked(descriptor: int) -> bool:
+    """Lock an open file; return False where another run holds it. The system lets go of it when a process ends."""
+    try:
+        if sys.platform == "win32":
+            import msvcrt
+
+            os.lseek(descriptor, _FAR_OFF, os.SEEK_SET)  # a lock there hides no line from a reader
+            msvcrt.locking(descriptor, msvcrt.LK_NBLCK, 1)
+        else:
+            import fcntl
+
+            fcntl.flock(descriptor, fcntl.LOCK_EX | fcntl.LOCK_NB)
+    except OSError as error:
+        return error.errno not in (errno.EAGAIN, errno.EACCES, errno.EDEADLK)  # else the file system knows no locks
+    return True

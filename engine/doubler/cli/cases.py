@@ -33,8 +33,9 @@ def run_fill(options: argparse.Namespace) -> int:
             }
         )
     else:
-        kept = f", {report.kept} were there and right" if report.kept else ""
-        print(f"{report.written} workbooks written to {report.folder}{kept}; summary in {report.summary}")
+        kept = f", {report.kept} {'was' if report.kept == 1 else 'were'} there and right" if report.kept else ""
+        books = "workbook" if report.written == 1 else "workbooks"
+        print(f"{report.written} {books} written to {report.folder}{kept}; summary in {report.summary}")
         envelope_table(report.envelope)
     return 1 if report.fails else 0
 
@@ -54,7 +55,7 @@ def run_sweep(options: argparse.Namespace) -> int:
             }
         )
     else:
-        print(f"{report.cases} cases written to {report.results}")
+        print(f"{report.cases} {'case' if report.cases == 1 else 'cases'} written to {report.results}")
         envelope_table(report.envelope)
     return 1 if report.fails else 0
 
