@@ -131,6 +131,32 @@ def test_check_prints_json_and_ends_with_1_on_an_error(tmp_path: Path, capsys: p
     assert json.loads((tmp_path / "f.json").read_text())[0] == report
 
 
+def test_check_writes_over_no_file_that_it_reads(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    book, older = strap_template(tmp_path / "book.xlsx"), strap_template(tmp_path / "older.xlsx")
+    policy = tmp_path / "rules.toml"
+    policy.write_text("")
+    before = [path.read_bytes() for path in (book, older, policy)]
+    for option in ("--json", "--mended"):
+        for target in (book, older, policy):
+            call = ["check", str(book), "--against", str(older), "--policy", str(policy), option, str(target)]
+            assert main(call) == 2
+            said = capsys.readouterr()
+            assert said.out == ""
+            assert f"{target} is a file that is read; write to another name" in said.err
+    assert [path.read_bytes() for path in (book, older, policy)] == before
+
+
+def test_a_target_in_no_folder_is_refused_before_the_check(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    book = strap_template(tmp_path / "book.xlsx")
+    for option in ("--json", "--mended"):
+        for target in (tmp_path / "none" / "x.xlsx", book / "x.xlsx", tmp_path / ("x" * 300)):
+            assert main(["check", str(book), option, str(target)]) == 2
+            said = capsys.readouterr()
+            assert said.out == ""
+            assert "can't be written" in said.err
+            assert said.err.count("\n") == 1
+
+
 def unreadable(folder: Path) -> dict[str, Path]:
     """Write files that are no workbooks, each in its way."""
     made: dict[str, bytes] = {

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import errno
 import os
 import sys
 from collections.abc import Sequence
@@ -10,6 +11,9 @@ from doubler.errors import InputError
 
 DONE, FOUND, WRONG_INPUT, OWN_FAULT = 0, 1, 2, 3
 """Exit statuses: done; done, and an error or a negative margin was found; wrong call or input; our own fault."""
+_FROM_OUTSIDE = {
+    errno.ENAMETOOLONG, errno.ELOOP, errno.ENOSPC, errno.EDQUOT, errno.EFBIG, errno.EROFS, errno.EACCES, errno.EPERM,
+}  # fmt: skip
 
 
 def main(arguments: Sequence[str] | None = None) -> int:
@@ -44,6 +48,11 @@ def main(arguments: Sequence[str] | None = None) -> int:
         print(f"doubler {options.verb}: stopped; what is written is whole, the same call goes on", file=sys.stderr)
         return 130
     except Exception as fault:
+        if isinstance(fault, OSError) and fault.errno in _FROM_OUTSIDE:
+            where = f"{fault.filename}: " if fault.filename else ""
+            reason = (fault.strerror or str(fault)).lower()
+            print(f"doubler {options.verb}: {where}{reason}; give another file or folder, or mend it", file=sys.stderr)
+            return WRONG_INPUT
         print(
             f"doubler {options.verb}: a fault of the program itself: {type(fault).__name__}: {fault}", file=sys.stderr
         )

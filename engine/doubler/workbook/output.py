@@ -53,7 +53,7 @@ def temporary_beside(target: Path) -> Path:
 
 
 def refuse_target(target: Path) -> None:
-    """Refuse a target that is marked as not to be written; a rename would pass over the mark.
+    """Refuse a target that cannot be written, or is marked as not to be; a rename would pass over the mark.
 
     Parameters
     ----------
@@ -63,12 +63,18 @@ def refuse_target(target: Path) -> None:
     Raises
     ------
     InputError
-        Where the target or its folder is read-only, or the target is a folder.
+        Where the target or its folder is read-only, the target is a folder, or its folder is missing.
     """
     try:
         mode = target.stat().st_mode
-    except OSError:
+    except FileNotFoundError as error:
+        if not target.parent.is_dir():
+            raise output_error(target, error) from None
         mode = None
+    except PermissionError:
+        mode = None
+    except OSError as error:
+        raise output_error(target, error) from None
     if mode is not None:
         if stat.S_ISDIR(mode):
             raise InputError(f"{target} is a folder; give the name of a file")
