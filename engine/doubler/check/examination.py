@@ -137,7 +137,8 @@ def check(path: Path | str, rules: Iterable[Rule] | None = None, policy: Path | 
         The file is no workbook, is damaged, encrypted or hostile.
     """
     asked = policy_for(Path(path), policy)
-    return report_on(Examined.read(path), Path(path), rules, asked)
+    with collector_held():
+        return report_on(Examined.read(path), Path(path), rules, asked)
 
 
 def report_on(
