@@ -1,5 +1,6 @@
 """Filling a template: right without recalculation, lossless, atomic, resumable."""
 
+import datetime
 import math
 import os
 import shutil
@@ -276,3 +277,25 @@ def test_cases_come_from_other_tables_too(ready: tuple[Path, Path, Path], suffix
     fill(ready[0], table, ready[2])
     assert stored(ready[2] / "b.xlsx")["C3"] == 20.0
     assert stored(ready[2] / "b.xlsx")["C7"] == 2.0
+
+
+def test_a_date_in_a_table_of_cases_is_no_number(ready: tuple[Path, Path, Path]) -> None:
+    """A program that takes '1.5' or a case's name '3-4' for a date keeps its count of days."""
+    table = ready[1].with_suffix(".xlsx")
+    for row, cell in ((["light", datetime.date(2026, 5, 1)], "B2"), ([datetime.date(2026, 4, 3), 10], "A2")):
+        book = openpyxl.Workbook()
+        for entries in (["case", "load [kN]"], row):
+            book.active.append(entries)
+        book.save(table)
+        with pytest.raises(InputError, match=rf"Sheet!{cell} shows a date or a time, which is kept as the number 461"):
+            fill(ready[0], table, ready[2])
+
+
+def test_a_row_below_a_gap_is_named_by_its_own_number(ready: tuple[Path, Path, Path]) -> None:
+    table = ready[1].with_suffix(".xlsx")
+    book = openpyxl.Workbook()
+    for entries in (["case", "load [kN]"], ["light", 10], [], [], ["steady", 11], ["heavy", "much"]):
+        book.active.append(entries)
+    book.save(table)
+    with pytest.raises(InputError, match=r"row 6 \(case heavy\)"):
+        fill(ready[0], table, ready[2])

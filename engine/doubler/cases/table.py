@@ -160,17 +160,19 @@ def _open_csv(path: Path) -> CaseTable:
                 ),
             )
             row = 2
-            for block in reader:
-                for start in range(0, block.num_rows, size):
-                    part = block.slice(start, size)
-                    yield RawBatch(row, list(part.columns))
-                    row += part.num_rows
+            with reader:  # closed also where a case is refused: its reading ahead must not outlive the program
+                for block in reader:
+                    for start in range(0, block.num_rows, size):
+                        part = block.slice(start, size)
+                        yield RawBatch(row, list(part.columns))
+                        row += part.num_rows
         except pa.ArrowInvalid as error:
             if wrong:
                 number, columns = wrong[0]
                 where = "" if number is None else f", row {number}"
                 raise InputError(
-                    f"{path}{where}: a row has {columns} values where the head has {len(head)} columns; "
+                    f"{path}{where}: a row has {columns} {'value' if columns == 1 else 'values'} where the head has "
+                    f"{len(head)} columns; "
                     "write one value a column (a decimal comma splits a number in two: write a point)"
                 ) from None
             if "UTF8" in str(error):
@@ -226,6 +228,7 @@ def _open_workbook(path: Path) -> CaseTable:
     from doubler.workbook.addresses import cell_name
     from doubler.workbook.evaluate import NotEvaluated, evaluate
     from doubler.workbook.graph import build_graph
+    from doubler.workbook.number_format import is_date
     from doubler.workbook.reader import read_workbook
 
     workbook = read_workbook(path)
@@ -246,6 +249,12 @@ def _open_workbook(path: Path) -> CaseTable:
     for address, value in values.items():
         if isinstance(value, ErrorValue):
             raise InputError(f"{path}, {sheet.name}!{cell_name(*address)} shows {value}; write a value")
+        style = sheet.cells[address].style
+        if isinstance(value, float) and is_date(workbook.number_formats[style]):
+            raise InputError(
+                f"{path}, {sheet.name}!{cell_name(*address)} shows a date or a time, which is kept as the number "
+                f"{value:.12g}; give the cell a number format and write its number, or write it as text"
+            )
     first = min(row for row, _ in values) if values else 1
     columns = sorted({column for row, column in values if row == first})
     texts = [str(values[first, column]) for column in columns]
@@ -255,11 +264,19 @@ def _open_workbook(path: Path) -> CaseTable:
     rows = sorted({row for row, _ in values if row > first})
 
     def batches(size: int) -> Iterator[RawBatch]:
-        for start in range(0, len(rows), size):
-            part = rows[start : start + size]
+        for part in _runs(rows, size):
             yield RawBatch(part[0], [_Listed([values.get((row, column)) for row in part]) for column in columns])
 
     return _table(path, texts, len(rows), batches)
+
+
+def _runs(rows: list[int], size: int) -> Iterator[list[int]]:
+    """Cut row numbers into runs without a gap, each of at most `size`: a message then names the row that it means."""
+    start = 0
+    for end in range(1, len(rows) + 1):
+        if end == len(rows) or rows[end] != rows[end - 1] + 1 or end - start == size:
+            yield rows[start:end]
+            start = end
 
 
 class _Listed(list[Any]):

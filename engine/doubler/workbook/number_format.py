@@ -70,6 +70,20 @@ def formatted(value: float | str, code: str, date1904: bool = False) -> str | Er
     return _number(section, number, sign)
 
 
+@lru_cache(maxsize=512)
+def is_date(code: str) -> bool:
+    """Return whether a number format shows a number as a date or a time.
+
+    Examples
+    --------
+    >>> is_date("yyyy-mm-dd"), is_date("0.00"), is_date('0.0" mm"'), is_date("[$-409]d. mmm")
+    (True, False, False, True)
+    """
+    told = {"date": True, "elapsed": True, "clock": True, "digit": False, "general": False}
+    kinds = (str(match.lastgroup) for match in _TOKEN.finditer(code))
+    return next((told[kind] for kind in kinds if kind in told), False)
+
+
 def _of_text(value: str, sections: tuple[Tokens, ...]) -> str:
     last = sections[3] if len(sections) > 3 else sections[-1]
     if any(kind == "mark" and mark == "@" for kind, mark in last):
