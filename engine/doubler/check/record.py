@@ -14,6 +14,7 @@ from doubler.check.marked_copy import marked_copy
 from doubler.check.record_content import Content, content_of
 from doubler.check.record_page import page
 from doubler.check.record_sheet import read_record
+from doubler.check.revisions import Comparison
 from doubler.errors import InputError
 from doubler.workbook.output import refuse_target, write_file
 
@@ -60,7 +61,9 @@ def record_paths(book: Path, folder: Path) -> Record:
     )
 
 
-def write_record(report: CheckReport, folder: Path, date: str | None = None) -> Record:
+def write_record(
+    report: CheckReport, folder: Path, date: str | None = None, comparison: Comparison | None = None
+) -> Record:
     """Write the check record of one workbook.
 
     Parameters
@@ -71,6 +74,8 @@ def write_record(report: CheckReport, folder: Path, date: str | None = None) -> 
         Where the record goes; made where it is missing. Dispositions of an earlier record in it are carried over.
     date : str, optional
         The day of the check, ISO form; today where it is left out.
+    comparison : Comparison, optional
+        What changed since an earlier revision, where one was given.
 
     Returns
     -------
@@ -86,7 +91,7 @@ def write_record(report: CheckReport, folder: Path, date: str | None = None) -> 
     for target in (record.html, record.workbook, record.json):
         refuse_target(target)
     earlier = read_record(record.workbook) if record.workbook.exists() else Earlier()
-    content = content_of(report, earlier, date)
+    content = content_of(report, earlier, date, comparison)
     write_file(record.workbook, marked_copy(content))
     write_file(record.html, [page(content).encode()])
     write_file(record.json, [json.dumps(as_object(content), ensure_ascii=False, indent=1).encode(), b"\n"])
@@ -122,6 +127,8 @@ def as_object(content: Content) -> dict[str, Any]:
         }
         for margin in content.margins
     ]
+    if content.comparison is not None:
+        found["against"] = content.comparison.as_object()
     return found
 
 

@@ -11,6 +11,7 @@ from doubler.check.dispositions import Behind, Disposition, Earlier, Lapsed, Sig
 from doubler.check.examination import CheckReport
 from doubler.check.finding import FAMILY_OF, Finding
 from doubler.check.recognise import is_named, quantities
+from doubler.check.revisions import Comparison
 from doubler.check.written_formula import LONGEST_WORDS, Writer, Written, number_shown, under_header
 from doubler.errors import InputError
 from doubler.workbook.addresses import parse_area, split_sheet
@@ -119,6 +120,7 @@ class Content:
     sign_off: SignOff | None
     sign_off_void: bool
     writer: Writer
+    comparison: Comparison | None = None
 
     @property
     def unjudged(self) -> list[Entry]:
@@ -126,7 +128,9 @@ class Content:
         return [entry for entry in self.entries if entry.family == "coverage"]
 
 
-def content_of(report: CheckReport, earlier: Earlier, date: str | None = None) -> Content:
+def content_of(
+    report: CheckReport, earlier: Earlier, date: str | None = None, comparison: Comparison | None = None
+) -> Content:
     """Work out what the record of a check holds.
 
     Parameters
@@ -137,6 +141,8 @@ def content_of(report: CheckReport, earlier: Earlier, date: str | None = None) -
         What an earlier record of the same workbook holds.
     date : str, optional
         The day of the check, ISO form; today where it is left out.
+    comparison : Comparison, optional
+        What changed since an earlier revision, where one was given.
     """
     book = report.book
     behind = Behind(book)
@@ -160,6 +166,7 @@ def content_of(report: CheckReport, earlier: Earlier, date: str | None = None) -
         earlier.sign_off if signed and same else None,
         signed and not same,
         writer,
+        comparison,
     )
 
 

@@ -18,6 +18,7 @@ if TYPE_CHECKING:
 MOST_FINDINGS = 400
 MOST_MARGINS = 200
 """What a page shows at most; how much more there is, and where it stands, is said on it."""
+MOST_CHANGES = 400
 MOST_CHAINS = 4
 """Sheets whose governing margin is followed down to its inputs."""
 
@@ -55,6 +56,8 @@ def page(content: Content) -> str:
         margins=[(margin, content.writer.written(margin.key)) for margin in content.margins[:MOST_MARGINS]],
         chains=list(_chains(content)),
         share=_share,
+        against=content.comparison,
+        changes=content.comparison.changes[:MOST_CHANGES] if content.comparison else [],
     )
 
 

@@ -6,8 +6,9 @@ import argparse
 import shutil
 from pathlib import Path
 
-from doubler.cli.checking import check_books, show_reports
+from doubler.cli.checking import check_books
 from doubler.cli.progress import progress
+from doubler.cli.reporting import show_reports
 from doubler.cli.terminal import envelope_table
 from doubler.errors import InputError
 

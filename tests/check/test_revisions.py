@@ -5,8 +5,8 @@ from pathlib import Path
 
 from tests.check.written_sheets import Fault, Written, all_written, build
 
-from doubler.check.against import Comparison, compare
 from doubler.check.examination import check
+from doubler.check.revisions import Comparison, compare
 
 BOOKS = {book.name: book for book in all_written()}
 
