@@ -1,6 +1,7 @@
 """Solving one input so that every case meets a target."""
 
 import math
+import re
 from pathlib import Path
 
 import pytest
@@ -33,6 +34,18 @@ def test_the_largest_load_of_the_template_itself(template: Path) -> None:
     ((first, last),) = answer.stretches
     assert math.isclose(last, 320 * 200 / (1.5 * 1.25) / 1000, rel_tol=1e-12)
     assert first == answer.low
+
+
+def test_the_printed_value_meets_the_target_itself(template: Path) -> None:
+    for factor, width in ((1.15, 33.0), (1.7, 41.0), (1.31, 77.0), (1.5, 50.0)):
+        cases = cases_csv(template.with_name("c.csv"), f"case,load [kN],width [mm],factor\na,90,{width},{factor}\n")
+        for vary, between, word in (("thickness", ("1", "50"), "or more"), ("load", ("1", "500"), "or less")):
+            if vary == "load":
+                cases_csv(cases, f"case,thickness [mm],width [mm],factor\na,7,{width},{factor}\n")
+            sentence = size(template, vary, between, "ms_yield >= 0", cases).sentence
+            number = float(re.search(rf"([\d.]+) \w+ {word}", sentence)[1])  # type: ignore[index]
+            thickness, load = (number, 90.0) if vary == "thickness" else (7.0, number)
+            assert 320 * width * thickness >= factor * load * 1e3 * (1 - 1e-15), sentence
 
 
 def test_nothing_meets_the_target(template: Path) -> None:

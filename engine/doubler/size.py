@@ -6,6 +6,7 @@ import operator
 import re
 from collections.abc import Callable
 from dataclasses import dataclass
+from decimal import ROUND_CEILING, ROUND_FLOOR, Decimal
 from pathlib import Path
 from typing import Any
 
@@ -19,6 +20,8 @@ from doubler.workbook.evaluate import NotEvaluated, evaluate
 from doubler.workbook.opened import OpenedTemplate, open_template, refuse_unknown
 from doubler.workbook.template import Port
 
+ONLY_CASE = "as in the template"
+"""What the one case is called where no table of cases is given."""
 STEPS = 64
 """Parts into which an interval is cut at each look; between two neighbours the target may change sides once."""
 LANES = 1 << 19
@@ -101,17 +104,18 @@ class Answer:
             if (first, last) == (self.low, self.high):
                 parts.append(f"every value {between}")
             elif last == self.high:
-                parts.append(f"{_shown(first, unit)} or more")
+                parts.append(f"{_within(first, unit, ROUND_CEILING)} or more")
             elif first == self.low:
-                parts.append(f"{_shown(last, unit)} or less")
+                parts.append(f"{_within(last, unit, ROUND_FLOOR)} or less")
             else:
-                parts.append(f"{_shown(first, None)} to {_shown(last, unit)}")
+                start, end = _within(first, None, ROUND_CEILING), _within(last, unit, ROUND_FLOOR)
+                parts.append(f"{start} to {end}")
         lines = [f"{self.varied.name}: {' and '.join(parts)} meets {self.target.words} {over} ({between})."]
-        lines += [
-            f"At {_shown(value, unit)} case {case} governs: {self.target.output.name} = "
-            f"{_shown(worst, self.target.output.unit)}."
-            for value, case, worst in self.governing
-        ]
+        starts = {first for first, _ in self.stretches}
+        for value, case, worst in self.governing:
+            at = _within(value, unit, ROUND_CEILING if value in starts else ROUND_FLOOR)
+            governs = "" if case == ONLY_CASE else f" case {case} governs"
+            lines.append(f"At {at}{governs}: {self.target.output.name} = {_shown(worst, self.target.output.unit)}.")
         return "\n".join(lines)
 
     def as_object(self) -> dict[str, Any]:
@@ -202,7 +206,7 @@ def _bound(text: str, port: Port, option: str) -> float:
 
 def _case_values(opened: OpenedTemplate, cases: Path | str | None, varied: Port) -> tuple[list[str], dict[Any, Any]]:
     if cases is None:
-        return ["as in the template"], {}
+        return [ONLY_CASE], {}
     bound = bind_cases(open_cases(cases), opened.template)
     if any((port.sheet, port.address) == (varied.sheet, varied.address) for port in bound.inputs):
         raise InputError(f"{cases} sets {varied.name} itself; drop its column, since --vary solves for it")
@@ -268,6 +272,7 @@ class _Search:
         first: float | None = low if good[0] else None
         for index in np.flatnonzero(good[1:] != good[:-1]).tolist():
             edge, case, there = self._edge(float(values[index]), float(values[index + 1]), rising=bool(good[index + 1]))
+            edge, there = self._snapped(edge, there)
             governing.append((edge, self.names[case], there))
             if good[index + 1]:
                 first = edge
@@ -293,6 +298,12 @@ class _Search:
                 return good_one, int(which[index]), float(worst[index])
             left, right = near, far
 
+    def _snapped(self, edge: float, there: float) -> tuple[float, float]:
+        """Return the edge without the dust of the search in its last digits, where that meets the target too."""
+        plain = float(f"{edge:.12g}")
+        worst, _ = self.worst(np.array([plain]))
+        return (plain, float(worst[0])) if self.meets(worst)[0] else (edge, there)
+
     def _nearest(
         self, values: NDArray[np.float64], worst: NDArray[np.float64], which: NDArray[np.int64]
     ) -> tuple[float, str, float | None]:
@@ -300,6 +311,15 @@ class _Search:
             return float(values[0]), self.names[int(which[0])], None
         index = int(np.nanargmax(worst) if self.upward else np.nanargmin(worst))
         return float(values[index]), self.names[int(which[index])], float(worst[index])
+
+
+def _within(value: float, unit: Unit | None, toward: str) -> str:
+    """Show the end of a stretch rounded into it: a thickness rounded down would miss its margin."""
+    exact = Decimal(value)
+    if not exact:
+        return _shown(value, unit)
+    rounded = exact.quantize(Decimal(1).scaleb(exact.adjusted() - 5), rounding=toward)
+    return _shown(float(rounded), unit)
 
 
 def _shown(value: float, unit: Unit | None) -> str:
