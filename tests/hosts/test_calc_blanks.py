@@ -14,6 +14,9 @@ class Book(Sheets):
     def formulas(self):
         return [("own", formula) for formula in self.known]
 
+    def state(self):
+        return (id(self), True)
+
     def value(self, _, reference):
         return self.cells.get(reference[1])
 

@@ -11,9 +11,10 @@ from pathlib import Path
 
 import pytest
 
-from doubler.hosts import calc_blanks, calc_client
-from doubler.hosts.calc_client import Client, cell_argument, error_number, trimmed
-from doubler.hosts.calc_extension import settings
+from doubler.hosts import calc_client
+from doubler.hosts.calc_client import PROTOCOL, Client, cell_argument, error_number, trimmed
+from doubler.hosts.calc_extension import inside_libreoffice, settings
+from doubler.hosts.worker import decoded
 
 AXIAL = ("12 kN", "150 mm^2", "MPa")
 
@@ -28,11 +29,13 @@ def client():
 def fake(tmp_path, body):
     """A worker that misbehaves; it greets as the real one does."""
     own = settings()
-    greeting = {"protocol": 1, "version": own["version"], "digest": own["digest"]}
+    greeting = {"protocol": PROTOCOL, "version": own["version"], "digest": own["digest"]}
     script = tmp_path / "worker.py"
     script.write_text(
-        f"import sys, json, time, os\nmarker = {str(tmp_path / 'died')!r}\n"
-        f"print(json.dumps({greeting!r}), flush=True)\n{textwrap.dedent(body)}"
+        "import sys, json, time, os\nfrom doubler.hosts.calc_pipe import Reader, packed\n"
+        f"marker = {str(tmp_path / 'died')!r}\ndef say(data):\n    os.write(1, data)\n"
+        f"say(json.dumps({greeting!r}).encode() + b'\\n')\nreader = Reader(0)\n"
+        f"def ask():\n    return reader.frame(None)\n{textwrap.dedent(body)}"
     )
     return {**own, "command": [sys.executable, str(script)], "timeout": 0.5}
 
@@ -45,9 +48,20 @@ def code_of(value):
 def test_a_call_gives_a_grid_and_a_range_is_one_call(client):
     assert client.call("STRESS_AXIAL", AXIAL) == ((80.0,),)
     column = (("kN",), (1.0,), (2.0,), ("",), ("",))
-    before = client._serial
+    before = client.asked
     assert client.call("STRESS_AXIAL", (column, "100 mm^2", "MPa")) == ((10.0,), (20.0,))
-    assert client._serial == before + 1
+    assert client.asked == before + 1
+
+
+def test_the_same_call_is_asked_once_and_errors_keep_their_reason(client):
+    for _ in range(2):
+        assert client.call("STRESS_AXIAL", AXIAL) == ((80.0,),)
+        assert client.asked == 1
+    for _ in range(2):
+        client.reasons.clear()
+        client.call("STRESS_AXIAL", ("12 kN", "0 mm^2", "MPa"))
+        assert client.asked == 2
+        assert "area" in next(iter(client.reasons))
 
 
 def test_errors_are_true_error_values_and_their_reason_is_told(client):
@@ -65,8 +79,10 @@ def test_every_error_value_has_its_own_code():
 
 
 def test_arguments_are_trimmed_and_empty_cells_stay_empty():
-    assert cell_argument((("",) * 2,) * 5) == [[None, None]]
-    assert cell_argument(((1.0, ""), ("", ""), ("", ""))) == [[1.0, None]]
+    assert cell_argument((("",) * 2,) * 5) == (("", ""),)
+    assert cell_argument(((1.0, ""), ("", ""), ("", ""))) == ((1.0, ""),)
+    assert decoded(((1.0, ""),)) == [[1.0, None]]
+    assert cell_argument(()) == (("",),)
     assert cell_argument((("12 kN",),)) == "12 kN"
     assert cell_argument(3) == 3.0
     assert trimmed(("12 kN", None, None)) == ["12 kN"]
@@ -74,20 +90,21 @@ def test_arguments_are_trimmed_and_empty_cells_stay_empty():
 
 def test_a_killed_worker_is_started_anew_within_the_call(client):
     client.call("STRESS_AXIAL", AXIAL)
-    first = client._process
+    first = client.worker.process
     first.kill()
     first.wait()
-    assert client.call("STRESS_AXIAL", AXIAL) == ((80.0,),)
-    assert client._process.pid != first.pid
+    assert client.call("STRESS_AXIAL", ("24 kN", "150 mm^2", "MPa")) == ((160.0,),)
+    assert client.worker.process.pid != first.pid
 
 
 def test_a_worker_that_dies_in_a_call_is_asked_once_more(tmp_path):
     body = """
-        for line in sys.stdin:
+        while True:
+            serial, request = ask()
             if not os.path.exists(marker):
                 open(marker, "w").close()
                 os._exit(1)
-            print(json.dumps([json.loads(line)[0], [[[7.0]], []]]), flush=True)
+            say(packed(serial, (((7.0,),), ())))
     """
     client = Client(fake(tmp_path, body))
     assert client.call("STRESS_AXIAL", AXIAL) == ((7.0,),)
@@ -104,15 +121,36 @@ def test_a_worker_that_hangs_is_given_up_in_time_and_then_left_alone(tmp_path):
     client.call("STRESS_AXIAL", AXIAL)
     assert time.monotonic() - start < 20
     assert any("twice" in reason for reason in client.reasons)
-    assert client._process is None
+    assert client.worker is None
 
 
-@pytest.mark.parametrize("rubbish", ["print('hello', flush=True)", "print('[99, [[[1.0]], []]]', flush=True)"])
+RUBBISH = {
+    "text": "say(b'hello, this is no frame at all\\n')",
+    "another question's answer": "say(packed(serial + 1, (((1.0,),), ())))",
+    "a garbled answer": "frame = packed(serial, (((1.0,),), ()))\n    say(frame[:-3] + b'xxx')",
+    "half an answer, then the end": "say(packed(serial, (((1.0,),), ()))[:-4])\n    os._exit(0)",
+    "an answer of another shape": "say(packed(serial, 1.0))",
+    "text before the answer": "say(b'warning: ' + packed(serial, (((1.0,),), ())))",
+}
+
+
+@pytest.mark.parametrize("rubbish", RUBBISH.values(), ids=RUBBISH)
 def test_rubbish_is_never_taken_for_an_answer(tmp_path, rubbish):
-    client = Client(fake(tmp_path, f"for line in sys.stdin:\n            {rubbish}"))
+    client = Client(fake(tmp_path, f"while True:\n    serial, request = ask()\n    {rubbish}\n"))
     [[value]] = client.call("STRESS_AXIAL", AXIAL)
     assert code_of(value) == 519
+    assert any("doubler host calc status" in reason for reason in client.reasons)
     client.stop()
+
+
+@pytest.mark.parametrize("said", ["", "hello\\n", "[1]\\n", "x" * 100_000])
+def test_a_worker_that_does_not_greet_answers_nothing(tmp_path, said):
+    script = tmp_path / "worker.py"
+    script.write_text(f"import sys, time\nsys.stdout.write('{said}')\nsys.stdout.flush()\n")
+    client = Client({**settings(), "command": [sys.executable, str(script)]})
+    [[value]] = client.call("STRESS_AXIAL", AXIAL)
+    assert code_of(value) == 519
+    assert client.worker is None
 
 
 def test_another_version_answers_nothing(tmp_path):
@@ -120,7 +158,7 @@ def test_another_version_answers_nothing(tmp_path):
     [[value]] = client.call("STRESS_AXIAL", AXIAL)
     assert code_of(value) == 519
     assert any("doubler host calc install" in reason for reason in client.reasons)
-    assert client._process is None
+    assert client.worker is None
 
 
 def test_what_is_printed_by_the_tool_stays_off_the_pipe(tmp_path):
@@ -138,7 +176,7 @@ def test_what_is_printed_by_the_tool_stays_off_the_pipe(tmp_path):
 
 def test_the_worker_ends_when_its_pipe_ends(client):
     client.call("STRESS_AXIAL", AXIAL)
-    process = client._process
+    process = client.worker.process
     process.stdin.close()
     assert process.wait(10) == 0
 
@@ -156,7 +194,8 @@ def test_a_busy_worker_ends_with_the_program_that_started_it(tmp_path):
     owner = (
         "import subprocess, sys, os\n"
         f"p = subprocess.Popen([{sys.executable!r}, {str(busy)!r}], stdin=subprocess.PIPE, stdout=subprocess.PIPE)\n"
-        'p.stdout.readline()\np.stdin.write(b\'[1,"call","STRESS_AXIAL",[]]\\n\'); p.stdin.flush()\n'
+        "from doubler.hosts.calc_pipe import packed\n"
+        "p.stdout.readline()\np.stdin.write(packed(1, ('call', 'STRESS_AXIAL', ()))); p.stdin.flush()\n"
         f"open({str(note)!r}, 'w').write(str(p.pid))\nos._exit(0)\n"
     )
     subprocess.run([sys.executable, "-c", owner], check=True, timeout=60)
@@ -175,21 +214,22 @@ def _alive(pid):
     return state != "Z"
 
 
-@pytest.mark.parametrize("module", [calc_client, calc_blanks])
+@pytest.mark.parametrize("module", inside_libreoffice())
 def test_what_lives_in_libreoffice_reads_as_python_3_8_and_imports_the_standard_library_only(module):
-    tree = ast.parse(Path(module.__file__).read_text(), feature_version=(3, 8))
+    tree = ast.parse(inside_libreoffice()[module], feature_version=(3, 8))
     roots = {
         name.split(".")[0]
         for node in ast.walk(tree)
         if isinstance(node, ast.Import | ast.ImportFrom)
         for name in ([node.module] if isinstance(node, ast.ImportFrom) else [alias.name for alias in node.names])
     }
-    assert roots <= set(sys.stdlib_module_names)
+    own = {Path(name).stem for name in inside_libreoffice()}
+    assert roots <= set(sys.stdlib_module_names) | own
 
 
-@pytest.mark.parametrize("module", [calc_client, calc_blanks])
+@pytest.mark.parametrize("module", inside_libreoffice())
 def test_no_type_of_python_3_9_is_subscripted_at_run_time_inside_libreoffice(module):
-    tree = ast.parse(Path(module.__file__).read_text())
+    tree = ast.parse(inside_libreoffice()[module])
     values = [node.value for node in ast.walk(tree) if isinstance(node, ast.Assign)]
     heads = {
         node.value.id

@@ -1,15 +1,12 @@
 """The functions in the real LibreOffice: one installed profile and one session for all tests."""
 
-import os
-import subprocess
-
 import openpyxl
 import pytest
 from openpyxl.worksheet.formula import ArrayFormula
 
 from doubler import catalogue
 from doubler.errors import InputError
-from doubler.hosts import calc_commands, calc_profile, conformance
+from doubler.hosts import calc_commands, conformance
 
 pytestmark = pytest.mark.office
 
@@ -143,33 +140,6 @@ def test_every_function_in_every_form_equals_the_python_engine(office, tmp_path)
     assert {call.function for call in known} == set(catalogue.names())
     where = conformance.write_workbook(tmp_path / "conformance.xlsx", known)
     assert not calc_commands.compare(office, tmp_path / "conformance.xlsx", where)
-
-
-def workers():
-    told = subprocess.run(["ps", "-eo", "pid,args"], capture_output=True, text=True, check=True).stdout
-    return {int(line.split()[0]) for line in told.splitlines() if "-m doubler.hosts.worker" in line}
-
-
-@pytest.mark.skipif(os.name != "posix", reason="looks at the process table")
-def test_two_documents_share_one_worker_which_is_replaced_when_killed_and_ends_with_the_program(profile, tmp_path):
-    import shutil
-    import signal
-
-    before = workers()
-    own = tmp_path / "profile"
-    shutil.copytree(profile, own, ignore=shutil.ignore_patterns(".lock"))
-    with calc_profile.Driven(own) as session:
-        for key in ("one", "two"):
-            session("open", key, "")
-            session("put", key, "", {"D1": f'={LONG}STRESS_AXIAL("12 kN";"150 mm^2";"MPa")'})
-            assert session("read", key, "", "D1") == [[80.0]]
-        [worker] = workers() - before
-        os.kill(worker, signal.SIGKILL)
-        session("calculate", "one")
-        assert session("read", "one", "", "D1") == [[80.0]]
-        [other] = workers() - before
-        assert other != worker
-    assert not workers() - before
 
 
 def test_status_and_remove(tmp_path):

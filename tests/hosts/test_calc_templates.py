@@ -21,7 +21,8 @@ CASES = {
     "shaft": "case,load_transverse [kN],load_axial [kN],torque [kN m],outer_diameter [mm]\n"
     "pull,42,15,3.6,78\nreversed,-35,-80,-2.1,82\nunloaded,0,0,0,78\nhollow,20,5,1,31\n",
     "elastic_constants": "case,basis,young_modulus [GPa],poisson_ratio [1],shear_modulus [GPa],bulk_modulus [GPa]\n"
-    "steel,E and nu,206,0.3,79.2,172\ncross,E and G,206,0.3,79.2,172\nwrong,E and G,206,0.3,60,172\nbulk,E and K,206,0.3,79,170\n",
+    "steel,E and nu,206,0.3,79.2,172\ncross,E and G,206,0.3,79.2,172\nwrong,E and G,206,0.3,60,172\n"
+    "bulk,E and K,206,0.3,79,170\n",
 }
 
 

@@ -8,6 +8,7 @@ from typing import Any
 
 import numpy as np
 
+from doubler.catalogue import familiar
 from doubler.catalogue.evaluation import Outcome, evaluate, scaled_values, shift
 from doubler.catalogue.forms import OMITTED, ArgumentError, Bound, bind, due
 from doubler.catalogue.plan import CallError, Plan, plan_for
@@ -79,6 +80,12 @@ def call_cells(function: WorksheetFunction, arguments: Sequence[Any]) -> CellRes
         value = reading.kernel(*reading.arguments).item() * reading.factor - reading.shift
         shown = reading.shown_unit
         return CellResult([[value]] if shown is None else [[value, shown]], (), reading.unit)
+    form = familiar.form_of(function, arguments)
+    if form is not None:
+        found = familiar.answer(function, *form)
+        if found is not None:
+            value, shown, unit = found
+            return CellResult([[value]] if shown is None else [[value, shown]], (), unit)
     try:
         bound, wanted = bind_all(function, arguments)
         plan = plan_for(function, tuple(b.unit for b in bound), wanted)
@@ -88,6 +95,8 @@ def call_cells(function: WorksheetFunction, arguments: Sequence[Any]) -> CellRes
         return CellResult([[error.value]], tuple(f"{function.name}: {reason}" for reason in error.reasons))
     if shape == (1, 1) and not outcome.failures and all(type(a) is str for a in arguments):
         _remember(function, tuple(arguments), plan, values, wanted is None)
+    if shape == (1, 1) and not outcome.failures and form is not None:
+        familiar.learn(function, *form, bound, plan, wanted is None)
     result = _layout(function, outcome, plan, shape, wanted is None)
     return _with_blanks(function, result, bound, shape, wanted is None)
 

@@ -14,19 +14,28 @@ from typing import Any, Dict, Iterable, Iterator, List, Sequence, Set, Tuple  # 
 ZERO, EMPTY, OMITTED, UNKNOWN = "zero", "empty", "omitted", "unknown"
 
 FRESH_SECONDS = 0.03
-"""How long the formulas read are trusted without reading them anew, within one recalculation."""
+"""How long the formulas read are trusted while a document may be changed without that being told."""
+TRUSTED_SECONDS = 5.0
+"""How long they are trusted where every change is told, which makes them be read anew."""
+KEPT_FORMULAS = 200_000
+"""Formula texts whose calls are kept; then the memory is begun anew."""
 
 _REFERENCE = re.compile(r"^(?:\$?('(?:[^']|'')+'|[^\s'.:!;()+*/&=<>^-]+)\.)?\$?([A-Z]{1,3})\$?([0-9]+)$")
 _RANGE_END = re.compile(r"^(?:\$?('(?:[^']|'')+'|[^\s'.:!;()+*/&=<>^-]+)\.)?\$?([A-Z]{1,3})\$?([0-9]*)$")
 _NUMBER = re.compile(r"^[+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:E[+-]?[0-9]+)?$", re.IGNORECASE)
 
+_TOKENS = re.compile(r'"(?:[^"]|"")*"?|\'(?:[^\']|\'\')*\'?|[\w.]+|.', re.DOTALL)
+"""Quoted texts and names, words, and single characters of a formula."""
+
 UNREAD = object()
 """Stands for a value that cannot be told without computing it: an expression, a range, an error."""
 
+_addresses: Dict[str, Tuple[int, int]] = {}  # noqa: UP006
+
 Reference = Tuple[str, str]  # noqa: UP006
 """Sheet (empty for the formula's own) and address of one cell."""
-Written = Tuple[Any, List[str], List[str]]  # noqa: UP006
-"""A call as written: its sheet, the texts of its arguments, and what stands there."""
+Written = Tuple[Any, Sequence[Any], List[str]]  # noqa: UP006
+"""A call as written: its sheet, its arguments (see `_argument`), and what stands there."""
 Table = Tuple[Dict[Tuple[Any, ...], Set[str]], List[Tuple[List[Any], str]]]  # noqa: UP006
 """Calls by the values of their arguments, and calls of which some are not known."""
 
@@ -36,6 +45,10 @@ class Sheets:
 
     def formulas(self) -> Iterable[Tuple[Any, str]]:  # noqa: UP006
         """Give (sheet, formula text) of every formula cell of the documents that may have made the call."""
+        raise NotImplementedError
+
+    def state(self) -> Tuple[Any, bool]:  # noqa: UP006
+        """Return what tells one set of open documents from another, and whether every change of them is told."""
         raise NotImplementedError
 
     def value(self, sheet: Any, reference: Reference) -> Any:
@@ -51,28 +64,22 @@ def calls_in(formula: str, names: Set[str]) -> Iterator[Tuple[str, List[str]]]: 
     """Give (name, argument texts) of every call of one of `names` in a formula in Calc's own grammar."""
     stack: List[Tuple[str, int, List[str]]] = []  # noqa: UP006
     word, braces = "", 0
-    position = 2 if formula.startswith("{=") else 0  # an array formula is told in braces
-    while position < len(formula):
-        char = formula[position]
-        if char in "\"'":
-            position = _after_quoted(formula, position)
-            word = ""
-            continue
-        if char == "(":
+    # An array formula is told in braces.
+    for token in _TOKENS.finditer(formula, 2 if formula.startswith("{=") else 0):
+        text, position = token.group(), token.start()
+        mark = text[0]
+        if mark == "(":
             stack.append((word.rsplit(".", 1)[-1].upper(), position + 1, []))
-            word = ""
-        elif char in ";)" and stack and not braces:
+        elif mark in ";)" and stack and not braces:
             name, start, parts = stack.pop()
             parts.append(formula[start:position].strip())
-            if char == ";":
+            if mark == ";":
                 stack.append((name, position + 1, parts))
             elif name in names:
                 yield name, parts
-            word = ""
-        else:
-            braces += (char == "{") - (char == "}")
-            word = word + char if char.isalnum() or char in "._" else ""
-        position += 1
+        elif mark in "{}":
+            braces += 1 if mark == "{" else -1
+        word = text if mark.isalnum() or mark in "._" else ""
 
 
 def _after_quoted(formula: str, position: int) -> int:
@@ -100,8 +107,10 @@ class Blanks:
     def __init__(self, names: Iterable[str]) -> None:
         self.names = set(names)
         self._calls: Dict[str, List[Written]] = {}  # noqa: UP006
-        self._doubtful: Dict[Tuple[str, int], List[Written]] = {}  # noqa: UP006
+        self._doubtful: Dict[Tuple[str, int, str], List[Written]] = {}  # noqa: UP006
         self._tables: Dict[Tuple[str, int, bool], Table] = {}  # noqa: UP006
+        self._parsed: Dict[str, Tuple[Tuple[str, Tuple[Any, ...]], ...]] = {}  # noqa: UP006
+        self._state: Any = None
         self._read_at = -1.0
         self._took = 0.0
         self._reading = False
@@ -130,12 +139,14 @@ class Blanks:
             `ZERO`, `EMPTY`, `OMITTED`, or `UNKNOWN` where no formula, or formulas that differ in this, could have
             made the call.
         """
-        stale = self._read_at < 0 or time.monotonic() - self._read_at > max(FRESH_SECONDS, 2 * self._took)
-        if stale and not self._reading:
-            self._read(sheets)
+        if not self._reading:
+            state, told = sheets.state()
+            trusted = TRUSTED_SECONDS if told else max(FRESH_SECONDS, 2 * self._took)
+            if self._read_at < 0 or state != self._state or time.monotonic() - self._read_at > trusted:
+                self._read(sheets, state)
         if not self._calls.get(name):
             return UNKNOWN
-        doubtful = [call for call in self._doubtful.get((name, index), ()) if call[2][index] == blank]
+        doubtful = self._doubtful.get((name, index, blank))
         if not doubtful:
             return ZERO
         if self._reading:
@@ -146,19 +157,30 @@ class Blanks:
         found = self._found(sheets, name, arguments, index, self._calls[name], True) & {ZERO, blank}
         return found.pop() if len(found) == 1 else UNKNOWN
 
-    def _read(self, sheets: Sheets) -> None:
+    def _read(self, sheets: Sheets, state: Any) -> None:
         start = time.monotonic()
         self._calls, self._doubtful, self._tables = {}, {}, {}
         for sheet, formula in sheets.formulas():
-            for name, texts in calls_in(formula, self.names):
-                kinds = [_kind(sheets, sheet, text) for text in texts]
-                written = (sheet, texts, kinds)
+            for name, given in self._calls_of(formula):
+                kinds = [_kind(sheets, sheet, argument) for argument in given]
+                written = (sheet, given, kinds)
                 self._calls.setdefault(name, []).append(written)
                 for index, kind in enumerate(kinds):
                     if kind != ZERO:
-                        self._doubtful.setdefault((name, index), []).append(written)
+                        self._doubtful.setdefault((name, index, kind), []).append(written)
+        self._state = state
         self._read_at = time.monotonic()
         self._took = self._read_at - start
+
+    def _calls_of(self, formula: str) -> Tuple[Tuple[str, Tuple[Any, ...]], ...]:  # noqa: UP006
+        found = self._parsed.get(formula)
+        if found is None:
+            if len(self._parsed) >= KEPT_FORMULAS:
+                self._parsed.clear()
+            calls = calls_in(formula, self.names)
+            found = tuple((name, tuple(_argument(text) for text in texts)) for name, texts in calls)
+            self._parsed[formula] = found
+        return found
 
     def _found(
         self,
@@ -189,8 +211,8 @@ def _table(sheets: Sheets, calls: Iterable[Written], index: int) -> Table:
     """Sort calls by the values that their arguments have; those with an unread argument are kept aside."""
     exact: Dict[Tuple[Any, ...], Set[str]] = {}  # noqa: UP006
     loose: List[Tuple[List[Any], str]] = []  # noqa: UP006
-    for sheet, texts, kinds in calls:
-        expected = [_expected(sheets, sheet, text) for text in texts]
+    for sheet, given, kinds in calls:
+        expected = [_expected(sheets, sheet, argument) for argument in given]
         kind = kinds[index] if index < len(kinds) else OMITTED
         if any(value is UNREAD for value in expected):
             loose.append((expected, kind))
@@ -213,21 +235,25 @@ def _plain(given: Any) -> Any:
     return UNREAD if isinstance(given, (tuple, list)) else given
 
 
-def _expected(sheets: Sheets, sheet: Any, text: str) -> Any:
+def _argument(text: str) -> Any:
+    """Return a written argument: the cell to which it refers, or its value in a list, or None for anything else."""
     reference = _REFERENCE.match(text)
     if reference:
-        return sheets.value(sheet, _cell(reference))
+        return _cell(reference)
     known, value = literal(text)
-    return value if known else UNREAD
+    return [value] if known else None
 
 
-def _kind(sheets: Sheets, sheet: Any, text: str) -> str:
-    if not text:
-        return OMITTED
-    reference = _REFERENCE.match(text)
-    if reference and sheets.is_empty(sheet, _cell(reference)):
-        return EMPTY
-    return ZERO
+def _expected(sheets: Sheets, sheet: Any, argument: Any) -> Any:
+    if argument is None:
+        return UNREAD
+    return argument[0] if isinstance(argument, list) else sheets.value(sheet, argument)
+
+
+def _kind(sheets: Sheets, sheet: Any, argument: Any) -> str:
+    if isinstance(argument, tuple):
+        return EMPTY if sheets.is_empty(sheet, argument) else ZERO
+    return OMITTED if argument == [None] else ZERO
 
 
 def literal(text: str) -> Tuple[bool, Any]:  # noqa: UP006
@@ -255,6 +281,21 @@ def range_of(text: str) -> Any:
 
 def _cell(reference: re.Match[str]) -> Reference:
     return _sheet_name(reference.group(1) or ""), reference.group(2) + reference.group(3)
+
+
+def cell_address(text: str) -> Tuple[int, int]:  # noqa: UP006
+    """Return column and row, counted from 0, of an address such as ``C5``."""
+    known = _addresses.get(text)
+    if known is not None:
+        return known
+    column = at = 0
+    while text[at].isalpha():
+        column = column * 26 + ord(text[at]) - 64
+        at += 1
+    if len(_addresses) >= KEPT_FORMULAS:
+        _addresses.clear()
+    found = _addresses[text] = (column - 1, int(text[at:]) - 1)
+    return found
 
 
 def _sheet_name(text: str) -> str:

@@ -6,16 +6,15 @@ its own interpreter; everything else happens in the worker, in the tool's own en
 
 from __future__ import annotations
 
-import json
-import os
 import struct
-import subprocess
 import threading
 import time
 from collections import OrderedDict
-from typing import Any, Dict, List, Optional, Sequence, Tuple  # noqa: UP035 - Python 3.8 inside LibreOffice
+from typing import Any, Dict, List, Optional, Sequence, Tuple, cast  # noqa: UP035 - Python 3.8 inside LibreOffice
 
-PROTOCOL = 1
+from doubler.hosts.calc_pipe import Rubbish, TimedOut, Worker, packed
+
+PROTOCOL = 2
 CODES = {
     "#NULL!": 521,
     "#DIV/0!": 532,
@@ -28,10 +27,15 @@ CODES = {
 """Calc's error code of each error value."""
 
 KEPT_REASONS = 2000
+KEPT_CALLS = 32768
+"""Calls whose result is kept; then the memory is begun anew."""
 START_SECONDS = 60.0
 """How long a fresh worker may take until it greets."""
 REST_SECONDS = 30.0
 """After two time-outs in a row, how long calls are refused at once instead of waiting again."""
+
+Grid = Tuple[Tuple[Any, ...], ...]  # noqa: UP006
+Answer = Tuple[Grid, Tuple[str, ...]]  # noqa: UP006
 
 
 def error_text(code: int) -> str:
@@ -55,35 +59,25 @@ class WorkerTrouble(Exception):
 def cell_argument(given: Any) -> Any:
     """Turn one argument as Calc hands it over into what the worker reads.
 
-    Left out is None; a range is a list of rows with None for an empty cell, its empty rows and columns at the end
+    Left out is None; a range is a sequence of rows with empty text for an empty cell, its empty rows at the end
     dropped; a range of one filled cell is that cell's value.
     """
     if given is None or isinstance(given, (str, float)):
         return given
     if isinstance(given, (bool, int)):
         return float(given)
-    rows = list(given)
-    if not rows:
-        return [[None]]
-    if not isinstance(rows[0], (tuple, list)):
-        rows = [tuple(rows)]
-    blanks = (("",) * len(rows[0]), (None,) * len(rows[0]))
-    while len(rows) > 1 and tuple(rows[-1]) in blanks:
-        rows.pop()
-    if len(rows) == 1 and len(rows[0]) == 1 and rows[0][0] not in ("", None):
+    if not given:
+        return (("",),)
+    rows = given if isinstance(given[0], (tuple, list)) else (tuple(given),)
+    end = len(rows)
+    if end > 1:
+        blanks = (("",) * len(rows[0]), (None,) * len(rows[0]))
+        while end > 1 and tuple(rows[end - 1]) in blanks:
+            end -= 1
+        rows = rows[:end] if end < len(rows) else rows
+    if end == 1 and len(rows[0]) == 1 and rows[0][0] not in ("", None):
         return cell_argument(rows[0][0])
-    return [[None if cell == "" else cell for cell in row] for row in rows]
-
-
-def grid_of(reply: Sequence[Sequence[Any]]) -> tuple[tuple[Any, ...], ...]:
-    """Turn the rows of a reply into what Calc shows: an error stands in the reply as a list of its text."""
-    return tuple(
-        tuple(
-            ERRORS.get(cell[0], ERRORS["#VALUE!"]) if isinstance(cell, list) else ("" if cell is None else cell)
-            for cell in row
-        )
-        for row in reply
-    )
+    return rows
 
 
 class Client:
@@ -99,28 +93,43 @@ class Client:
     def __init__(self, settings: Dict[str, Any]) -> None:  # noqa: UP006
         self.settings = settings
         self.reasons: OrderedDict[str, List[str]] = OrderedDict()  # noqa: UP006
-        self._process: Optional[subprocess.Popen[bytes]] = None  # noqa: UP045
+        self.worker: Optional[Worker] = None  # noqa: UP045
+        self.asked = 0
+        self._known: Dict[Any, Answer] = {}  # noqa: UP006
         self._lock = threading.RLock()
-        self._serial = 0
-        self._deadline: Optional[float] = None  # noqa: UP045
-        self._timed_out = False
         self._timeouts = 0
         self._rest_until = 0.0
-        self._watching = False
 
     # -- what the worksheet calls ------------------------------------------------------------------------------------
 
-    def call(self, name: str, arguments: Sequence[Any]) -> Tuple[Tuple[Any, ...], ...]:  # noqa: UP006
-        """Evaluate a worksheet function; never raises, an error is an error value in the grid."""
+    def call(self, name: str, arguments: Sequence[Any]) -> Grid:
+        """Evaluate a worksheet function; never raises, an error is an error value in the grid.
+
+        The functions depend on their arguments alone, so that a result is kept for the same call.
+        """
+        given = trimmed(arguments)
+        key: Any = (name, *given)
         try:
-            grid, reasons = self.ask("call", name, trimmed(arguments))
+            known = self._known.get(key)
+        except TypeError:  # a list among them
+            known, key = None, None
+        if known is not None:
+            if known[1]:
+                self._keep(name, known[1])
+            return known[0]
+        try:
+            grid, reasons = cast("Answer", self.ask("call", name, given))
         except WorkerTrouble as trouble:
             return self.refuse(name, str(trouble))
         if reasons:
             self._keep(name, reasons)
-        return grid_of(grid)
+        if key is not None and len(grid) < 16 and all(type(a) is not tuple or len(a) < 16 for a in given):
+            if len(self._known) >= KEPT_CALLS:
+                self._known.clear()
+            self._known[key] = (grid, reasons)
+        return grid
 
-    def refuse(self, name: str, reason: str) -> Tuple[Tuple[float]]:  # noqa: UP006
+    def refuse(self, name: str, reason: str) -> Grid:
         """Give the error value #VALUE! and keep the reason."""
         self._keep(name, [reason])
         return ((ERRORS["#VALUE!"],),)
@@ -135,23 +144,27 @@ class Client:
     def ask(self, verb: str, name: str, body: Any) -> Any:
         """Send one request and return the answer; a worker that died is started anew and asked once more."""
         with self._lock:
-            if time.monotonic() < self._rest_until:
+            if self._rest_until and time.monotonic() < self._rest_until:
                 raise WorkerTrouble(
                     "the worker did not answer in time, twice; calls are tried again shortly, recalculate then"
                 )
+            seconds = float(self.settings["timeout"])
             for attempt in (1, 2):
-                self._serial += 1
-                line = json.dumps([self._serial, verb, name, body], separators=(",", ":")).encode("ascii") + b"\n"
+                self.asked += 1
                 try:
-                    process = self._running()
-                    answer = self._exchange(process, line, float(self.settings["timeout"]))
-                    if answer[0] != self._serial:
-                        raise ValueError("an answer to another question")
-                except (OSError, ValueError, IndexError, KeyError, TypeError) as error:
+                    frame = packed(self.asked, (verb, name, body))
+                except ValueError as error:
+                    raise WorkerTrouble(f"{name}: an argument cannot be handed over ({error})") from error
+                try:
+                    answer = self._running().exchange(self.asked, frame, seconds)
+                    if not fits(verb, answer):
+                        raise Rubbish("an answer of another shape")
+                except TimedOut as error:
                     self.stop()
-                    if self._timed_out:
-                        self._note_timeout()
-                        raise WorkerTrouble(f"{name}: no answer within {self.settings['timeout']:g} s") from error
+                    self._note_timeout()
+                    raise WorkerTrouble(f"{name}: no answer within {seconds:g} s") from error
+                except (Rubbish, OSError, ValueError, EOFError, TypeError) as error:
+                    self.stop()
                     if attempt == 2:
                         raise WorkerTrouble(
                             f"the worker {self.settings['command'][0]} does not answer ({error}); "
@@ -159,45 +172,23 @@ class Client:
                         ) from error
                     continue
                 self._timeouts = 0
-                return answer[1]
+                return answer
             raise WorkerTrouble("the worker does not answer")
 
     def stop(self) -> None:
         """End the worker, if there is one."""
-        process, self._process = self._process, None
-        if process is None:
-            return
-        for pipe in (process.stdin, process.stdout):
-            try:
-                if pipe is not None:
-                    pipe.close()
-            except OSError:
-                pass
-        if process.poll() is None:
-            process.kill()
-        process.wait()
+        worker, self.worker = self.worker, None
+        self._known.clear()
+        if worker is not None:
+            worker.end()
 
     # -- the process -------------------------------------------------------------------------------------------------
 
-    def _running(self) -> subprocess.Popen[bytes]:
-        if self._process is not None and self._process.poll() is None:
-            return self._process
-        self.stop()
-        clean = {
-            key: value
-            for key, value in os.environ.items()
-            if not key.startswith("PYTHON") and key not in ("LD_LIBRARY_PATH", "DYLD_LIBRARY_PATH", "URE_BOOTSTRAP")
-        }
-        process = subprocess.Popen(
-            self.settings["command"],
-            stdin=subprocess.PIPE,
-            stdout=subprocess.PIPE,
-            stderr=subprocess.DEVNULL,
-            env=clean,
-            creationflags=getattr(subprocess, "CREATE_NO_WINDOW", 0),
-        )
-        self._process = process
-        greeting = self._exchange(process, b"", START_SECONDS)
+    def _running(self) -> Worker:
+        if self.worker is not None:
+            return self.worker
+        self.worker = worker = Worker(self.settings["command"])
+        greeting = worker.greeting(START_SECONDS)
         own = {"protocol": PROTOCOL, "version": self.settings["version"], "digest": self.settings["digest"]}
         if {key: greeting.get(key) for key in own} != own:
             self.stop()
@@ -205,36 +196,7 @@ class Client:
                 f"the functions were installed by doubler {own['version']} and doubler {greeting.get('version')} "
                 "is there now, or its catalogue changed; run: doubler host calc install"
             )
-        return process
-
-    def _exchange(self, process: subprocess.Popen[bytes], line: bytes, seconds: float) -> Any:
-        if not self._watching:
-            self._watching = True
-            threading.Thread(target=self._watch, name="doubler-watch", daemon=True).start()
-        assert process.stdin is not None
-        assert process.stdout is not None
-        self._timed_out = False
-        self._deadline = time.monotonic() + seconds
-        try:
-            if line:
-                process.stdin.write(line)
-                process.stdin.flush()
-            reply = process.stdout.readline()
-        finally:
-            self._deadline = None
-        if not reply:
-            raise OSError("it ended")
-        return json.loads(reply)
-
-    def _watch(self) -> None:
-        """Kill the worker that keeps a call waiting beyond its time: reading and writing then come back at once."""
-        while True:
-            time.sleep(0.1)
-            deadline, process = self._deadline, self._process
-            if deadline is not None and process is not None and time.monotonic() > deadline:
-                self._timed_out = True
-                self._deadline = None
-                process.kill()
+        return worker
 
     def _note_timeout(self) -> None:
         self._timeouts += 1
@@ -242,12 +204,22 @@ class Client:
             self._timeouts = 0
             self._rest_until = time.monotonic() + REST_SECONDS
 
-    def _keep(self, name: str, reasons: List[str]) -> None:  # noqa: UP006
+    def _keep(self, name: str, reasons: Sequence[str]) -> None:
         for reason in reasons:
             self.reasons.pop(reason, None)
             self.reasons[reason] = [name]
         while len(self.reasons) > KEPT_REASONS:
             self.reasons.popitem(last=False)
+
+
+def fits(verb: str, answer: Any) -> bool:
+    """Say whether an answer is one to that request: a text, or rows of cells and the reasons."""
+    if verb == "reason":
+        return isinstance(answer, str)
+    if not isinstance(answer, tuple) or len(answer) != 2 or not isinstance(answer[1], tuple):
+        return False
+    grid = answer[0]
+    return isinstance(grid, tuple) and bool(grid) and isinstance(grid[0], tuple) and bool(grid[0])
 
 
 def trimmed(arguments: Sequence[Any]) -> List[Any]:  # noqa: UP006

@@ -24,6 +24,8 @@ SERVICE = "doubler.Functions"
 REASON = "UNIT_REASON"
 """The companion worksheet function that says why a call gives an error."""
 CATEGORY = "doubler"
+INSIDE = ("calc_pipe", "calc_client", "calc_blanks", "calc_documents")
+"""Modules that run inside LibreOffice: standard library only, and each other."""
 TIMEOUT = 20.0
 """Seconds after which a call that hangs is given up and the worker is ended."""
 
@@ -206,8 +208,7 @@ def extension(command: Sequence[str] | None = None, timeout: float = TIMEOUT) ->
         "doubler.components": _COMPONENTS,
         "CalcAddIns.xcu": configuration(functions),
         "doubler_component.py": (here / "calc_component.txt").read_text(encoding="utf-8"),
-        "pythonpath/doubler_calc_client.py": (here / "calc_client.py").read_text(encoding="utf-8"),
-        "pythonpath/doubler_calc_blanks.py": (here / "calc_blanks.py").read_text(encoding="utf-8"),
+        **inside_libreoffice(),
         "doubler_settings.json": json.dumps(settings(command, timeout), indent=1),
     }
     packed = io.BytesIO()
@@ -215,6 +216,15 @@ def extension(command: Sequence[str] | None = None, timeout: float = TIMEOUT) ->
         for name, text in parts.items():
             archive.writestr(zipfile.ZipInfo(name, (2020, 1, 1, 0, 0, 0)), text)
     return packed.getvalue()
+
+
+def inside_libreoffice() -> dict[str, str]:
+    """Return the modules of ours that run inside LibreOffice, under the names that they have there."""
+    found = {}
+    for name in INSIDE:
+        text = (resources.files("doubler.hosts") / f"{name}.py").read_text(encoding="utf-8")
+        found[f"pythonpath/doubler_{name}.py"] = text.replace("from doubler.hosts.calc_", "from doubler_calc_")
+    return found
 
 
 def write_extension(target: Path, command: Sequence[str] | None = None, timeout: float = TIMEOUT) -> Path:

@@ -134,12 +134,13 @@ class Driven:
             encoding="utf-8",
         )
         try:
-            self.version = str(self._answer())
+            self.version = str(self.answer())
         except InputError:
             self.close()
             raise
 
-    def _answer(self) -> Any:
+    def answer(self) -> Any:
+        """Return the answer to what was asked."""
         assert self._process.stdout is not None
         line = self._process.stdout.readline()
         outcome, value = json.loads(line) if line else ("failed", "the session with LibreOffice ended")
@@ -149,13 +150,17 @@ class Driven:
 
     def __call__(self, verb: str, *arguments: Any) -> Any:
         """Ask for one of the verbs of `calc_session.Session` and return its value."""
+        self.send(verb, *arguments)
+        return self.answer()
+
+    def send(self, verb: str, *arguments: Any) -> None:
+        """Ask without waiting; `answer` then waits."""
         assert self._process.stdin is not None
         try:
             self._process.stdin.write(json.dumps([verb, arguments]) + "\n")
             self._process.stdin.flush()
         except BrokenPipeError as error:
             raise InputError("LibreOffice: the session has ended") from error
-        return self._answer()
 
     def close(self) -> None:
         """End the session and LibreOffice with it."""

@@ -1,7 +1,8 @@
-"""The worker: a long-lived process in the tool's own environment that answers calls, one line each.
+"""The worker: a long-lived process in the tool's own environment that answers calls.
 
-A request is ``[serial, verb, name, body]``, an answer ``[serial, body]``, both JSON on one line. The first line it
-writes is its greeting. It ends when its input ends, or when the process that started it is gone.
+The first line it writes is its greeting. Then requests come as frames of ``(verb, name, arguments)`` and are answered
+by frames of what LibreOffice shows (`calc_pipe`). It ends when its input ends, or when the process that started it is
+gone.
 """
 
 from __future__ import annotations
@@ -12,12 +13,12 @@ import os
 import sys
 import threading
 import time
-from typing import Any, BinaryIO
+from typing import Any
 
 from doubler import __version__, catalogue
 from doubler.errors import ErrorValue
-
-PROTOCOL = 1
+from doubler.hosts.calc_client import ERRORS, PROTOCOL
+from doubler.hosts.calc_pipe import Reader, packed, write
 
 
 def catalogue_digest() -> str:
@@ -35,17 +36,24 @@ def greeting() -> dict[str, Any]:
     return {"protocol": PROTOCOL, "version": __version__, "digest": catalogue_digest()}
 
 
-def decoded(body: Any) -> Any:
-    """Turn a cell value or range of a request into what the catalogue takes: an error value is a list of its text."""
-    if isinstance(body, list):
-        return [[_cell(cell) for cell in row] for row in body]
-    return _cell(body)
+def decoded(given: Any) -> Any:
+    """Turn an argument into what the catalogue takes: empty text is an empty cell, a dict an error value."""
+    kind = type(given)
+    if kind is float or kind is str or given is None:
+        return given
+    if kind is not tuple and kind is not list:
+        return _cell(given)
+    if all(type(cell) is float for row in given for cell in row):
+        return given
+    return [[_cell(cell) for cell in row] for row in given]
 
 
 def _cell(cell: Any) -> Any:
-    if type(cell) is float or type(cell) is str or cell is None:
+    if type(cell) is float:
         return cell
-    if isinstance(cell, bool):
+    if cell == "" or cell is None:
+        return None
+    if type(cell) is str or isinstance(cell, bool):
         return cell
     if isinstance(cell, int):
         return float(cell)
@@ -63,39 +71,45 @@ def error_value(text: str) -> ErrorValue:
 
 
 def encoded(value: Any) -> Any:
-    """Turn one value of a result into JSON: an error value is a list of its text."""
+    """Turn one value of a result into what Calc shows: an error value is a NaN that names it."""
+    if type(value) is float:
+        return value if value - value == 0.0 else ERRORS[ErrorValue.NUM.value]
     if isinstance(value, ErrorValue):
-        return [value.value]
+        return ERRORS[value.value]
     if isinstance(value, str) or value is None:
-        return value
-    number = float(value)
-    return number if number - number == 0.0 else [ErrorValue.NUM.value]
+        return value or ""
+    return encoded(float(value))
 
 
 def answer(verb: str, name: str, body: Any) -> Any:
     """Answer one request; a fault of our own becomes an error value with its reason, never silence."""
     function = catalogue.lookup(name)
+    grid: tuple[tuple[Any, ...], ...]
+    reasons: tuple[str, ...]
     if function is None:
-        grid: list[list[Any]] = [[["#NAME?"]]]
-        reasons: tuple[str, ...] = (f"there is no worksheet function {name}",)
+        grid, reasons = ((ERRORS["#NAME?"],),), (f"there is no worksheet function {name}",)
     else:
         try:
             result = catalogue.call_cells(function, [decoded(argument) for argument in body])
-            grid, reasons = [[encoded(value) for value in row] for row in result.grid], result.reasons
+            grid, reasons = tuple([tuple([encoded(value) for value in row]) for row in result.grid]), result.reasons
         except Exception as fault:
-            grid, reasons = [[["#VALUE!"]]], (f"{name}: a fault of the program: {type(fault).__name__}: {fault}",)
-    return "; ".join(reasons) if verb == "reason" else [grid, list(reasons)]
+            grid, reasons = (
+                ((ERRORS["#VALUE!"],),),
+                (f"{name}: a fault of the program: {type(fault).__name__}: {fault}",),
+            )
+    return "; ".join(reasons) if verb == "reason" else (grid, reasons)
 
 
-def serve(source: BinaryIO, target: BinaryIO) -> None:
-    """Answer requests until the input ends."""
-    target.write(json.dumps(greeting()).encode("ascii") + b"\n")
-    target.flush()
-    for line in source:
-        serial, verb, name, body = json.loads(line)
-        reply = [serial, answer(verb, name, body)]
-        target.write(json.dumps(reply, separators=(",", ":"), allow_nan=False).encode("ascii") + b"\n")
-        target.flush()
+def serve(source: int, target: int) -> None:
+    """Answer requests until the input ends; both are descriptors."""
+    write(target, json.dumps(greeting()).encode("ascii") + b"\n", None)
+    reader = Reader(source)
+    while True:
+        try:
+            serial, (verb, name, body) = reader.frame(None)
+        except OSError:
+            return
+        write(target, packed(serial, answer(verb, name, body)), None)
 
 
 def _end_with_parent(parent: int) -> None:
@@ -110,9 +124,9 @@ def main() -> None:
     from doubler import mechanics
 
     # The pipe gets a number of its own: whatever prints, or writes to descriptor 1, cannot reach it.
-    pipe = os.fdopen(os.dup(1), "wb")
+    target = os.dup(1)
     os.dup2(2, 1)
-    source = os.fdopen(os.dup(0), "rb")
+    source = os.dup(0)
     nothing = os.open(os.devnull, os.O_RDONLY)
     os.dup2(nothing, 0)
     os.close(nothing)
@@ -121,7 +135,7 @@ def main() -> None:
         threading.Thread(target=_end_with_parent, args=(os.getppid(),), daemon=True).start()
     mechanics.load()
     try:
-        serve(source, pipe)
+        serve(source, target)
     except BrokenPipeError:
         os._exit(0)
 
