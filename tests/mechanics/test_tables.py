@@ -40,6 +40,11 @@ def test_temperatures_of_us_units_alone_are_interpolated_and_given_back_in_them(
     assert value(formula) == pytest.approx(40.0, abs=1e-9)
 
 
+@pytest.mark.parametrize("text", ["12.5 N/mm2", "Stress [N/mm2]", "N/mm2"])
+def test_a_unit_is_given_back_in_its_own_spelling(text: str) -> None:
+    assert value(f'=UNIT_OF("{text}")') == "N/mm2"
+
+
 @pytest.mark.parametrize("pair", [("1 in", "mm"), ("3 kip", "kN"), ("2 Msi", "GPa"), ("7 lbf*ft", "N*m")])
 def test_there_and_back_is_the_same(pair: tuple[str, str]) -> None:
     text, unit = pair

@@ -147,9 +147,9 @@ def attach(number: Ratio, unit: Text) -> Text:
 
 @worksheet_function("UNIT_OF")
 def unit_of(quantity: TextColumn) -> Text:
-    r"""Unit of a quantity, of a heading, or of a value cell with its unit cell, as it is spelt here.
+    r"""Unit of a quantity, of a heading, or of a value cell with its unit cell, as it is spelt there.
 
-    .. math:: \text{“12.5 N/mm2”} \to \text{“N/mm²”}
+    .. math:: \text{“12.5 N/mm2”} \to \text{“N/mm2”}
 
     Parameters
     ----------
