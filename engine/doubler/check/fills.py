@@ -5,10 +5,10 @@ from __future__ import annotations
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from doubler.workbook.evaluate import NotEvaluated, evaluate
+from doubler.check.altered import values_altered
+from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined, Key
-from doubler.workbook.graph import build_graph
-from doubler.workbook.model import Address, Cell, Scalar, Sheet, Workbook
+from doubler.workbook.model import Address, Cell, Scalar, Sheet
 from doubler.workbook.shift import MovableFormula
 from doubler.workbook.syntax import Axis, Binary, Call, CellRef, Node, Unary
 
@@ -183,32 +183,7 @@ class Fills:
 
     def value_with(self, key: Key, formula: str) -> Scalar | NotEvaluated:
         """Return what a cell gives with another formula in it."""
-        return value_with(self.book.workbook, key, formula)
-
-
-def value_with(workbook: Workbook, key: Key, formula: str, wanted: Key | None = None) -> Scalar | NotEvaluated:
-    """Return the value of a cell (or of another one) in the workbook with one formula changed; the workbook stays."""
-    changed = with_formulas(workbook, {key: formula})
-    target = wanted or key
-    value: Scalar | NotEvaluated = evaluate(build_graph(changed), None, [target]).value(*target)
-    return value
-
-
-def with_formulas(workbook: Workbook, formulas: dict[Key, str]) -> Workbook:
-    """Return a copy of a workbook with some formulas in place of what stands there."""
-    from dataclasses import replace
-
-    sheets = []
-    for sheet in workbook.sheets:
-        mine = {key[1]: text for key, text in formulas.items() if key[0] == sheet.name}
-        if not mine:
-            sheets.append(sheet)
-            continue
-        cells = dict(sheet.cells)
-        for address, text in mine.items():
-            cells[address] = Cell(None, text, cells[address].style if address in cells else 0)
-        sheets.append(replace(sheet, cells=cells))
-    return replace(workbook, sheets=sheets)
+        return values_altered(self.book, {key: formula}, [key])[key]
 
 
 def walk(node: Node) -> Iterator[Node]:

@@ -11,11 +11,10 @@ import re
 from collections.abc import Iterable
 from dataclasses import dataclass
 
-from doubler.check.fills import with_formulas
+from doubler.check.altered import values_altered
 from doubler.check.finding import Finding
 from doubler.workbook.evaluate import evaluate
 from doubler.workbook.examined import Examined, Key
-from doubler.workbook.graph import build_graph
 from doubler.workbook.parse import FormulaError, parse
 from doubler.workbook.references import column_number
 
@@ -110,15 +109,14 @@ def _factor(book: Examined, finding: Finding, key: Key) -> float | None:
 def values_when_mended(book: Examined, mend: Mend, wanted: Iterable[Key]) -> dict[Key, float]:
     """Return what cells give when one finding is mended; those without a number are left out."""
     keys = list(wanted)
-    graph, inputs = book.graph, {}
+    values: dict[Key, object]
     if mend.formula is not None:
-        graph = build_graph(with_formulas(book.workbook, {mend.key: mend.formula}))
+        values = {**values_altered(book, {mend.key: mend.formula}, keys)}
     else:
-        inputs[mend.key] = mend.number
-    values = evaluate(graph, inputs, keys)
+        evaluated = evaluate(book.graph, {mend.key: mend.number}, keys)
+        values = {key: mend.number if key == mend.key else evaluated.value(*key) for key in keys}
     found: dict[Key, float] = {}
-    for key in keys:
-        value = mend.number if key == mend.key and mend.formula is None else values.value(*key)
+    for key, value in values.items():
         if isinstance(value, float) and not isinstance(value, bool):
             found[key] = value
     return found

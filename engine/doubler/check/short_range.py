@@ -6,7 +6,8 @@ import math
 from collections.abc import Iterator
 from dataclasses import dataclass
 
-from doubler.check.fills import Fills, value_with, walk
+from doubler.check.altered import values_altered
+from doubler.check.fills import Fills, walk
 from doubler.check.finding import Finding
 from doubler.check.recognise import quantity_at
 from doubler.workbook.addresses import area_name, cell_name
@@ -199,7 +200,7 @@ def _finding(book: Examined, line: _Line, missed: list[Address]) -> Finding:
     mended = formula.replace(wrong, right) if wrong in formula else None
     severity, effect = "warning", ""
     if mended is not None:
-        now, then = book.value(line.key), value_with(book.workbook, line.key, mended)
+        now, then = book.value(line.key), values_altered(book, {line.key: mended}, [line.key])[line.key]
         if isinstance(now, float) and isinstance(then, float):
             changes = not math.isclose(now, then, rel_tol=1e-12)
             severity = "error" if changes else "warning"
