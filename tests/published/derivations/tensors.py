@@ -54,16 +54,16 @@ def about_z(angle: float) -> Any:
     return np.array([[c, s, 0], [-s, c, 0], [0, 0, 1]])
 
 
-def laminate_constants(modulus_1: float, modulus_2: float, poisson: float, shear: float) -> Any:
-    """Return the compliance tensor of a ply under stresses of its plane, fibres along x."""
-    compliance = np.zeros((6, 6))
-    compliance[:2, :2] = np.linalg.inv(_plane_stiffness(modulus_1, modulus_2, poisson))
-    compliance[3, 3] = 1 / shear
-    return compliance_tensor(compliance)
+def ply_compliance(modulus_1: float, modulus_2: float, poisson: float, shear: float, angle: float) -> Any:
+    """Return the in-plane compliance tensor of a ply whose fibres stand at that angle (radians) from x."""
+    matrix = np.zeros((6, 6))
+    matrix[0, 0], matrix[1, 1], matrix[3, 3] = 1 / modulus_1, 1 / modulus_2, 1 / shear
+    matrix[0, 1] = matrix[1, 0] = -poisson / modulus_1
+    return turned(compliance_tensor(matrix), about_z(-angle))
 
 
-def _plane_stiffness(modulus_1: float, modulus_2: float, poisson: float) -> Any:
-    """Return the two by two stiffness that gives each modulus alone and the contraction, found as an equilibrium."""
-    # Unknown strains of two tests: pull along (1, −ν12 free) and across (free side from reciprocity of work).
-    strains = np.array([[1 / modulus_1, -poisson / modulus_1], [-poisson / modulus_1, 1 / modulus_2]])
-    return np.linalg.solve(strains, np.eye(2))
+def plane_matrix(compliance: Any) -> Any:
+    """Return strains xx, yy and engineering xy from the stresses xx, yy, xy."""
+    pairs = ((0, 0), (1, 1), (0, 1))
+    whole = np.array([[compliance[i, j, k, l] for k, l in pairs] for i, j in pairs])
+    return whole * np.outer([1, 1, 2], [1, 1, 2])
