@@ -62,7 +62,11 @@ def record_paths(book: Path, folder: Path) -> Record:
 
 
 def write_record(
-    report: CheckReport, folder: Path, date: str | None = None, comparison: Comparison | None = None
+    report: CheckReport,
+    folder: Path,
+    date: str | None = None,
+    comparison: Comparison | None = None,
+    staged: Path | None = None,
 ) -> Record:
     """Write the check record of one workbook.
 
@@ -76,6 +80,8 @@ def write_record(
         The day of the check, ISO form; today where it is left out.
     comparison : Comparison, optional
         What changed since an earlier revision, where one was given.
+    staged : Path, optional
+        A folder where the record waits until it is moved to its own.
 
     Returns
     -------
@@ -86,12 +92,16 @@ def write_record(
     InputError
         The folder can't be written, or what stands under the record's names is no record.
     """
-    _make(folder)
+    if staged is None:
+        _make(folder)
     record = record_paths(report.path, folder)
-    for target in (record.html, record.workbook, record.json):
-        refuse_target(target)
+    if folder.is_dir():
+        for target in (record.html, record.workbook, record.json):
+            refuse_target(target)
     earlier = read_record(record.workbook) if record.workbook.exists() else Earlier()
     content = content_of(report, earlier, date, comparison)
+    if staged is not None:
+        record = record_paths(report.path, staged)
     write_file(record.workbook, marked_copy(content))
     write_file(record.html, [page(content).encode()])
     write_file(record.json, [json.dumps(as_object(content), ensure_ascii=False, indent=1).encode(), b"\n"])

@@ -7,6 +7,7 @@ import json
 import os
 import sys
 from collections.abc import Sequence
+from contextlib import ExitStack
 from pathlib import Path
 from typing import TYPE_CHECKING
 
@@ -16,11 +17,15 @@ from doubler.errors import InputError
 
 if TYPE_CHECKING:
     from doubler.check.examination import CheckReport
+    from doubler.check.many import Outcome
+    from doubler.check.record import Record
+    from doubler.check.revisions import Comparison
 
 
 def run_check(options: argparse.Namespace) -> int:
     """Check workbooks, worst finding first."""
-    from doubler.workbook.output import refuse_target, write_file
+    from doubler.check.many import ALONE, outcome_of
+    from doubler.workbook.output import refuse_target
 
     paths = [Path(book) for book in options.books]
     if options.json and options.json != "-":
@@ -37,6 +42,8 @@ def run_check(options: argparse.Namespace) -> int:
         from doubler.check.record import refuse_shared_names
 
         refuse_shared_names(paths, Path(options.record))
+    if len(paths) > ALONE:
+        return _check_many(paths, options)
     reports = check_books(paths, second=options.second, policy=options.policy)
     comparison = None
     if options.against:
@@ -44,30 +51,75 @@ def run_check(options: argparse.Namespace) -> int:
         from doubler.check.revisions import compare
 
         comparison = compare(reports[0], check(Path(options.against), policy=options.policy))
-    records = []
+    records: list[Record | None] = [None] * len(reports)
     if options.record:
         from doubler.check.record import write_record
 
         records = [write_record(report, Path(options.record), comparison=comparison) for report in reports]
-    objects = [report.as_object() for report in reports]
+    outcomes = [outcome_of(report, record) for report, record in zip(reports, records, strict=True)]
     if comparison is not None:
-        objects[0]["against"] = comparison.as_object()
-    text = json.dumps(objects, ensure_ascii=False, indent=1)
-    if options.json == "-":
-        print(text)
-    else:
-        show_reports(reports, comparison)
+        outcomes[0].told["against"] = comparison.as_object()
+    _show(outcomes, options, comparison)
     if options.mended:
         from doubler.check.mended_copy import mended_as_text, write_mended
 
         lines = mended_as_text(write_mended(reports[0], Path(options.mended)))
         print(f"{len(lines)} mended in {options.mended}", *lines, sep="\n  ", file=sys.stderr)
-    for record in records:
-        print(f"check record of {record.name}: {record.html}", file=sys.stderr)
+    _tell_files(outcomes, options)
+    return _status(outcomes)
+
+
+def _check_many(paths: Sequence[Path], options: argparse.Namespace) -> int:
+    """Check more workbooks than one process should; where one of them is none, nothing is written."""
+    from doubler.check.many import Refusal, Wish, check_many, put_in_place, refused_at_once, waiting_room
+
+    if refused := refused_at_once(paths):
+        raise InputError("\n".join(one.sentence for one in refused))
+    with ExitStack() as stack:
+        folder = Path(options.record) if options.record else None
+        staged = None if folder is None else stack.enter_context(waiting_room(folder))
+        wish = Wish(options.policy, options.second, folder, staged)
+        with progress("checking", len(paths)) as advance:
+            found = check_many(paths, wish, advance)
+        outcomes = [one for one in found if not isinstance(one, Refusal)]
+        if refused := [one for one in found if isinstance(one, Refusal)]:
+            if options.json != "-":
+                show_reports(outcomes)
+            sentences = "\n".join(one.sentence for one in refused)
+            if any(one.own for one in refused):
+                raise RuntimeError(sentences)
+            raise InputError(sentences)
+        if staged is not None:
+            put_in_place([one.record for one in outcomes if one.record is not None], staged)
+    _show(outcomes, options)
+    _tell_files(outcomes, options)
+    return _status(outcomes)
+
+
+def _show(outcomes: Sequence[Outcome], options: argparse.Namespace, comparison: Comparison | None = None) -> None:
+    if options.json == "-":
+        print(_as_json(outcomes))
+    else:
+        show_reports(outcomes, comparison)
+
+
+def _as_json(outcomes: Sequence[Outcome]) -> str:
+    return json.dumps([one.told for one in outcomes], ensure_ascii=False, indent=1)
+
+
+def _tell_files(outcomes: Sequence[Outcome], options: argparse.Namespace) -> None:
+    from doubler.workbook.output import write_file
+
+    for one in outcomes:
+        if one.record is not None:
+            print(f"check record of {one.record.name}: {one.record.html}", file=sys.stderr)
     if options.json and options.json != "-":
-        write_file(Path(options.json), [text.encode(), b"\n"])
+        write_file(Path(options.json), [_as_json(outcomes).encode(), b"\n"])
         print(f"findings written to {options.json}", file=sys.stderr)
-    return 1 if any(report.counts["error"] for report in reports) else 0
+
+
+def _status(outcomes: Sequence[Outcome]) -> int:
+    return 1 if any(one.counts["error"] for one in outcomes) else 0
 
 
 def _refuse_read(target: Path, books: Sequence[Path], options: argparse.Namespace) -> None:

@@ -17,6 +17,7 @@ def run_demo(options: argparse.Namespace) -> int:
     """Fill a template with 200 load cases, check a colleague's workbook, write the record, and say where all is."""
     from contextlib import ExitStack
 
+    from doubler.check.many import outcome_of
     from doubler.check.record import write_record
     from doubler.demo_data import templates_folder
     from doubler.fill import fill
@@ -43,7 +44,7 @@ def run_demo(options: argparse.Namespace) -> int:
     print("\n2. A colleague's workbook, with faults put in on purpose, and one of the filled ones, which has none")
     filled = next(iter(sorted(report.folder.glob("*.xlsx"))))
     checked = check_books([colleague, filled])
-    show_reports(checked)
+    show_reports([outcome_of(one) for one in checked])
     pages = [write_record(one, out / "record") for one in checked]
     print("\n3. Where everything is")
     for what, where in (

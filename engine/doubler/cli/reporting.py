@@ -11,8 +11,8 @@ if TYPE_CHECKING:
     from rich.console import Console
     from rich.table import Table
 
-    from doubler.check.examination import CheckReport
     from doubler.check.finding import Finding
+    from doubler.check.many import Outcome
     from doubler.check.revisions import Comparison
 
 _STYLES = {"error": "bold red", "warning": "yellow", "note": "cyan"}
@@ -27,7 +27,7 @@ def _table() -> Table:
     return Table(box=box.SIMPLE_HEAD, show_edge=False, pad_edge=False)
 
 
-def show_reports(reports: Sequence[CheckReport], comparison: Comparison | None = None) -> None:
+def show_reports(reports: Sequence[Outcome], comparison: Comparison | None = None) -> None:
     """Print the findings of each workbook as a table, worst first; then what changed since an earlier revision."""
     from rich.text import Text
 
@@ -41,7 +41,7 @@ def show_reports(reports: Sequence[CheckReport], comparison: Comparison | None =
             "dim",
         )
         if report.second is not None:
-            told = report.second.as_object()
+            told = report.second
             title.append(
                 f"\n  second engine: {told['match']} match, {told['differ']} differ, "
                 f"{told['not_evaluated']} not evaluated",
