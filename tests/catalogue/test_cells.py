@@ -135,3 +135,23 @@ def test_a_word_for_a_missing_value_is_no_heading_that_drops_out(word: str) -> N
     found = evaluate_formula(f'=MARGIN_ENVELOPE({{"{word}";0.2;0.3}})')
     assert found.grid == [[ErrorValue.VALUE]]
     assert "may stand for a missing value" in found.reasons[0]
+
+
+def test_units_that_are_equal_and_spelt_unlike_are_told_apart() -> None:
+    """A plan kept for in/in was given back for mm/mm, whose results are then wanted in metric units."""
+    from doubler.workbook.evaluate import evaluate_formula
+
+    assert evaluate_formula('=UNIT_OF("1 N/m2")').grid == [["N/m2"]]
+    assert evaluate_formula('=UNIT_OF("1 N/m²")').grid == [["N/m²"]]
+    american = evaluate_formula('=STRAIN_TRUE("0.001 in/in")').grid
+    metric = evaluate_formula('=STRAIN_TRUE("0.001 mm/mm")').grid
+    assert american[0][0] == metric[0][0]
+
+
+def test_a_quantity_goes_through_pint_under_each_of_its_spellings() -> None:
+    from doubler.units import from_pint, parse_unit, to_pint
+
+    for text in ("µε", "ppm", "µm/m", "ppm"):
+        value, unit = from_pint(to_pint(3.0, parse_unit(text)))
+        assert value * unit.scale == pytest.approx(3e-6)
+    assert from_pint(to_pint(3.0, parse_unit("ppm")))[0] == 3.0

@@ -122,9 +122,10 @@ def resolve_dimension(quantity: Quantity | Alike, letters: dict[str, Dimension])
     return dimension
 
 
-@lru_cache(maxsize=4096)
 def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result: str | None) -> Plan:
-    """Return the plan of one call shape.
+    """Return the plan of one call shape; kept for units that are spelt alike and not only equal.
+
+    mm/mm and in/in are equal and belong to unlike systems, and N/m2 is given back as it was written.
 
     Parameters
     ----------
@@ -139,6 +140,13 @@ def plan_for(function: WorksheetFunction, units: tuple[Unit | None, ...], result
     CallError
         The unit wanted does not fit the result, or arguments that must be alike are not.
     """
+    return _kept_plan(function, units, tuple([None if unit is None else unit.text for unit in units]), result)
+
+
+@lru_cache(maxsize=4096)
+def _kept_plan(
+    function: WorksheetFunction, units: tuple[Unit | None, ...], _texts: tuple[str | None, ...], result: str | None
+) -> Plan:
     systems = {unit.system for unit in units if unit is not None and unit.system}
     system = "us" if systems == {"us"} else "metric"
     letters: dict[str, Dimension] = {}

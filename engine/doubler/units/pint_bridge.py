@@ -140,11 +140,11 @@ def _pint_unit(unit: Unit) -> Any:
     Pint fills its tables when they are first read, and fails where several threads do that at once: one at a time.
     """
     with _reading:
-        return _found_in_pint(unit)
+        return _found_in_pint(unit, unit.text)
 
 
 @lru_cache(maxsize=1024)
-def _found_in_pint(unit: Unit) -> Any:
+def _found_in_pint(unit: Unit, _text: str) -> Any:
     own = registry()
     if unit.offset:
         return own.Unit("degree_Celsius" if "C" in unit.text else "degree_Fahrenheit")

@@ -14,7 +14,6 @@ _FORCE_SYMBOL = re.compile(r"(?:^|[\s(,=])(?:P|F|V|R|T|Q|W|N)(?:_?\w{0,6})?(?=$|
 _ONLY_FORCES = ("moment", "stress", "line_load")
 
 
-@lru_cache(maxsize=4096)
 def pounds_force(unit: Unit, words: str) -> Unit | None:
     """Return the unit that is meant where a unit in pounds can only be one of force; None where it is none.
 
@@ -32,10 +31,13 @@ def pounds_force(unit: Unit, words: str) -> Unit | None:
     >>> pounds_force(parse_unit("lb"), "Mass of the hook") is None
     True
     """
-    if not _POUND.search(unit.text):
-        return None
+    return _force(unit.text, words) if _POUND.search(unit.text) else None
+
+
+@lru_cache(maxsize=4096)
+def _force(text: str, words: str) -> Unit | None:
     try:
-        force = parse_unit(_POUND.sub("lbf", unit.text))
+        force = parse_unit(_POUND.sub("lbf", text))
     except UnitError:
         return None
     if any(force.dimension == kind(name).dimension for name in _ONLY_FORCES):

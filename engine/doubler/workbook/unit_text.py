@@ -161,9 +161,13 @@ def _unit_like(part: str) -> bool:
     return stem.casefold() in _FOLDED or stem.casefold() in ("m", "n", "s", "h", "k", "c")
 
 
-@lru_cache(maxsize=65536)
 def role_agrees(unit: Unit, words: str) -> bool | None:
     """Return whether the words beside a number speak of the quantity that a unit measures; None if they say nothing."""
+    return _role_agrees(unit, unit.text, words)
+
+
+@lru_cache(maxsize=65536)
+def _role_agrees(unit: Unit, text: str, words: str) -> bool | None:
     found = roles(words)
     if not found:
         return False if is_pure_number(words) and unit.scale != 1.0 else None
@@ -172,7 +176,7 @@ def role_agrees(unit: Unit, words: str) -> bool | None:
         name = kind_of_role(role)
         if name is not None and kind(name).dimension.without_angle() == own:
             return True
-    compound = len(str(unit.text)) > 3 or "/" in unit.text
+    compound = len(text) > 3 or "/" in text
     return bool(compound and not is_pure_number(words) and found & {"stress", "mass", "force"} and _related(unit))
 
 
