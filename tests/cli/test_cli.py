@@ -177,7 +177,7 @@ def unreadable(folder: Path) -> dict[str, Path]:
     return {path.name: path for path in folder.iterdir() if path.name != "whole.xlsx"}
 
 
-def test_what_is_no_workbook_is_refused_in_one_sentence(tmp_path: Path) -> None:
+def test_what_is_no_workbook_is_refused_in_one_sentence(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     books = tmp_path / "books"
     books.mkdir()
     cases = cases_csv(tmp_path / "cases.csv", GOOD)
@@ -189,11 +189,11 @@ def test_what_is_no_workbook_is_refused_in_one_sentence(tmp_path: Path) -> None:
             ["explain", str(path), "A1"],
         )
         for call in calls:
-            done = run(*call)
-            assert done.returncode == 2, (name, call[0], done.stderr)
-            assert done.stdout == ""
-            assert done.stderr.count("\n") == 1, (name, done.stderr)
-            assert name in done.stderr
+            assert main(call) == 2, (name, call[0])
+            out, err = capsys.readouterr()
+            assert out == ""
+            assert err.count("\n") == 1, (name, err)
+            assert name in err
     assert sorted(path.name for path in tmp_path.iterdir()) == ["books", "cases.csv"]
 
 
