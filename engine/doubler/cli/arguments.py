@@ -36,7 +36,7 @@ def parser() -> argparse.ArgumentParser:
 
     p = verb("eval", "evaluate one formula", """doubler eval '=STRESS_AXIAL("12 kN","150 mm^2","MPa")'""")
     p.add_argument("formula", help="as typed in a cell, native functions included")
-    p.add_argument("--json", action="store_true", help="print the rows, the unit and the reasons as JSON")
+    p.add_argument("--json", action="store_true", help="print the rows and the reasons as JSON")
 
     p = verb("functions", "list the worksheet functions, or show one", "doubler functions STRESS_AXIAL")
     p.add_argument("name", nargs="?", help="a function, or a category such as STRESS_")

@@ -14,6 +14,7 @@ def run_eval(options: argparse.Namespace) -> int:
     """Evaluate one formula and print it as a sheet would show it: a row a line, cells separated by tabs."""
     from doubler.workbook.evaluate import evaluate_formula
 
+    _refuse_cells(options.formula)
     result = evaluate_formula(options.formula)
     failed = any(isinstance(value, ErrorValue) for row in result.grid for value in row)
     if options.json:
@@ -25,6 +26,19 @@ def run_eval(options: argparse.Namespace) -> int:
     for reason in result.reasons:
         print(reason, file=sys.stderr)
     return 2 if failed else 0
+
+
+def _refuse_cells(formula: str) -> None:
+    """Refuse a formula that reads cells: there are none here, and an empty one would count as 0."""
+    from doubler.workbook.parse import FormulaError, parse
+    from doubler.workbook.syntax import CellRef, RangeRef, nodes
+
+    try:
+        tree = parse(formula.strip(), (1, 1))
+    except FormulaError:
+        return  # told with its reason where it is evaluated
+    if any(isinstance(node, CellRef | RangeRef) for node in nodes(tree)):
+        raise InputError(f"the formula {formula!r} reads cells, and there are none here; write their values instead")
 
 
 def shown(value: Any) -> str:

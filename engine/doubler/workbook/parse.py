@@ -12,6 +12,7 @@ from typing import Any
 
 from doubler.errors import ErrorValue
 from doubler.workbook.model import Address
+from doubler.workbook.parse_reasons import why_unparsed
 from doubler.workbook.references import column_number, read_reference, without_prefix
 from doubler.workbook.syntax import (
     Apply,
@@ -187,7 +188,7 @@ anchored=False), column=Axis(number=-1, anchored=False)))
     except RecursionError:
         raise FormulaError("the formula is nested too deeply") from None
     except Exception as error:  # the parser's own exception types share no documented root
-        raise FormulaError(f"the formula cannot be parsed: {error}") from error
+        raise FormulaError(f"the formula cannot be parsed: {why_unparsed(body, error)}") from error
 
 
 def _node(parsed: Any, host: Address) -> Node:
