@@ -1,4 +1,4 @@
-"""A check value that names its derivation is computed again by it.
+"""A check value that names its derivation is computed again by it, and every worksheet function has a check value.
 
 An item's ``derivation`` names the function of ``derivations/<its file's name>.py`` that finds the number by another way
 than the tool does; here it is run and must give the number of the YAML, to its digits.
@@ -6,6 +6,7 @@ than the tool does; here it is run and must give the number of the YAML, to its 
 
 import importlib
 import inspect
+import re
 from pathlib import Path
 from types import ModuleType
 from typing import Any
@@ -13,6 +14,8 @@ from typing import Any
 import numpy as np
 import pytest
 import yaml
+
+from doubler import catalogue, mechanics
 
 FOLDER = Path(__file__).parent
 ITEMS = {path.stem: yaml.safe_load(path.read_text(encoding="utf-8")) for path in sorted(FOLDER.glob("*.yaml"))}
@@ -55,3 +58,14 @@ def test_no_derivation_stands_unused(topic: str) -> None:
 def test_no_derivation_asks_the_tool() -> None:
     for path in (FOLDER / "derivations").glob("*.py"):
         assert "doubler" not in path.read_text(encoding="utf-8"), path.name
+
+
+def test_every_function_has_a_check_value_from_outside() -> None:
+    mechanics.load()
+    used = {
+        name
+        for items in ITEMS.values()
+        for item in items
+        for name in re.findall(r"\b[A-Z]+_[A-Z0-9_]+(?=\()", item["formula"])
+    }
+    assert not sorted(set(catalogue.names()) - used)

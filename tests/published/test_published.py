@@ -3,7 +3,8 @@
 Each YAML file beside this one holds a list of items: ``id``, ``formula`` (as typed in a cell), ``expected`` (a number,
 a text, or rows of them), ``tolerance`` (``abs`` or ``rel``, from the digits that the source prints), ``source``,
 ``confidence`` (``read``, ``computed`` or ``from memory``) and, where the source itself is wrong, ``source_error``: the
-number that it prints, which must then lie outside the tolerance.
+number that it prints, which must then lie outside the tolerance. ``derivation`` names the function that computes the
+number by another way than the tool does (test_derivations.py).
 """
 
 from pathlib import Path

@@ -165,6 +165,9 @@ def fillet_shaft(larger: Length, smaller: Length, radius: Length) -> Ratio:
     -----
     Linear elastic. 0.1 ≤ h/r ≤ 20, in two ranges that meet at 2.
 
+    The charts are low in tension: finite elements of the shaft give 5 to 10 % more (h/r 0.15 to 0.9, r/d 0.03 to
+    0.25; steeper steps not compared). Raise the factor by a tenth where it decides.
+
     References
     ----------
     W. D. Pilkey, Peterson's Stress Concentration Factors, chart for shoulder fillets of round bars in tension,
@@ -204,6 +207,9 @@ def fillet_shaft_bending(larger: Length, smaller: Length, radius: Length) -> Rat
     Notes
     -----
     Linear elastic. 0.1 ≤ h/r ≤ 20, in two ranges that meet at 2.
+
+    Finite elements of the shaft give from 3 % less to 4 % more at r/d of 0.06 to 0.25, and up to 6 % more at r/d =
+    0.03 (h/r 0.15 to 0.9; steeper steps not compared).
 
     References
     ----------

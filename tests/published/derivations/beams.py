@@ -1,5 +1,7 @@
 """Bars and beams: elements of beam theory, linear stress fields in balance, series, motion in time."""
 
+from itertools import pairwise
+
 import numpy as np
 from scipy.integrate import quad, solve_ivp
 
@@ -10,7 +12,7 @@ def _beam(supports: str, at: float, load_at: float, force: float, couple: float)
     """Deflection and slope at a place, from cubic elements between the ends, the load and the place."""
     nodes = sorted({0.0, at, load_at, _LENGTH})
     matrix, load = np.zeros((2 * len(nodes), 2 * len(nodes))), np.zeros(2 * len(nodes))
-    for first, (left, right) in enumerate(zip(nodes[:-1], nodes[1:], strict=True)):
+    for first, (left, right) in enumerate(pairwise(nodes)):
         h = right - left
         element = np.array(
             [[12, 6 * h, -12, 6 * h], [6 * h, 4 * h * h, -6 * h, 2 * h * h], [-12, -6 * h, 12, -6 * h],
