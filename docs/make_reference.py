@@ -258,7 +258,10 @@ def check_lines(checks: Sequence[Any]) -> Iterator[str]:
     yield from ("**Check values.**", "", "| source | confidence | checks |", "| --- | --- | --- |")
     for (source, confidence, file), ids in grouped.items():
         link = f"[{file.removesuffix('.yaml')}](../../tests/published/{file})"
-        yield f"| {table_text(source)} | {CONFIDENCE[confidence]} | {link}: {', '.join(ids)} |"
+        trust = CONFIDENCE[confidence]
+        if any("derivation" in item for item in checks if (item["source"], item["file"]) == (source, file)):
+            trust = f"[{trust}](../../tests/published/derivations/{Path(file).stem}.py)"
+        yield f"| {table_text(source)} | {trust} | {link}: {', '.join(ids)} |"
 
 
 def shown(value: Any) -> str:
