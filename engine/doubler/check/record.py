@@ -137,6 +137,8 @@ def as_object(content: Content) -> dict[str, Any]:
         }
         for margin in content.margins
     ]
+    if content.states:
+        found["plane_stress"] = [state.as_object() | {"rests_on": list(on)} for state, on in content.states]
     if content.comparison is not None:
         found["against"] = content.comparison.as_object()
     return found

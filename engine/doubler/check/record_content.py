@@ -3,13 +3,14 @@
 from __future__ import annotations
 
 import datetime
-from collections.abc import Iterator
-from dataclasses import dataclass
+from collections.abc import Iterable, Iterator
+from dataclasses import dataclass, field
 
 from doubler import __version__
 from doubler.check.dispositions import Behind, Disposition, Earlier, Lapsed, SignOff, carried
 from doubler.check.examination import CheckReport
 from doubler.check.finding import FAMILY_OF, Finding
+from doubler.check.plane_states import PlaneState, plane_states
 from doubler.check.recognise import is_named, quantities
 from doubler.check.revisions import Comparison
 from doubler.check.written_formula import LONGEST_WORDS, Writer, Written, number_shown, under_header
@@ -121,6 +122,8 @@ class Content:
     sign_off_void: bool
     writer: Writer
     comparison: Comparison | None = None
+    states: list[tuple[PlaneState, tuple[int, ...]]] = field(default_factory=list)
+    """The plane stress states, the highest equivalent stress first, each with the findings on which it rests."""
 
     @property
     def unjudged(self) -> list[Entry]:
@@ -154,6 +157,8 @@ def content_of(
         at = first_cell(finding)
         known = book.cell(at) is not None
         entries.append(Entry(number, finding, at, writer.written(at) if known else None, digits, disposition))
+    touched = _touched(book, entries)
+    states = sorted(plane_states(book), key=lambda state: -state.von_mises * state.scale)
     signed = any(earlier.sign_off.fields.values())
     same = earlier.sign_off.sha256 == report.sha256
     return Content(
@@ -161,12 +166,13 @@ def content_of(
         __version__,
         date or datetime.date.today().isoformat(),
         entries,
-        list(_margins(book, entries)),
+        list(_margins(book, touched)),
         lapsed,
         earlier.sign_off if signed and same else None,
         signed and not same,
         writer,
         comparison,
+        [(state, _rests_on(state.cells, touched)) for state in states],
     )
 
 
@@ -194,8 +200,8 @@ def cells_of(book: Examined, text: str, sheet: str) -> Iterator[Key]:
             yield from ((found.name, at) for at in found.cells if at in area)
 
 
-def _margins(book: Examined, entries: list[Entry]) -> Iterator[Margin]:
-    """Yield the margins, lowest first; those without a number come first of all."""
+def _touched(book: Examined, entries: list[Entry]) -> dict[Key, list[int]]:
+    """Return for each cell the numbers of the findings (errors and warnings) on it or on what it hangs on."""
     touched: dict[Key, list[int]] = {}
     for entry in entries:
         if entry.finding.severity == "note" or entry.finding.kind == "negative-margin":
@@ -203,6 +209,15 @@ def _margins(book: Examined, entries: list[Entry]) -> Iterator[Margin]:
         roots = list(cells_of(book, entry.finding.cell, entry.finding.sheet))
         for key in {*roots, *book.downstream(roots)}:
             touched.setdefault(key, []).append(entry.number)
+    return touched
+
+
+def _rests_on(cells: Iterable[Key], touched: dict[Key, list[int]]) -> tuple[int, ...]:
+    return tuple(sorted({number for key in cells for number in touched.get(key, ())}))
+
+
+def _margins(book: Examined, touched: dict[Key, list[int]]) -> Iterator[Margin]:
+    """Yield the margins, lowest first; those without a number come first of all."""
     found = []
     for key, quantity in quantities(book):
         if quantity not in ("margin of safety", "reserve factor"):

@@ -8,8 +8,10 @@ from typing import TYPE_CHECKING, Any
 
 from doubler.check.finding import SEVERITIES
 from doubler.check.margin_chart import MOST_BARS, margin_chart
+from doubler.check.mohr_circle import mohr_circle
 from doubler.check.record_content import CAUTION, Content, Margin
 from doubler.check.sheet_map import STATES, sheet_maps
+from doubler.check.written_formula import number_shown
 from doubler.explain import Explanation, explain
 
 if TYPE_CHECKING:
@@ -19,6 +21,8 @@ MOST_FINDINGS = 400
 MOST_MARGINS = 200
 """What a page shows at most; how much more there is, and where it stands, is said on it."""
 MOST_CHANGES = 400
+MOST_STATES = 60
+MOST_CIRCLES = 4
 MOST_CHAINS = 4
 """Sheets whose governing margin is followed down to its inputs."""
 
@@ -56,6 +60,10 @@ def page(content: Content) -> str:
         margins=[(margin, content.writer.written(margin.key)) for margin in content.margins[:MOST_MARGINS]],
         chains=list(_chains(content)),
         share=_share,
+        circles=[(state, Markup(mohr_circle(state)), on) for state, on in content.states[:MOST_CIRCLES]],
+        states_listed=content.states[:MOST_STATES],
+        number=number_shown,
+        rounded=lambda value: float(f"{value:.5g}") + 0.0,
         against=content.comparison,
         changes=content.comparison.changes[:MOST_CHANGES] if content.comparison else [],
     )
