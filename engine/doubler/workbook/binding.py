@@ -12,6 +12,7 @@ from typing import Any, TypeAlias
 import numpy as np
 
 from doubler.errors import ErrorValue
+from doubler.workbook.coerce import CannotEvaluateError
 from doubler.workbook.geometry import Geometry, OutsideError, Place, Run, cells_in, moves
 from doubler.workbook.graph import Graph
 from doubler.workbook.lanes import Grid, Mixed, broadcast, concatenated, filled, from_scalars, reshape, shape_of
@@ -22,6 +23,10 @@ from doubler.workbook.syntax import CellRef, RangeRef
 
 SMALL_AREA = 256
 """Up to this many cells a rectangle is kept as a list of cells, above as one array."""
+
+
+LARGEST_AREA = 1 << 24
+"""A range with more cells than this, empty ones between filled ones counted, is not evaluated."""
 
 
 class Store:
@@ -277,6 +282,11 @@ class Binder:
         sheet, full = place
         area = self._cut(sheet, full)
         rows, columns = area.last_row - area.first_row + 1, area.last_column - area.first_column + 1
+        if rows * columns > LARGEST_AREA:
+            raise CannotEvaluateError(
+                f"it reads a range of {rows * columns:,} cells between the first and the last that are filled, more than "
+                f"the {LARGEST_AREA:,} that are evaluated at once; let it read the filled columns only"
+            )
         whole = (full.last_row - full.first_row + 1, full.last_column - full.first_column + 1)
         corner = (area.first_row, area.first_column)
         nodes = self.occupancy[sheet].groups(area)

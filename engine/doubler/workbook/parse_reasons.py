@@ -33,6 +33,8 @@ def why_unparsed(body: str, error: Exception) -> str:
     >>> why_unparsed("STRESS_AXIAL(12 kN,1)", ValueError("…"))
     'a value with its unit is a text; write "12 kN"'
     """
+    if "too deep" in str(error) or "height limit" in str(error):
+        return "it is nested too deeply, or joins more than 250 terms in a row; part it over several cells"
     if not body.strip():
         return "it is empty; write a formula after the ="
     if re.search("[“”„]", body):
