@@ -22,6 +22,8 @@ from doubler.workbook.unit_verdicts import rectangles
 SORTS = ("input", "formula", "unit", "margin")
 """What may change; each word may have ``added`` or ``gone`` behind it."""
 
+LONGEST_HEAD = 40
+
 
 @dataclass(frozen=True, slots=True)
 class Change:
@@ -200,6 +202,13 @@ def _told(book: Examined, key: Key) -> str:
     return shown(book.value(key), _unit(book, key)[0])
 
 
+def _label(book: Examined, key: Key) -> str:
+    """Return what a cell is called: its row's words, and its column's where it has both."""
+    label = book.label(key)
+    head = label.above[0] if label.left and label.above and label.above[0] not in label.left else ""
+    return f"{label.text}, {head}" if head and len(head) <= LONGEST_HEAD else label.text
+
+
 def _group(book: Examined, key: Key) -> object:
     found = book.graph.group_at(*key)
     return None if found is None else found[0]
@@ -207,9 +216,10 @@ def _group(book: Examined, key: Key) -> object:
 
 def _alone(book: Examined, key: Key, word: str, *, margin: bool) -> _Raw:
     """Return the change of a cell that stands in one of the two revisions only."""
-    kind, label = _kind(book, key), book.label(key).text
+    kind, label = _kind(book, key), _label(book, key)
     text = _told(book, key)
-    together = ("copies", _group(book, key)) if kind == "formula" else ("like", label)
+    above = book.label(key).above
+    together = ("copies", _group(book, key)) if kind == "formula" else ("like", above[0] if above else label)
     if margin:
         kind, text, together = "margin", shown(book.value(key)), ("one", key[0])
     before, after = (text, "") if word == "gone" else ("", text)
@@ -218,7 +228,7 @@ def _alone(book: Examined, key: Key, word: str, *, margin: bool) -> _Raw:
 
 def _changes(formulas: Formulas, key: Key, other: Key, *, margin: bool) -> Iterator[_Raw]:
     old, new = formulas.old.book, formulas.new.book
-    label = new.label(other).text
+    label = _label(new, other)
     kinds = _kind(old, key), _kind(new, other)
     values = old.value(key), new.value(other)
     if kinds[0] != kinds[1]:
