@@ -1,13 +1,15 @@
 """Every form in which an argument can be given (contract, section 1), and what each refuses."""
 
 import math
+import re
 from typing import Any
 
 import numpy as np
 import pytest
 
 from doubler import mechanics
-from doubler.catalogue import CellResult, call_cells, lookup
+from doubler.catalogue import CellResult, call_cells, lookup, names
+from doubler.catalogue.one_cell import due
 from doubler.errors import ErrorValue
 
 mechanics.load()
@@ -124,7 +126,7 @@ def test_an_optional_argument_left_out_has_its_default(left_out: tuple[None, ...
         ([["Load [mm]"], [12.0]], VALUE, "mm is a length"),
         ([["12 kN"], [13.0]], VALUE, "force, entry 2: a bare number among texts; write its unit"),
         ([["12 kN"], ["13 mm"]], VALUE, "mm is a length"),
-        ([["kN"], [None], [None]], VALUE, "does not begin with a number"),
+        ([["kN"], [None], [None]], VALUE, "is the text 'kN'; write a force"),
         ([["kN"], [NA]], NA, "force, entry 2 is the error #N/A"),
     ],
 )
@@ -234,3 +236,18 @@ def test_a_unit_that_begins_with_one_heads_a_column_and_is_wanted_of_a_result() 
     assert not curved.reasons
     fraction = call("STRAIN_THERMAL", [["1/2"], [1e-5]], "100 K", "mm/mm")
     assert fraction.reasons
+
+
+def test_what_is_proposed_for_a_missing_number_may_be_written() -> None:
+    for function in map(lookup, names()):
+        assert function is not None
+        for argument in function.arguments:
+            proposed = re.search(r"such as ([\d.]+)$", due(argument))
+            if proposed and argument.limit is not None:
+                assert argument.limit.all_within(float(proposed[1])), (function.name, argument.name, due(argument))
+
+
+def test_a_text_without_a_number_is_told_what_is_due() -> None:
+    (reason,) = call("STRESS_PIN_SHEAR", "1 kN", "5 mm", "double").reasons
+    assert reason.startswith("STRESS_PIN_SHEAR: shear_planes is the text 'double'; write a ")
+    assert "kN" not in reason

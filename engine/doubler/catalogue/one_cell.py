@@ -76,7 +76,10 @@ def due(argument: Argument) -> str:
         return 'a value with its unit, such as "250 MPa"'
     own = kind(argument.quantity.kind)
     if own.dimensionless:
-        return f"{own.article_name}, such as 0.3" if own.name == "ratio" else f"{own.article_name}, such as 0.002"
+        example = 0.3 if own.name == "ratio" else 0.002
+        if argument.limit is not None and not argument.limit.all_within(example):
+            example = next((value for value in (2.0, 0.02, 100.0) if argument.limit.all_within(value)), example)
+        return f"{own.article_name}, such as {example:g}"
     return f'{own.article_name}, such as "{own.example}"'
 
 
@@ -122,6 +125,8 @@ def read_quantity(argument: Argument, text: str) -> tuple[float, Unit | None]:
     try:
         value, unit = parse_quantity(text)
     except UnitError as error:
+        if "does not begin with a number" in str(error):
+            raise ArgumentError(f"{argument.name} is the text {text!r}; write {due(argument)}") from error
         raise ArgumentError(f"{argument.name}: {error}") from error
     return value, fitting(argument, unit)
 
