@@ -3,25 +3,28 @@
 import pytest
 
 from doubler.hosts.calc_blanks import EMPTY, OMITTED, UNKNOWN, UNREAD, ZERO, Blanks, Sheets, calls_in, literal, range_of
+from doubler.workbook.references import address_text
 
 NAMES = {"STRESS_AXIAL", "SECTION_ROUND_AREA"}
 
 
 class Book(Sheets):
-    def __init__(self, cells, formulas):
-        self.cells, self.known = cells, formulas
+    def __init__(self, cells, formulas, computed=()):
+        self.cells, self.known, self.computed = cells, formulas, computed
+        self.told = True
 
     def formulas(self):
         return [("own", formula) for formula in self.known]
 
     def state(self):
-        return (id(self), True)
+        return (id(self), self.told)
 
     def value(self, _, reference):
-        return self.cells.get(reference[1])
+        address = address_text((reference[1][1] + 1, reference[1][0] + 1))
+        return self.cells.get(address), address in self.computed
 
     def is_empty(self, _, reference):
-        return reference[1] not in self.cells
+        return address_text((reference[1][1] + 1, reference[1][0] + 1)) not in self.cells
 
 
 @pytest.mark.parametrize(
@@ -86,3 +89,34 @@ def test_a_cell_whose_value_is_not_known_leaves_the_zero_undecided():
     book = Book({"B1": UNREAD, "A2": 0.0}, ['=STRESS_AXIAL(A3;B1;"N-mm")', '=STRESS_AXIAL(A2;B1;"N-mm")'])
     assert kind(book, (0.0, 150.0, "N-mm"), 0, EMPTY) == UNKNOWN
     assert kind(book, (0.0, 150.0, "N-m"), 0, EMPTY) == ZERO
+
+
+def test_a_pair_of_cells_tells_one_call_from_another():
+    formulas = ['=STRESS_AXIAL(A3;B1:C1;"N-mm")', '=STRESS_AXIAL(A4;B2:C2;"N-mm")']
+    book = Book({"A4": 0.0, "B1": 1.0, "C1": "mm^2", "B2": 2.0, "C2": "mm^2"}, formulas)
+    assert kind(book, (0.0, ((1.0, "mm^2"),), "N-mm"), 0, EMPTY) == EMPTY
+    assert kind(book, (0.0, ((2.0, "mm^2"),), "N-mm"), 0, EMPTY) == ZERO
+    assert kind(book, (0.0, ((3.0, "mm^2"),), "N-mm"), 0, EMPTY) == ZERO
+
+
+def test_a_value_that_a_formula_gives_may_have_changed_so_that_the_call_must_be_found():
+    book = Book(
+        {"B1": 5.0, "B2": 7.0, "A4": 0.0}, ['=STRESS_AXIAL(A3;B1;"N-mm")', '=STRESS_AXIAL(A4;B2;"N-mm")'], {"B1"}
+    )
+    blanks = Blanks(NAMES)
+    assert blanks.kind(book, "STRESS_AXIAL", (0.0, 5.0, "N-mm"), 0, EMPTY) == EMPTY
+    book.cells["B1"] = 6.0
+    assert blanks.kind(book, "STRESS_AXIAL", (0.0, 6.0, "N-mm"), 0, EMPTY) == UNKNOWN
+    assert blanks.kind(book, "STRESS_AXIAL", (0.0, 7.0, "N-mm"), 0, EMPTY) == ZERO
+    blanks.forget()
+    assert blanks.kind(book, "STRESS_AXIAL", (0.0, 6.0, "N-mm"), 0, EMPTY) == EMPTY
+
+
+def test_what_was_read_is_kept_until_a_change_is_told():
+    book = Book({"A2": 150.0}, ['=STRESS_AXIAL(A3;A2;"N-mm")'])
+    blanks = Blanks(NAMES)
+    assert blanks.kind(book, "STRESS_AXIAL", (0.0, 150.0, "N-mm"), 0, EMPTY) == EMPTY
+    book.cells["A3"] = 0.0
+    assert blanks.kind(book, "STRESS_AXIAL", (0.0, 150.0, "N-mm"), 0, EMPTY) == EMPTY
+    blanks.forget()
+    assert blanks.kind(book, "STRESS_AXIAL", (0.0, 150.0, "N-mm"), 0, EMPTY) == ZERO

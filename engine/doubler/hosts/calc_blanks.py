@@ -17,6 +17,8 @@ FRESH_SECONDS = 0.03
 """How long the formulas read are trusted while a document may be changed without that being told."""
 TRUSTED_SECONDS = 5.0
 """How long they are trusted where every change is told, which makes them be read anew."""
+COMPARED_CELLS = 16
+"""Up to this many cells a range is compared with what stands in the sheet."""
 KEPT_FORMULAS = 200_000
 """Formula texts whose calls are kept; then the memory is begun anew."""
 
@@ -28,14 +30,15 @@ _TOKENS = re.compile(r'"(?:[^"]|"")*"?|\'(?:[^\']|\'\')*\'?|[\w.]+|.', re.DOTALL
 """Quoted texts and names, words, and single characters of a formula."""
 
 UNREAD = object()
+_NOTHING: Set[str] = set()  # noqa: UP006
 """Stands for a value that cannot be told without computing it: an expression, a range, an error."""
 
-_addresses: Dict[str, Tuple[int, int]] = {}  # noqa: UP006
-
-Reference = Tuple[str, str]  # noqa: UP006
-"""Sheet (empty for the formula's own) and address of one cell."""
+Reference = Tuple[str, Tuple[int, int]]  # noqa: UP006
+"""Sheet (empty for the formula's own), and column and row of one cell, counted from 0."""
 Written = Tuple[Any, Sequence[Any], List[str]]  # noqa: UP006
 """A call as written: its sheet, its arguments (see `_argument`), and what stands there."""
+Which = Tuple[str, int, str]  # noqa: UP006
+"""A function, the place of an argument, and what may stand there beside a zero (empty for all its calls)."""
 Table = Tuple[Dict[Tuple[Any, ...], Set[str]], List[Tuple[List[Any], str]]]  # noqa: UP006
 """Calls by the values of their arguments, and calls of which some are not known."""
 
@@ -51,8 +54,11 @@ class Sheets:
         """Return what tells one set of open documents from another, and whether every change of them is told."""
         raise NotImplementedError
 
-    def value(self, sheet: Any, reference: Reference) -> Any:
-        """Give one cell's value: float, text, None where it is empty, `UNREAD` where it shows an error."""
+    def value(self, sheet: Any, reference: Reference) -> Tuple[Any, bool]:  # noqa: UP006
+        """Give one cell's value and whether a formula gives it.
+
+        The value is a float, a text, None where the cell is empty, `UNREAD` where it shows an error.
+        """
         raise NotImplementedError
 
     def is_empty(self, sheet: Any, reference: Reference) -> bool:
@@ -108,7 +114,8 @@ class Blanks:
         self.names = set(names)
         self._calls: Dict[str, List[Written]] = {}  # noqa: UP006
         self._doubtful: Dict[Tuple[str, int, str], List[Written]] = {}  # noqa: UP006
-        self._tables: Dict[Tuple[str, int, bool], Table] = {}  # noqa: UP006
+        self._tables: Dict[Which, Table] = {}  # noqa: UP006
+        self._computed = False
         self._parsed: Dict[str, Tuple[Tuple[str, Tuple[Any, ...]], ...]] = {}  # noqa: UP006
         self._state: Any = None
         self._read_at = -1.0
@@ -141,7 +148,7 @@ class Blanks:
         """
         if not self._reading:
             state, told = sheets.state()
-            trusted = TRUSTED_SECONDS if told else max(FRESH_SECONDS, 2 * self._took)
+            trusted = TRUSTED_SECONDS if told and not self._computed else max(FRESH_SECONDS, 2 * self._took)
             if self._read_at < 0 or state != self._state or time.monotonic() - self._read_at > trusted:
                 self._read(sheets, state)
         if not self._calls.get(name):
@@ -152,14 +159,15 @@ class Blanks:
         if self._reading:
             # A cell that is only now computed, because its value was asked for here: nothing more may be computed.
             return UNKNOWN
-        if not self._found(sheets, name, arguments, index, doubtful, False):
+        key = _key([_plain(given) for given in arguments])
+        if not self._found(sheets, (name, index, blank), key, doubtful) and not self._computed:
             return ZERO
-        found = self._found(sheets, name, arguments, index, self._calls[name], True) & {ZERO, blank}
+        found = self._found(sheets, (name, index, ""), key, self._calls[name]) & {ZERO, blank}
         return found.pop() if len(found) == 1 else UNKNOWN
 
     def _read(self, sheets: Sheets, state: Any) -> None:
         start = time.monotonic()
-        self._calls, self._doubtful, self._tables = {}, {}, {}
+        self._calls, self._doubtful, self._tables, self._computed = {}, {}, {}, False
         for sheet, formula in sheets.formulas():
             for name, given in self._calls_of(formula):
                 kinds = [_kind(sheets, sheet, argument) for argument in given]
@@ -182,43 +190,36 @@ class Blanks:
             self._parsed[formula] = found
         return found
 
-    def _found(
-        self,
-        sheets: Sheets,
-        name: str,
-        arguments: Sequence[Any],
-        index: int,
-        calls: list[Written],
-        whole: bool,
-    ) -> Set[str]:  # noqa: UP006
-        """Return what stands at `index` in those of the calls that could have had these arguments."""
-        table = self._tables.get((name, index, whole))
+    def _found(self, sheets: Sheets, which: Which, key: Tuple[Any, ...], calls: Sequence[Written]) -> Set[str]:  # noqa: UP006
+        """Return what stands in that place in those of the calls that could have had these arguments."""
+        table = self._tables.get(which)
         if table is None:
             start = time.monotonic()
             self._reading = True
             try:
-                table = _table(sheets, calls, index)
+                table = self._tables[which] = self._table(sheets, calls, which[1])
             finally:
                 self._reading = False
-            self._tables[name, index, whole] = table
             self._took += time.monotonic() - start
         exact, loose = table
-        found = set(exact.get(_key([_plain(given) for given in arguments]), ()))
-        return found | {kind for expected, kind in loose if _may_match(expected, arguments)}
+        return exact.get(key, _NOTHING) | {kind for expected, kind in loose if _may_match(expected, key)}
 
-
-def _table(sheets: Sheets, calls: Iterable[Written], index: int) -> Table:
-    """Sort calls by the values that their arguments have; those with an unread argument are kept aside."""
-    exact: Dict[Tuple[Any, ...], Set[str]] = {}  # noqa: UP006
-    loose: List[Tuple[List[Any], str]] = []  # noqa: UP006
-    for sheet, given, kinds in calls:
-        expected = [_expected(sheets, sheet, argument) for argument in given]
-        kind = kinds[index] if index < len(kinds) else OMITTED
-        if any(value is UNREAD for value in expected):
-            loose.append((expected, kind))
-        else:
-            exact.setdefault(_key(expected), set()).add(kind)
-    return exact, loose
+    def _table(self, sheets: Sheets, calls: Iterable[Written], index: int) -> Table:
+        """Sort calls by the values that their arguments have; those with an unread argument are kept aside."""
+        exact: Dict[Tuple[Any, ...], Set[str]] = {}  # noqa: UP006
+        loose: List[Tuple[List[Any], str]] = []  # noqa: UP006
+        for sheet, given, kinds in calls:
+            expected = []
+            for argument in given:
+                value, computed = _expected(sheets, sheet, argument)
+                expected.append(value)
+                self._computed = self._computed or computed
+            kind = kinds[index] if index < len(kinds) else OMITTED
+            if any(value is UNREAD for value in expected):
+                loose.append((expected, kind))
+            else:
+                exact.setdefault(_key(expected), set()).add(kind)
+        return exact, loose
 
 
 def _key(values: Sequence[Any]) -> Tuple[Any, ...]:  # noqa: UP006
@@ -230,28 +231,54 @@ def _key(values: Sequence[Any]) -> Tuple[Any, ...]:  # noqa: UP006
 
 
 def _plain(given: Any) -> Any:
-    while isinstance(given, (tuple, list)) and len(given) == 1:
+    """Return an argument as Calc handed it over for comparing; a large range is not compared."""
+    while isinstance(given, (tuple, list)) and len(given) == 1 and not isinstance(given[0], tuple):
         given = given[0]
-    return UNREAD if isinstance(given, (tuple, list)) else given
+    if not isinstance(given, (tuple, list)):
+        return given
+    if not given or not isinstance(given[0], tuple) or len(given) * len(given[0]) > COMPARED_CELLS:
+        return UNREAD
+    return given[0][0] if len(given) == 1 and len(given[0]) == 1 else tuple(given)
 
 
 def _argument(text: str) -> Any:
-    """Return a written argument: the cell to which it refers, or its value in a list, or None for anything else."""
+    """Return a written argument: the cell to which it refers, a small range, its value in a list; None for others."""
     reference = _REFERENCE.match(text)
     if reference:
         return _cell(reference)
     known, value = literal(text)
-    return [value] if known else None
+    if known:
+        return [value]
+    found = range_of(text)
+    if found is None:
+        return None
+    first, _, last = found[1].partition(":")
+    if not first[-1].isdigit() or not last[-1:].isdigit():
+        return None
+    (left, top), (right, bottom) = cell_address(first), cell_address(last)
+    if not 1 < (right - left + 1) * (bottom - top + 1) <= COMPARED_CELLS:
+        return None
+    return found[0], range(left, right + 1), range(top, bottom + 1)
 
 
-def _expected(sheets: Sheets, sheet: Any, argument: Any) -> Any:
+def _expected(sheets: Sheets, sheet: Any, argument: Any) -> Tuple[Any, bool]:  # noqa: UP006
+    """Return the value that an argument has, and whether a formula gives it."""
     if argument is None:
-        return UNREAD
-    return argument[0] if isinstance(argument, list) else sheets.value(sheet, argument)
+        return UNREAD, False
+    if isinstance(argument, list):
+        return argument[0], False
+    if len(argument) == 2:
+        return sheets.value(sheet, argument)
+    name, columns, rows = argument
+    found = [[sheets.value(sheet, (name, (column, row))) for column in columns] for row in rows]
+    if any(value is UNREAD for line in found for value, _ in line):
+        return UNREAD, True
+    block = tuple(tuple("" if value is None else value for value, _ in line) for line in found)
+    return block, any(computed for line in found for _, computed in line)
 
 
 def _kind(sheets: Sheets, sheet: Any, argument: Any) -> str:
-    if isinstance(argument, tuple):
+    if isinstance(argument, tuple) and len(argument) == 2:
         return EMPTY if sheets.is_empty(sheet, argument) else ZERO
     return OMITTED if argument == [None] else ZERO
 
@@ -280,33 +307,27 @@ def range_of(text: str) -> Any:
 
 
 def _cell(reference: re.Match[str]) -> Reference:
-    return _sheet_name(reference.group(1) or ""), reference.group(2) + reference.group(3)
+    return _sheet_name(reference.group(1) or ""), cell_address(reference.group(2) + reference.group(3))
 
 
 def cell_address(text: str) -> Tuple[int, int]:  # noqa: UP006
     """Return column and row, counted from 0, of an address such as ``C5``."""
-    known = _addresses.get(text)
-    if known is not None:
-        return known
     column = at = 0
     while text[at].isalpha():
         column = column * 26 + ord(text[at]) - 64
         at += 1
-    if len(_addresses) >= KEPT_FORMULAS:
-        _addresses.clear()
-    found = _addresses[text] = (column - 1, int(text[at:]) - 1)
-    return found
+    return column - 1, int(text[at:]) - 1
 
 
 def _sheet_name(text: str) -> str:
     return text[1:-1].replace("''", "'") if text.startswith("'") else text
 
 
-def _may_match(expected: Sequence[Any], arguments: Sequence[Any]) -> bool:
+def _may_match(expected: Sequence[Any], key: Sequence[Any]) -> bool:
     """Return whether a call could have had these arguments; what was not read counts as yes."""
-    for index in range(max(len(expected), len(arguments))):
+    for index in range(max(len(expected), len(key))):
         one = expected[index] if index < len(expected) else None
-        other = _plain(arguments[index]) if index < len(arguments) else None
-        if one is not UNREAD and _key([one]) != _key([other]):
+        other = key[index] if index < len(key) else None
+        if one is not UNREAD and other is not UNREAD and _key([one]) != _key([other]):
             return False
     return True

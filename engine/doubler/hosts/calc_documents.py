@@ -9,7 +9,7 @@ import time
 from bisect import bisect_right
 from typing import Any, Callable, Dict, FrozenSet, Iterator, List, Optional, Tuple  # noqa: UP035 - Python 3.8
 
-from doubler.hosts.calc_blanks import UNREAD, Sheets, cell_address, literal, range_of
+from doubler.hosts.calc_blanks import UNREAD, Reference, Sheets, literal, range_of
 from doubler.hosts.calc_client import error_text
 
 CONSTANTS, FORMULA_CELLS = 1 + 2 + 4, 16
@@ -52,18 +52,18 @@ class Held:
         at = bisect_right(starts, row) - 1
         return at < 0 or row > ends[at]
 
-    def value(self, column: int, row: int) -> Any:
-        """Give a cell's value; a formula is asked for its own, which may compute it."""
+    def value(self, column: int, row: int) -> Tuple[Any, bool]:  # noqa: UP006
+        """Give a cell's value, and whether a formula gives it; a formula is asked, which may compute it."""
         if self.is_empty(column, row):
-            return None
+            return None, False
         if self._constants is None:
             self._constants = dict(self._read_constants())
         if (column, row) in self._constants:
-            return self._constants[column, row]
+            return self._constants[column, row], False
         cell = self.sheet.getCellByPosition(column, row)
         if cell.getError():
-            return UNREAD
-        return cell.getString() if cell.FormulaResultType2 == TEXT_RESULT else cell.getValue()
+            return UNREAD, True
+        return (cell.getString() if cell.FormulaResultType2 == TEXT_RESULT else cell.getValue()), True
 
     def _read_constants(self) -> Iterator[Tuple[Tuple[int, int], Any]]:  # noqa: UP006
         for area in self.sheet.queryContentCells(CONSTANTS).getRangeAddresses():
@@ -148,13 +148,14 @@ class Documents(Sheets):
             _seen[0] = (-1.0, [], frozenset())
             return None, False
 
-    def is_empty(self, place: Any, reference: Tuple[str, str]) -> bool:  # noqa: UP006
+    def is_empty(self, sheet: Any, reference: Reference) -> bool:
         """Say whether a cell is empty."""
-        return bool(place.held(reference[0]).is_empty(*cell_address(reference[1])))
+        return bool(sheet.held(reference[0]).is_empty(*reference[1]))
 
-    def value(self, place: Any, reference: Tuple[str, str]) -> Any:  # noqa: UP006
-        """Give a cell's value."""
-        return place.held(reference[0]).value(*cell_address(reference[1]))
+    def value(self, sheet: Any, reference: Reference) -> Tuple[Any, bool]:  # noqa: UP006
+        """Give a cell's value, and whether a formula gives it."""
+        found: Tuple[Any, bool] = sheet.held(reference[0]).value(*reference[1])  # noqa: UP006
+        return found
 
     def block(self, document: Any, own: Any, text: str) -> Any:
         """Give what an argument's text stands for: a value, or rows; LookupError where it is an expression."""
