@@ -35,6 +35,11 @@ PLACES = [
     (rows(("Diameter", 0.25, "in"), ("Length", 2, "in")), "B1", "in"),
     (rows(("Loads", 1, 2, 3, "kN")), "B1", "kN"),
     (rows(("Expansion", 23.1, "10^-6/K")), "B1", "10^-6/K"),
+    (rows(("Limit load", 8200, "LBF")), "B1", "lbf"),
+    (rows(("FTU, PSI", 68000)), "B1", "psi"),
+    (rows(("Moment (IN-LBF)", 68000)), "B1", "in-lbf"),
+    (rows(("BOLT SHANK",), ("AXIAL LOAD", 3, "KN"), ("SHANK AREA", 5, "MM2"), ("STRESS", 6, "MPA")), "B4", "MPa"),
+    (rows(("BOLT SHANK",), ("AXIAL LOAD (KN)", 3), ("SHANK AREA", 5, "MM2")), "B2", "kN"),
 ]
 
 
@@ -47,6 +52,36 @@ def test_the_number_format_declares_a_unit_and_comes_last() -> None:
     formats = ["General", '0.0" MPa"']
     assert unit(rows(("s", 3)), "B1", formats={"B1": 1}, number_formats=formats) == "MPa"
     assert unit(rows(("s", 3, "ksi")), "B1", formats={"B1": 1}, number_formats=formats) == "ksi"
+
+
+@pytest.mark.parametrize("literal", ['0.0"°"', r"0.0\°", "0.0°", r"[$-409]0.0\°_)", r"0.0\°;-0.0\°"])
+def test_a_number_format_may_escape_its_unit_instead_of_quoting_it(literal) -> None:
+    assert unit(rows(("Twist", 3)), "B1", formats={"B1": 1}, number_formats=["General", literal]) == "deg"
+
+
+def test_a_symbol_of_one_letter_does_not_quarrel_with_the_unit_cell() -> None:
+    found = declared(rows(("Item", "Unit", "LC1"), ("Axial force N", "kN", 120), ("Moment M", "kNm", 3)))
+    assert found.disagreements == []
+
+
+def test_a_total_of_another_column_has_not_the_unit_of_the_column_it_stands_in() -> None:
+    cells = rows(("Block", "Range [MPa]", "D"), ("1", 120, 0.1), ("2", 90, 0.2), (), ("Total damage", "=SUM(C2:C3)"))
+    found = declared(cells).unit("S1", (5, 2))
+    assert found is None or found.unit.text == "1"
+    assert unit(rows(("Case", "P [kN]"), ("1", 3), ("2", 4), (), ("Total", "=SUM(B2:B3)")), "B5") == "kN"
+
+
+def test_headers_are_not_stacked_on_the_labels_of_the_block_above() -> None:
+    cells = rows(("Q11 [GPa]", 136, "Q12 [GPa]", 2.7), (), ("Ply", "t [mm]", "s"), ("1", 0.125, 0.7))
+    assert unit(cells, "C4") is None
+
+
+def test_a_title_that_names_a_unit_is_no_header_of_the_numbered_column() -> None:
+    cells = rows(
+        ("Lap joint, loads in kN",), ("Shear strength", "kN", 7), ("LC", "F1", "F2"), (None, "kN", "kN"), (7, 3, 4)
+    )
+    assert unit(cells, "A5") is None
+    assert unit(cells, "B5") == "kN"
 
 
 NO_UNITS = [

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from collections.abc import Iterator
 from dataclasses import dataclass
 
@@ -164,12 +165,25 @@ def _same_words(book: Examined, sheet: str, inside: Address, beyond: Address, *,
     first, second = book.label((sheet, inside)), book.label((sheet, beyond))
     if down and first.above != second.above:
         return False
-    if not down and first.left != second.left:
+    if not down and (first.left != second.left or _numbered(second.above) != _numbered(first.above)):
         return False
     one, two = book.declarations.unit(sheet, inside), book.declarations.unit(sheet, beyond)
     if (one is None) != (two is None):
         return False
     return one is None or two is None or one.unit == two.unit
+
+
+_NUMBERED = re.compile(
+    r"^(?:(?:load )?cases?|lc|no\.?|nos\.?|nr\.?|n°|#|ids?|items?|pos\.?|points?|pts?\.?|nodes?|elem(?:ent)?s?|eid|nid|"
+    r"rows?|lines?|steps?|runs?|stations?|plies|ply|bolts?|fasteners?|blocks?|members?|bars?|years?)\b"
+    r"(?: (?:no\.?|id|nr\.?|#))?$",
+    re.IGNORECASE,
+)
+
+
+def _numbered(headers: tuple[str, ...]) -> bool:
+    """Return whether a column holds the numbers by which its rows are called."""
+    return any(_NUMBERED.match(text.strip()) for text in headers[:2])
 
 
 def _another_block(line: _Line, address: Address, covered: list[tuple[Area, str, Key]]) -> bool:

@@ -18,6 +18,8 @@ from doubler.workbook.declared_places import (
     Disagreement,
     Found,
     Unreadable,
+    mere_symbol,
+    reads_own_column,
     row_against_column,
     units_alike,
 )
@@ -120,7 +122,7 @@ class Declarations:
             for second in finds:
                 if second.weak or second.place.startswith(("note", "comment")):
                     break
-                if row_against_column(first, second):
+                if row_against_column(first, second) or mere_symbol(second):
                     continue
                 if not units_alike(first.unit, second.unit) and second.at != first.at:
                     other = self._share(sheet, layout, address, second)
@@ -234,9 +236,9 @@ class Declarations:
                 yield found
         if beside:
             for text_at in left:
-                loose = loose_unit(layout.texts[text_at])
+                loose = loose_unit(layout.unit_text(text_at))
                 if loose is not None:
-                    yield Found(loose, layout.texts[text_at], "label", (sheet, layout.origin(text_at)))
+                    yield Found(loose, layout.unit_text(text_at), "label", (sheet, layout.origin(text_at)))
         if loose_header is not None:
             yield loose_header
         for offset in (1, 2):
@@ -304,7 +306,7 @@ class Declarations:
         unit_cells: UnitCells,
         left: tuple[Address, ...],
     ) -> Found | None:
-        text = layout.texts[at]
+        text = layout.unit_text(at)
         read = unit_cells.accepts(at, " ".join(layout.texts[a] for a in reversed(left)))
         if read.unit is not None:
             return Found(read.unit, text, place, (sheet, layout.origin(at)))
@@ -327,11 +329,11 @@ class Declarations:
                 self._cannot_read(sheet, address, layout.texts[at], read.complaint, at)
             return None
         place = "unit cell at the left" if layout.touches_left(address, at) else "column of units"
-        return Found(read.unit, layout.texts[at], place, (sheet, layout.origin(at)))
+        return Found(read.unit, layout.unit_text(at), place, (sheet, layout.origin(at)))
 
     def _in_label(self, sheet: str, layout: Layout, address: Address, left: tuple[Address, ...]) -> Found | None:
         for at in left:
-            text = layout.texts[at]
+            text = layout.unit_text(at)
             unit, shown, complaint = bracket_unit(text)
             if unit is not None:
                 if shown in ("[1]",) and len(left) > 1:
@@ -349,8 +351,10 @@ class Declarations:
             return None, None, None
         if layout.apart(head, address[0]):
             left = layout.left_texts(address)
-            if left and layout.touches_left(address, left[0]) and not is_total(layout.texts[left[-1]]):
-                return None, None, None  # a block of its own below the table
+            if left and layout.touches_left(address, left[0]):
+                total = is_total(layout.texts[left[-1]]) and reads_own_column(layout.cells.get(address), address[1])
+                if not total:
+                    return None, None, None  # a block of its own below the table
         key = (sheet, head, address[1])
         known = self._heads.get(key)
         if known is None:
@@ -365,8 +369,8 @@ class Declarations:
         loose: Found | None = None
         headers = layout.headers(address)
         words = " ".join(layout.texts[a] for a in reversed(headers))
-        for at in headers:
-            text = layout.texts[at]
+        for above, at in enumerate(headers):
+            text = layout.unit_text(at)
             origin = (sheet, layout.origin(at))
             read = unit_cells.in_unit_row(at, words)
             if read.unit is not None:
@@ -379,7 +383,7 @@ class Declarations:
                 bracket = bracket or Found(unit, shown, "bracket in the header", origin, words=words)
             elif complaint:
                 self._cannot_read(sheet, address, shown, complaint, at)
-            tail = loose_unit(text)
+            tail = loose_unit(text) if above < 2 else None  # farther up stand titles and notes
             if tail is not None:
                 loose = loose or Found(tail, text, "header", origin, words=words)
         return bracket, unit_row, loose

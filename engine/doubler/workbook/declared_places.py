@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+import re
 from dataclasses import dataclass
 
 from doubler.units import Unit
 from doubler.workbook.carried import Key
-from doubler.workbook.model import Address
+from doubler.workbook.model import Address, Cell
+from doubler.workbook.references import column_number
 
 
 @dataclass(frozen=True, slots=True)
@@ -85,3 +87,24 @@ def units_alike(first: Unit, second: Unit) -> bool:
         first.dimension.without_angle() == second.dimension.without_angle()
         and abs(first.scale / second.scale - 1) < 1e-9
     )
+
+
+def mere_symbol(found: Found) -> bool:
+    """Return whether a unit at a label's end is one letter, which is a symbol where another place has the unit."""
+    return found.place in ("label", "header") and len(found.unit.text) == 1 and found.unit.text.isalpha()
+
+
+def reads_own_column(cell: Cell | None, column: int) -> bool:
+    """Return whether a cell is a constant, or a formula that reads something of the column in which it stands."""
+    if cell is None or cell.formula is None:
+        return True
+    if "[" in cell.formula or re.search(r"\$?\d+:\$?\d+", re.sub(r"[A-Z]\$?\d+", "", cell.formula)):
+        return True
+    for first, last in _COLUMNS.findall(cell.formula):
+        one = column_number(first)
+        if one <= column <= (column_number(last) if last else one):
+            return True
+    return not _COLUMNS.search(cell.formula)
+
+
+_COLUMNS = re.compile(r"(?<![A-Za-z0-9_.])\$?([A-Z]{1,3})\$?\d+(?::\$?([A-Z]{1,3})\$?\d+)?(?![\w(])")

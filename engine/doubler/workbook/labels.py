@@ -7,6 +7,7 @@ from bisect import bisect_left
 from dataclasses import dataclass
 from functools import cached_property
 
+from doubler.workbook.capital_units import in_capitals, in_right_case
 from doubler.workbook.model import Address, Area, Sheet, Workbook
 
 LONGEST_LABEL = 160
@@ -91,6 +92,15 @@ class Layout:
                     if (row, column) != anchor and (row, column) not in self.texts:
                         self.texts[row, column] = text
                         self.merged_from[row, column] = anchor
+
+    @cached_property
+    def capitals(self) -> bool:
+        """Whether the sheet's words are all in capitals."""
+        return in_capitals(self.texts.values())
+
+    def unit_text(self, address: Address) -> str:
+        """Return a text with a unit that is in capitals in its right case."""
+        return in_right_case(self.texts[address], self.capitals)
 
     def origin(self, address: Address) -> Address:
         """Return the cell that really holds the text which stands at `address`."""
@@ -204,6 +214,8 @@ class Layout:
         row = head - 1
         while row > 0 and len(found) < 4 and head - row <= 4:
             if (row, column) in self.texts:
+                if self.holds_number((row, column + 1)) and row + 1 not in self._filled:
+                    break  # the label of another block
                 if self.origin((row, column)) != self.origin(found[-1]):
                     found.append((row, column))
             elif self.holds_number((row, column)):

@@ -47,7 +47,7 @@ class UnitCells:
 
     def accepts(self, at: Address, words: str, *, leading: bool = False) -> UnitText:
         """Look at a text beside a number; `words` is the number's label, `leading` a text at the number's left."""
-        text = self._layout.texts[at]
+        text = self._layout.unit_text(at)
         read = read_unit_text(text)
         column = self._column(at[1])
         if read.unit is None:
@@ -83,7 +83,7 @@ class UnitCells:
 
     def in_unit_row(self, at: Address, words: str) -> UnitText:
         """Look at a header text as one of a row of units."""
-        text = self._layout.texts[at]
+        text = self._layout.unit_text(at)
         read = read_unit_text(text)
         row = self._row(at[0])
         if read.unit is None:
@@ -102,7 +102,7 @@ class UnitCells:
             heads: list[str] = []
             head_row = 0
             for row in layout.rows_of_text.get(column, ()):
-                text = layout.texts[row, column]
+                text = layout.unit_text((row, column))
                 if not head_row and UNIT_HEADS.match(text):
                     head_row = row
                 beside = layout.holds_number((row, column - 1)) or layout.holds_number((row, column + 1))
@@ -116,7 +116,7 @@ class UnitCells:
     def _row(self, row: int) -> _Support:
         known = self._rows.get(row)
         if known is None:
-            texts = [self._layout.texts[row, c] for c in self._layout.columns_of_text.get(row, ())]
+            texts = [self._layout.unit_text((row, c)) for c in self._layout.columns_of_text.get(row, ())]
             known = self._rows[row] = _count(texts, headed=False, titled=False)
         return known
 

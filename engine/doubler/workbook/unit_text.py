@@ -236,17 +236,22 @@ def _named(text: str) -> Unit | None:
         return None
 
 
+_FORMAT_TAIL = re.compile(r"""[0#?](?:\.?E[+-]0+)?((?:"[^"]*"|\\.|_.|[ °])*)$""")
+_FORMAT_PARTS = re.compile(r"""(?:_.)|"([^"]*)"|\\(.)|([ °])""")
+"""The literals behind a number's last digit: quoted, or, as programs write a single letter, escaped."""
+
+
 @lru_cache(maxsize=4096)
 def format_unit(number_format: str) -> UnitText:
     """Read the unit that a number format prints behind the number, ``0.0" MPa"``."""
     section = number_format.split(";", maxsplit=1)[0]
-    quoted = re.findall(r'"([^"]*)"', section)
-    if not quoted:
+    tail = _FORMAT_TAIL.search(section)
+    written = "" if tail is None else "".join(
+        quoted or escaped or plain for quoted, escaped, plain in _FORMAT_PARTS.findall(tail[1])
+    )  # fmt: skip
+    if not written.strip():
         return NOTHING
-    tail = section.rsplit('"', 2)
-    if tail[-1].strip(" _)\\") and not re.fullmatch(r"[_\\ )\]]*", tail[-1]):
-        return NOTHING
-    found = read_unit_text(quoted[-1])
+    found = read_unit_text(written)
     return found if found.unit is not None or found.complaint else NOTHING
 
 
