@@ -11,6 +11,7 @@ from pathlib import Path
 import openpyxl
 import pytest
 
+from doubler.cases import open_cases
 from doubler.errors import InputError
 from doubler.fill import LOG, fill
 from strap_book import GOOD, cases_csv, strap_template
@@ -299,3 +300,14 @@ def test_a_row_below_a_gap_is_named_by_its_own_number(ready: tuple[Path, Path, P
     book.save(table)
     with pytest.raises(InputError, match=r"row 6 \(case heavy\)"):
         fill(ready[0], table, ready[2])
+
+
+@pytest.mark.parametrize(("heading", "due"), [("knock [%]", 7.0), ("knock [-]", 0.07)])
+def test_a_cell_that_shows_a_percentage_is_read_as_it_shows(tmp_path: Path, heading: str, due: float) -> None:
+    book = openpyxl.Workbook()
+    for row in (["case", heading], ["light", 0.07]):
+        book.active.append(row)
+    book.active["B2"].number_format = "0%"
+    book.save(tmp_path / "cases.xlsx")
+    (batch,) = open_cases(tmp_path / "cases.xlsx").batches()
+    assert batch.columns[1].to_pylist() == [due]

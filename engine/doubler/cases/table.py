@@ -5,6 +5,7 @@ from __future__ import annotations
 import csv
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
+from decimal import Decimal
 from pathlib import Path
 from typing import Any
 
@@ -230,11 +231,13 @@ def _open_workbook(path: Path) -> CaseTable:
     from doubler.workbook.graph import build_graph
     from doubler.workbook.number_format import is_date
     from doubler.workbook.reader import read_workbook
+    from doubler.workbook.unit_text import is_percent_format
 
     workbook = read_workbook(path)
     sheet = next((s for s in workbook.sheets if s.visibility == "visible"), None)
     if sheet is None or not sheet.cells:
         raise InputError(f"{path} is empty: write the headings in its first row and one row a load case below")
+    formats = dict(enumerate(workbook.number_formats))  # a workbook may lack the styles that its cells name
     values = {address: cell.value for address, cell in sheet.cells.items()}
     if any(cell.formula is not None for cell in sheet.cells.values()):
         done = evaluate(build_graph(workbook))
@@ -249,8 +252,8 @@ def _open_workbook(path: Path) -> CaseTable:
     for address, value in values.items():
         if isinstance(value, ErrorValue):
             raise InputError(f"{path}, {sheet.name}!{cell_name(*address)} shows {value}; write a value")
-        style = sheet.cells[address].style
-        if isinstance(value, float) and is_date(workbook.number_formats[style]):
+        shown = formats.get(sheet.cells[address].style, "General")
+        if isinstance(value, float) and is_date(shown):
             raise InputError(
                 f"{path}, {sheet.name}!{cell_name(*address)} shows a date or a time, which is kept as the number "
                 f"{value:.12g}; give the cell a number format and write its number, or write it as text"
@@ -262,6 +265,11 @@ def _open_workbook(path: Path) -> CaseTable:
     if stray is not None:
         raise InputError(f"{path}, {sheet.name}!{cell_name(*stray)} has no heading in row {first}; head its column")
     rows = sorted({row for row, _ in values if row > first})
+    in_percent = {c for c, text in zip(columns, texts, strict=True) if split_heading(text.strip())[1] == "%"}
+    for address, value in values.items():
+        shown = formats.get(sheet.cells[address].style, "General")
+        if address[1] in in_percent and isinstance(value, float) and is_percent_format(shown):
+            values[address] = float(Decimal(repr(value)) * 100)  # the cell shows 5% and holds 0.05
 
     def batches(size: int) -> Iterator[RawBatch]:
         for part in _runs(rows, size):

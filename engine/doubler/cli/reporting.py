@@ -59,7 +59,8 @@ def show_reports(reports: Sequence[Outcome], comparison: Comparison | None = Non
         table.add_column("what, and what to write", ratio=1)
         for finding in report.findings:
             style = _STYLES[finding.severity]
-            follows = f" ({len(finding.follows)} cells follow from it)" if finding.follows else ""
+            count = len(finding.follows)
+            follows = f" ({count} {'cell follows' if count == 1 else 'cells follow'} from it)" if count else ""
             table.add_row(
                 Text(finding.severity, style),
                 Text(f"{finding.sheet}!{finding.cell}"),
