@@ -31,6 +31,43 @@ def relative_curvature(radius: Any, other_radius: Any) -> Any:
     return 1.0 / radius if other_radius is None else 1.0 / radius + 1.0 / other_radius
 
 
+_SMALL = 0.5
+NOT_SMALL = (
+    "the contact would reach farther than half of the smaller radius, where Hertz's theory does not hold: the force is "
+    "too large, or a body nearly fills the hollow that it lies in"
+)
+
+
+def is_small(size: Any, radius: Any, other_radius: Any) -> Any:
+    """Return where a contact is small beside both bodies; the second is flat where its radius is left out."""
+    smaller = np.abs(radius) if other_radius is None else np.minimum(np.abs(radius), np.abs(other_radius))
+    return size <= _SMALL * smaller
+
+
+def _size(
+    force: Any,
+    radius: Any,
+    modulus: Any,
+    poissons_ratio: Any,
+    other_modulus: Any,
+    other_poissons_ratio: Any,
+    other_radius: Any,
+) -> Any:
+    """Return the radius of the contact between spheres."""
+    contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
+    return np.cbrt(0.75 * force / (contact * relative_curvature(radius, other_radius)))
+
+
+_SMALL_CIRCLE = condition(
+    NOT_SMALL,
+    lambda force, radius, modulus, poissons_ratio, other_modulus, other_poissons_ratio, other_radius: is_small(
+        _size(force, radius, modulus, poissons_ratio, other_modulus, other_poissons_ratio, other_radius),
+        radius,
+        other_radius,
+    ),
+)
+
+
 @worksheet_function(
     "STRESS_HERTZ_SPHERES",
     valid={
@@ -40,7 +77,7 @@ def relative_curvature(radius: Any, other_radius: Any) -> Any:
         "other_modulus": POSITIVE,
         "other_poissons_ratio": POISSON,
     },
-    conditions=(CONVEX,),
+    conditions=(CONVEX, _SMALL_CIRCLE),
 )
 def spheres(
     force: Force,
@@ -82,8 +119,8 @@ def spheres(
 
     Notes
     -----
-    Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
-    pressure beyond yield flattens the surfaces.
+    Linear elastic, smooth, without friction; the contact small against the radii (refused beyond half of
+    the smaller one) and the bodies. Contact pressure beyond yield flattens the surfaces.
 
     References
     ----------
@@ -107,7 +144,7 @@ def spheres(
         "other_modulus": POSITIVE,
         "other_poissons_ratio": POISSON,
     },
-    conditions=(CONVEX,),
+    conditions=(CONVEX, _SMALL_CIRCLE),
 )
 def spheres_radius(
     force: Force,
@@ -146,8 +183,8 @@ def spheres_radius(
 
     Notes
     -----
-    Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
-    pressure beyond yield flattens the surfaces.
+    Linear elastic, smooth, without friction; the contact small against the radii (refused beyond half of
+    the smaller one) and the bodies. Contact pressure beyond yield flattens the surfaces.
 
     References
     ----------
@@ -158,8 +195,7 @@ def spheres_radius(
     >>> cell('=STRESS_HERTZ_SPHERES_RADIUS("100 N","10 mm","210 GPa",0.3,"210 GPa",0.3,"mm")')
     0.1866255578
     """
-    contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
-    return np.cbrt(0.75 * force / (contact * relative_curvature(radius, other_radius)))
+    return _size(force, radius, modulus, poissons_ratio, other_modulus, other_poissons_ratio, other_radius)
 
 
 @worksheet_function(

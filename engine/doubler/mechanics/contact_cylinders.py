@@ -2,12 +2,41 @@
 
 from __future__ import annotations
 
+from typing import Any
+
 import numpy as np
 
 from doubler.catalogue import worksheet_function
 from doubler.catalogue.annotations import Force, Length, Modulus, Pressure, Ratio, Stress
-from doubler.catalogue.limits import NOT_NEGATIVE, POISSON, POSITIVE, between
-from doubler.mechanics.contact import CONVEX, plane_modulus, relative_curvature
+from doubler.catalogue.limits import NOT_NEGATIVE, POISSON, POSITIVE, between, condition
+from doubler.mechanics.contact import CONVEX, NOT_SMALL, is_small, plane_modulus, relative_curvature
+
+
+def _half_width(
+    force: Any,
+    radius: Any,
+    length: Any,
+    modulus: Any,
+    poissons_ratio: Any,
+    other_modulus: Any,
+    other_poissons_ratio: Any,
+    other_radius: Any,
+) -> Any:
+    """Return the half width of the contact between cylinders."""
+    contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
+    curvature = relative_curvature(radius, other_radius)
+    # Surfaces that do not touch along one line are told by CONVEX.
+    return np.sqrt(np.maximum(4.0 * force / (np.pi * length * contact * curvature), 0.0))
+
+
+_NARROW = condition(
+    NOT_SMALL,
+    lambda force, radius, length, modulus, poissons_ratio, other_modulus, other_poissons_ratio, other_radius: is_small(
+        _half_width(force, radius, length, modulus, poissons_ratio, other_modulus, other_poissons_ratio, other_radius),
+        radius,
+        other_radius,
+    ),
+)
 
 
 @worksheet_function(
@@ -20,7 +49,7 @@ from doubler.mechanics.contact import CONVEX, plane_modulus, relative_curvature
         "other_modulus": POSITIVE,
         "other_poissons_ratio": POISSON,
     },
-    conditions=(CONVEX,),
+    conditions=(CONVEX, _NARROW),
 )
 def cylinders(
     force: Force,
@@ -65,8 +94,9 @@ def cylinders(
 
     Notes
     -----
-    Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
-    pressure beyond yield flattens the surfaces. Even load along the line; a cylinder's sharp ends carry more.
+    Linear elastic, smooth, without friction; the contact small against the radii (refused beyond half of
+    the smaller one) and the bodies. Contact pressure beyond yield flattens the surfaces. Even load along
+    the line; a cylinder's sharp ends carry more.
 
     References
     ----------
@@ -91,7 +121,7 @@ def cylinders(
         "other_modulus": POSITIVE,
         "other_poissons_ratio": POISSON,
     },
-    conditions=(CONVEX,),
+    conditions=(CONVEX, _NARROW),
 )
 def cylinders_width(
     force: Force,
@@ -133,8 +163,8 @@ def cylinders_width(
 
     Notes
     -----
-    Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
-    pressure beyond yield flattens the surfaces.
+    Linear elastic, smooth, without friction; the contact small against the radii (refused beyond half of
+    the smaller one) and the bodies. Contact pressure beyond yield flattens the surfaces.
 
     References
     ----------
@@ -145,8 +175,9 @@ def cylinders_width(
     >>> cell('=STRESS_HERTZ_CYLINDERS_WIDTH("1 kN","40 mm","20 mm","200 GPa",0.29,"200 GPa",0.29,"mm")')
     0.1527193569
     """
-    contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
-    return np.sqrt(4.0 * force / (np.pi * length * contact * relative_curvature(radius, other_radius)))
+    return _half_width(
+        force, radius, length, modulus, poissons_ratio, other_modulus, other_poissons_ratio, other_radius
+    )
 
 
 @worksheet_function(

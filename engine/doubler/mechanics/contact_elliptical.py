@@ -9,7 +9,7 @@ import numpy as np
 from doubler.catalogue import worksheet_function
 from doubler.catalogue.annotations import Angle, Force, Length, Modulus, Pressure, Ratio, row
 from doubler.catalogue.limits import POISSON, POSITIVE, condition
-from doubler.mechanics.contact import plane_modulus
+from doubler.mechanics.contact import NOT_SMALL, is_small, plane_modulus
 
 SemiAxes: Any = row(Length, "semi_axis_long", "semi_axis_short")
 
@@ -66,6 +66,34 @@ def _semi_axes(force: Any, contact_modulus: Any, slow: Any, fast: Any) -> tuple[
     return longer, ratio * longer
 
 
+def _is_small(
+    force: Any,
+    radius_1: Any,
+    radius_1_across: Any,
+    radius_2: Any,
+    radius_2_across: Any,
+    angle: Any,
+    modulus: Any,
+    poissons_ratio: Any,
+    other_modulus: Any,
+    other_poissons_ratio: Any,
+) -> Any:
+    """Return where even the short semi-axis is small: along the most curved direction nothing reaches less far."""
+    slow, fast = _relative_curvatures(radius_1, radius_1_across, radius_2, radius_2_across, angle)
+    if not np.all(_opens(slow, fast)):
+        return True  # told by POINT_CONTACT
+    contact = plane_modulus(modulus, poissons_ratio, other_modulus, other_poissons_ratio)
+    shorter = _semi_axes(force, contact, slow, fast)[1]
+    return is_small(
+        shorter,
+        np.minimum(np.abs(radius_1), np.abs(radius_1_across)),
+        np.minimum(np.abs(radius_2), np.abs(radius_2_across)),
+    )
+
+
+_SMALL = condition(NOT_SMALL, _is_small)
+
+
 @worksheet_function(
     "STRESS_HERTZ_ELLIPTICAL",
     valid={
@@ -78,6 +106,7 @@ def _semi_axes(force: Any, contact_modulus: Any, slow: Any, fast: Any) -> tuple[
     conditions=(
         CURVED,
         POINT_CONTACT,
+        _SMALL,
     ),
 )
 def elliptical(
@@ -128,8 +157,9 @@ def elliptical(
 
     Notes
     -----
-    Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
-    pressure beyond yield flattens the surfaces. A flat direction takes a very large radius. The axis ratio is
+    Linear elastic, smooth, without friction; the contact small against the radii and the bodies (refused
+    where its short semi-axis passes half of the smallest radius). Contact pressure beyond yield flattens the
+    surfaces. A flat direction takes a very large radius. The axis ratio is
     solved from Carlson's elliptic integrals to the last digits.
 
     References
@@ -160,6 +190,7 @@ def elliptical(
     conditions=(
         CURVED,
         POINT_CONTACT,
+        _SMALL,
     ),
 )
 def elliptical_axes(
@@ -210,8 +241,9 @@ def elliptical_axes(
 
     Notes
     -----
-    Linear elastic, smooth, without friction; the contact small against the radii and the bodies. Contact
-    pressure beyond yield flattens the surfaces. A flat direction takes a very large radius. The axis ratio is
+    Linear elastic, smooth, without friction; the contact small against the radii and the bodies (refused
+    where its short semi-axis passes half of the smallest radius). Contact pressure beyond yield flattens the
+    surfaces. A flat direction takes a very large radius. The axis ratio is
     solved from Carlson's elliptic integrals to the last digits.
 
     References
