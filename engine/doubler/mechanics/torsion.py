@@ -92,7 +92,17 @@ def torsion_round(torque: Moment, outer_diameter: Length, inner_diameter: Length
     return (16.0 / np.pi) * torque * outer_diameter / (outer_diameter**4 - inner)
 
 
-@worksheet_function("STRESS_TORSION_CLOSED", valid={"enclosed_area": POSITIVE, "thickness": POSITIVE})
+# A circle of the enclosed area has the radius √(A/π): the widest that any wall can stand from the middle of its cell.
+THIN_CELL = condition(
+    "the wall is not thin: its thickness must be at most a third of √(enclosed_area/π), the radius of a circle of that "
+    "area; of a thick round tube STRESS_TORSION_ROUND is exact",
+    lambda enclosed_area, thickness: 9.0 * thickness**2 <= enclosed_area / np.pi * (1.0 + 1e-9),
+)
+
+
+@worksheet_function(
+    "STRESS_TORSION_CLOSED", valid={"enclosed_area": POSITIVE, "thickness": POSITIVE}, conditions=(THIN_CELL,)
+)
 def torsion_closed(torque: Moment, enclosed_area: Area, thickness: Length) -> Stress:
     r"""Shear stress in the wall of a thin-walled closed section of one cell, by Bredt's formula.
 
@@ -115,8 +125,8 @@ def torsion_closed(torque: Moment, enclosed_area: Area, thickness: Length) -> St
     Notes
     -----
     A mean: the inside of a round tube is below it and the outside above it by about t/(2r), 5 % at a wall of
-    a tenth of the mean radius. Re-entrant corners have more. Warping is free, and a thin wall may buckle
-    first.
+    a tenth of the mean radius and 17 % at a third of it, beyond which it is refused. Re-entrant corners have
+    more. Warping is free, and a thin wall may buckle first.
 
     References
     ----------

@@ -9,7 +9,7 @@ import numpy as np
 from doubler.catalogue import worksheet_function
 from doubler.catalogue.annotations import Area, Length, Modulus, Moment, Ratio, Stress, TwistRate, column
 from doubler.catalogue.limits import AT_LEAST_ONE, NOT_NEGATIVE, POSITIVE, Refusal
-from doubler.mechanics.torsion_walls import alike_columns
+from doubler.mechanics.torsion_walls import alike_columns, encloses
 
 Lengths: Any = column(Length)
 Areas: Any = column(Area)
@@ -34,6 +34,10 @@ def _unit_twist(areas: Any, lengths: Any, thicknesses: Any, cell: Any, neighbour
         raise Refusal("a cell has no wall; give each of enclosed_areas its walls")
     if not np.all(_reach_outside(touches)):
         raise Refusal("a group of cells has no wall with the outside behind it (wall_neighbours 0)")
+    if not np.all(encloses(np.abs(touches) * lengths[..., np.newaxis], areas, along=-2)):
+        raise Refusal(
+            "the walls of a cell are too short to go round its area, whatever its shape; see that none is missing"
+        )
     slenderness = (lengths / thicknesses)[..., np.newaxis]
     flexibility = np.matmul(np.swapaxes(touches, -1, -2), slenderness * touches)
     cell_flows = np.linalg.solve(flexibility, 2.0 * areas[..., np.newaxis])

@@ -12,6 +12,9 @@ from doubler.catalogue.limits import POSITIVE, Refusal, condition
 
 Lengths: Any = column(Length)
 
+_ROUNDED = 0.98
+"""What lengths and areas rounded to a sheet's digits may leave of the bound that only a circle reaches."""
+
 
 def _thin(wall_lengths: Any, wall_thicknesses: Any) -> Any:
     # Columns of unlike lengths are refused by the kernel, with the counts.
@@ -129,6 +132,11 @@ def twist_rate_open(
     return torque / (shear_modulus * open_constant(wall_lengths, wall_thicknesses))
 
 
+def encloses(lengths: Any, area: Any, *, along: int = -1) -> Any:
+    """Return whether the walls along an axis can go round an area: a circle encloses the most, P² ≥ 4πA."""
+    return np.sum(lengths, axis=along) ** 2 >= 4.0 * np.pi * area * _ROUNDED
+
+
 @worksheet_function(
     "STIFFNESS_TWIST_RATE_CLOSED",
     valid={
@@ -137,6 +145,12 @@ def twist_rate_open(
         "wall_thicknesses": POSITIVE,
         "shear_modulus": POSITIVE,
     },
+    conditions=(
+        condition(
+            "the walls are too short to go round enclosed_area, whatever the shape; see that no wall is left out",
+            lambda enclosed_area, wall_lengths: encloses(wall_lengths, enclosed_area),
+        ),
+    ),
 )
 def twist_rate_closed(
     torque: Moment,
@@ -169,7 +183,8 @@ def twist_rate_closed(
 
     Notes
     -----
-    Thin walls of one material, free to warp.
+    Thin walls of one material, free to warp. A wall left out would make the cell too stiff: walls that cannot go
+    round the area are refused.
 
     References
     ----------
