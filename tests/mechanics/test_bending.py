@@ -126,6 +126,7 @@ def test_mean_stresses() -> None:
         ('=STRESS_SHEAR_BEAM("1 kN", "1 mm^3", "1 mm^4", "0 mm", "MPa")', "thickness must be positive"),
         ('=STRESS_SHEAR_ROUND("1 kN", "10 mm", "10 mm", "MPa")', "smaller than the outer"),
         ('=STRESS_SHEAR_RECTANGLE("1 kN", "10 mm", "0 mm", "MPa")', "depth must be positive"),
+        ('=STRESS_SHEAR_RECTANGLE("1 kN", "51 mm", "50 mm", "MPa")', "wider than deep"),
         ('=STRESS_SHEAR_MEAN_WEB("1 kN", "0 mm^2", "MPa")', "web_area must be positive"),
     ],
 )

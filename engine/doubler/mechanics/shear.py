@@ -146,7 +146,17 @@ def shear_flow_unsymmetric(
     return -(share_z * first_moment_y + share_y * first_moment_z) / determinant
 
 
-@worksheet_function("STRESS_SHEAR_RECTANGLE", valid={"width": POSITIVE, "depth": POSITIVE})
+@worksheet_function(
+    "STRESS_SHEAR_RECTANGLE",
+    valid={"width": POSITIVE, "depth": POSITIVE},
+    conditions=(
+        condition(
+            "the section is wider than deep, where the largest shear stress lies far above 3V/(2bh) at its sides; "
+            "STRESS_SHEAR_BEAM gives the mean over the width",
+            lambda width, depth: width <= depth * (1.0 + 1e-9),
+        ),
+    ),
+)
 def shear_rectangle(force: Force, width: Length, depth: Length) -> Stress:
     r"""Largest shear stress of a rectangular beam, at its neutral axis.
 
@@ -168,8 +178,9 @@ def shear_rectangle(force: Force, width: Length, depth: Length) -> Stress:
 
     Notes
     -----
-    VQ/It for the rectangle. A section wider than deep has more at its sides than this mean: at b = h some 13
-    % more with Poisson's ratio 0.25 (Timoshenko and Goodier, from memory).
+    VQ/It for the rectangle. The sides have more than this mean, and the wider the section the more: 3 % more at a
+    width of half the depth, some 13 % more at b = h with Poisson's ratio 0.25 (Timoshenko and Goodier, from memory).
+    A section wider than deep is refused.
 
     References
     ----------
