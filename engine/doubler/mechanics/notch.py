@@ -6,7 +6,7 @@ import numpy as np
 
 from doubler.catalogue import worksheet_function
 from doubler.catalogue.annotations import Length, Modulus, Ratio, Stress
-from doubler.catalogue.limits import AT_LEAST_ONE, NOT_NEGATIVE, POSITIVE, Limit
+from doubler.catalogue.limits import AT_LEAST_ONE, NOT_NEGATIVE, POSITIVE, Limit, condition
 
 
 @worksheet_function("STRESS_NOTCH_SENSITIVITY", valid={"radius": POSITIVE, "material_length": NOT_NEGATIVE})
@@ -88,6 +88,15 @@ def fatigue_factor(concentration: Ratio, sensitivity: Ratio) -> Ratio:
         "strength_coefficient": POSITIVE,
         "hardening_exponent": Limit(0.02, 1.0, False, False, "must lie from 0.02 to 1"),
     },
+    conditions=(
+        condition(
+            "the nominal stress itself passes the 0.2 % proof stress of the curve, so that the whole section yields "
+            "and Neuber's rule with an elastic nominal strain is unsafe",
+            lambda nominal_stress, strength_coefficient, hardening_exponent: (
+                np.abs(nominal_stress) <= strength_coefficient * 0.002**hardening_exponent * (1.0 + 1e-9)
+            ),
+        ),
+    ),
 )
 def neuber(
     nominal_stress: Stress,
@@ -121,7 +130,8 @@ def neuber(
 
     Notes
     -----
-    The section as a whole stays elastic. For loading from zero with the monotonic or the stabilised cyclic
+    The section as a whole stays elastic: a nominal stress beyond the 0.2 % proof stress of the curve, K'·0.002ⁿ', is
+    refused. For loading from zero with the monotonic or the stabilised cyclic
     curve; for a range of a hysteresis loop give half the range. Overestimates the strain in thick parts (plane
     strain), which is safe.
 
