@@ -16,6 +16,7 @@ Strains and stresses at the gauge
 Mean strain | =({ex}+{ey})/2 {m} | µε
 Radius of Mohr's circle | =SQRT((({ex}-{ey})/2)^2+({g}/2)^2) {R} | µε
 Principal strain ε_1 | ={m}+{R} {e1} | µε
+ε1 | =({ex}+{ey})/2+SQRT((({ex}-{ey})/2)^2+({g}/2)^2) {e1s} | µε
 Maximum shear strain γ_max | =2*{R} {gm} | µε
 Shear modulus G | 27 {G} | GPa
 Young's modulus E | 71 {E} | GPa
@@ -33,6 +34,7 @@ WRONG = [
     ("t", "={E}*{g}/1000", "modulus-mismatch"),
     ("R", "=SQRT((({ex}-{ey})/2)^2+{g}^2)", "shear-strain-form"),
     ("gm", "={R}", "shear-strain-form"),
+    ("e1s", "=({ex}+{ey})/2+SQRT((({ex}-{ey})/2)^2+{g}^2)", "shear-strain-form"),
     ("et", "={g}", "shear-strain-form"),
     ("tr", "=SQRT({fb}^2+3*{t}^2)", "shear-strain-form"),
     ("vm", "=SQRT({fb}^2+{t}^2)", "shear-strain-form"),

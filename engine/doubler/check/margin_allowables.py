@@ -7,7 +7,7 @@ from collections.abc import Iterator
 
 from doubler.check.fills import walk
 from doubler.check.finding import Finding
-from doubler.check.margin_anatomy import Anatomy, Margins
+from doubler.check.margin_anatomy import UNKNOWN, Anatomy, Margins
 from doubler.check.roles import ALLOWABLE, MARGIN, Role
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.examined import Key, cell_name_of, shown
@@ -35,7 +35,9 @@ def allowables_mixed(margins: Margins) -> Iterator[Finding]:
         role = margins.roles.at(key)
         if role is None:
             continue
-        wrong = _wrong_mode(margins, margin, role) or _wrong_level(margin, role)
+        wrong = (
+            _wrong_mode(margins, margin, role) or _wrong_level(margin, role) or _wrong_sign(margins, margin, key, role)
+        )
         if wrong:
             yield _finding(margins, margin, key, role, *wrong)
 
@@ -71,6 +73,24 @@ def _wrong_level(margin: Anatomy, role: Role) -> tuple[frozenset[str], str] | No
     if level not in ("yield", "ultimate") or role.level not in ("yield", "ultimate") or role.level == level:
         return None
     return frozenset(), f"it is a margin on {level} and {role.words!r} is the allowable for {role.level}"
+
+
+def _wrong_sign(margins: Margins, margin: Anatomy, key: Key, role: Role) -> tuple[frozenset[str], str] | None:
+    """Tell a load below zero, which is compression, from the tension allowable that it is compared with.
+
+    Only where the sheet has an allowable for compression too: else the one that stands there is meant for both.
+    """
+    if role.modes & frozenset(_GOES_WITH) != {"tension"} or len(margin.applied) != 1 or margin.form == UNKNOWN:
+        return None
+    load = margins.roles.at(margin.applied[0])
+    value = margins.book.number(margin.applied[0])
+    if load is None or load.modes & frozenset(_GOES_WITH) or value is None or value >= 0:
+        return None
+    served = _GOES_WITH["compression"]
+    if _instead(margins, margin, key, role, served, modes_only=True) is None:
+        return None
+    where = cell_name_of(margin.applied[0])
+    return served, f"{where} is {shown(value)}, compression, and {role.words!r} is the allowable for tension"
 
 
 def _converted(margins: Margins, margin: Anatomy) -> bool:
@@ -117,7 +137,9 @@ def _finding(margins: Margins, margin: Anatomy, key: Key, role: Role, served: fr
     )
 
 
-def _instead(margins: Margins, margin: Anatomy, key: Key, role: Role, served: frozenset[str]) -> Key | None:
+def _instead(
+    margins: Margins, margin: Anatomy, key: Key, role: Role, served: frozenset[str], *, modes_only: bool = False
+) -> Key | None:
     """Return the one allowable of the sheet that would be right; None where there is none or several."""
     book = margins.book
     declared = book.declarations.unit(*key)
@@ -131,7 +153,7 @@ def _instead(margins: Margins, margin: Anatomy, key: Key, role: Role, served: fr
             continue
         if unit.unit.dimension != declared.unit.dimension:  # type: ignore[union-attr]
             continue
-        level = margin.role.level or role.level
+        level = margin.role.level or ("" if modes_only else role.level)
         if served and not role_there.modes & served:
             continue
         if not served and (role_there.level != margin.role.level or not role_there.modes & (role.modes or served)):

@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Iterator
 
 from doubler.check.finding import Finding
 from doubler.check.margin_anatomy import UNKNOWN, Anatomy, FactorGroup, Margins
-from doubler.check.roles import APPLIED, FACTOR, MARGIN
+from doubler.check.roles import ALLOWABLE, APPLIED, FACTOR, MARGIN, Role
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.examined import Key, cell_name_of, shown
 
@@ -27,6 +28,69 @@ def factor_findings(margins: Margins) -> Iterator[Finding]:
             elif _like(answer, 1.0) and not load_is_ultimate and not _otherwise(margins, group, margin):
                 missing.append(margin)
         yield from _missing(margins, group, missing)
+
+
+_CHECKED = re.compile(
+    r"\b(?:utili[sz]ation|usage|unity check|demand/capacity|ratio|unity|verification)\b|"
+    r"(?:^|\s)(?:UF|UC|UR|D/C|η)(?=$|[\s_,(\[])",
+    re.IGNORECASE,
+)
+
+
+def factors_unread(margins: Margins) -> Iterator[Finding]:
+    """Find factors that no formula reads, on sheets whose results are utilisations, where no margin could tell it."""
+    book = margins.book
+    for sheet in book.workbook.sheets:
+        for address, cell in sheet.cells.items():
+            key = (sheet.name, address)
+            if cell.formula is not None or not isinstance(cell.value, float) or not 1.0 < cell.value <= 5.0:
+                continue
+            if book.readers.get(key):
+                continue
+            role = margins.roles.at(key)
+            if (
+                role is None
+                or role.part != FACTOR
+                or any(group.name == role.words.casefold() for group in margins.factors)
+            ):
+                continue
+            finding = _unread(margins, key, role, cell.value)
+            if finding is not None:
+                yield finding
+
+
+def _unread(margins: Margins, key: Key, role: Role, value: float) -> Finding | None:
+    """Tell an unread factor at the one formula that makes a resistance without a factor; else at the factor."""
+    book, sheet = margins.book, key[0]
+    formulas = [other for other, _ in book.formulas() if other[0] == sheet]
+    checks = [other for other in formulas if _CHECKED.search(book.label(other).text)]
+    if not checks:
+        return None
+    factored: list[Key] = []
+    bare: list[Key] = []
+    for other in formulas:
+        roles = [margins.roles.at(read) for read in list(book.cells_read(other))[:12]]
+        parts = {found.part for found in roles if found is not None}
+        if ALLOWABLE in parts:
+            (factored if FACTOR in parts else bare).append(other)
+    behind = {other for other in bare if book.downstream([other]) & set(checks) or other in checks}
+    lacking = [other for other in bare if other in behind and other not in checks]
+    if not factored and not lacking:
+        return None
+    at = lacking[0] if factored and len(lacking) == 1 else key
+    return Finding(
+        at[0],
+        cell_name(*at[1]),
+        "factor-missing",
+        "error" if at != key else "warning",
+        f"The factor '{role.words.strip(' -[]')}' of {shown(value)} is declared in {cell_name(*key[1])} and no formula "
+        f"reads it{f'; {cell_name(*at[1])} takes a strength without a factor' if at != key else ''}; apply it, or say "
+        "that it is not meant here.",
+        "not applied",
+        f"applied once: {shown(value)}",
+        (cell_name_of(key), *(cell_name_of(other) for other in lacking[:3])),
+        tuple(cell_name_of(other) for other in checks[:6]),
+    )
 
 
 def _like(answer: float, due: float) -> bool:

@@ -17,6 +17,7 @@ from typing import Any
 from doubler.check.recognise import quantity_at
 from doubler.units import kind
 from doubler.workbook.examined import Examined, Key
+from doubler.workbook.unit_text import read_unit_text
 
 Terms = Mapping[str, Mapping[str, Any]]
 
@@ -109,8 +110,8 @@ def stacked_headers(book: Examined, key: Key) -> list[str]:
     found: list[str] = []
     last = None
     for row, column in layout.headers(key[1]):
-        if last is not None and last - row > 1:
-            break
+        if last is not None and last - row > 1 and (len(found) > 1 or read_unit_text(found[0]).unit is None):
+            break  # only a row of units may stand off from its headers
         found.append(layout.texts[row, column])
         last = row
     return found

@@ -11,6 +11,7 @@ import re
 from collections.abc import Iterator
 from dataclasses import dataclass
 
+from doubler.check.fills import walk
 from doubler.check.finding import Finding
 from doubler.check.margin_allowables import pointed
 from doubler.check.recognise import quantity_at
@@ -18,6 +19,7 @@ from doubler.check.trials import Trials
 from doubler.units import kind
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.examined import Examined, Key, cell_name_of, shown
+from doubler.workbook.syntax import Binary, Call, Number
 
 _SHEAR_STRAIN = re.compile(r"\bshear strain\b|(?:^|[\s(,=])(?:γ|gamma)(?:_?\w{1,6})?(?=$|[\s),=:\[])", re.IGNORECASE)
 _TENSOR = re.compile(
@@ -35,6 +37,8 @@ _MISES = re.compile(
 )
 _TRESCA = re.compile(r"\btresca\b|\bmaximum shear theory\b", re.IGNORECASE)
 _CIRCLE = re.compile(r"\bprincipal\b|\bmohr\b|\bradius of (?:the )?circle\b|^radius\b|\bcircle radius\b", re.IGNORECASE)
+_FIRST = re.compile(r"(?:^|[\s(,=])(?:ε|eps|epsilon|σ|sigma)_?[123I]{1,3}(?=$|[\s),=:\[])", re.IGNORECASE)
+"""Symbols of principal values; along a ply's fibre they stand for others, so that the formula must be a circle's."""
 _RADIUS = re.compile(r"\bradius\b", re.IGNORECASE)
 _NOT_VALUE = re.compile(r"\b(?:direction|angle|allowable|strength|sum|invariant)\b", re.IGNORECASE)
 
@@ -93,7 +97,7 @@ class _Shear:
 
     def _dimension(self, key: Key) -> object:
         declared = self.book.declarations.unit(*key)
-        return None if declared is None else declared.unit.dimension
+        return None if declared is None else declared.unit.dimension.without_angle()  # γ may be given in rad
 
     def _scale(self, key: Key) -> float:
         declared = self.book.declarations.unit(*key)
@@ -103,6 +107,7 @@ class _Shear:
         words, dimension = self.words(key), self._dimension(key)
         strains = dimension in (self.ratio, None) and bool(_STRAIN.search(words) or _SHEAR_STRAIN.search(words)
                                                            or _CIRCLE.search(words))  # fmt: skip
+        circle = bool(_CIRCLE.search(words) or (_FIRST.search(words) and self._has_root(key)))
         stresses = dimension == self.stress and bool(_STRESS.search(words) or _CIRCLE.search(words))
         if not (strains or stresses) or _NOT_VALUE.search(words) or self.book.number(key) is None:
             return
@@ -121,8 +126,8 @@ class _Shear:
         elif strains and self._is_shear_strain(key) and len(shear_stresses) == 1 and not shear_strains:
             self._law_of_hooke(key, shear_stresses[0], reads, inverse=True)
         elif stresses and len(shear_stresses) == 1 and not shear_strains:
-            self._criterion(key, words, shear_stresses[0], reads)
-        elif strains and len(shear_strains) == 1 and _CIRCLE.search(words):
+            self._criterion(key, words, shear_stresses[0], reads, circle=circle)
+        elif strains and len(shear_strains) == 1 and circle:
             tensor = bool(_TENSOR.search(self.words(shear_strains[0])))
             self._alone(key, shear_strains[0], reads, (1.0 if tensor else 0.5,), "Mohr's circle of strain")
         elif strains and self._is_shear_strain(key) and not shear_strains and not shear_stresses:
@@ -159,14 +164,24 @@ class _Shear:
         unit = self._scale(shear) / modulus if inverse else self._scale(shear) * modulus
         self._ask(key, shear, [], unit, (1 / due if inverse else due,), law, moduli[0])
 
-    def _criterion(self, key: Key, words: str, shear: Key, reads: list[Key]) -> None:
+    def _has_root(self, key: Key) -> bool:
+        """Return whether a formula takes a square root and turns nothing by an angle."""
+        tree = self.book.tree(key)
+        names = {node.name for node in walk(tree) if isinstance(node, Call)} if tree is not None else set()
+        powers = tree is not None and any(
+            isinstance(node, Binary) and node.operator == "^" and node.right == Number(0.5, "0.5")
+            for node in walk(tree)
+        )
+        return ("SQRT" in names or powers) and not names & {"SIN", "COS", "TAN"}
+
+    def _criterion(self, key: Key, words: str, shear: Key, reads: list[Key], *, circle: bool) -> None:
         if _MISES.search(words):
             named = re.search("mises|hmh", words, re.IGNORECASE) or re.search(r"σ_?vm\b", words)
             due = (math.sqrt(3.0),) if named else (math.sqrt(3.0), 2.0)
             self._alone(key, shear, reads, due, "the von Mises stress")
         elif _TRESCA.search(words):
             self._alone(key, shear, reads, (2.0,), "Tresca's stress")
-        elif _CIRCLE.search(words):
+        elif circle:
             self._alone(key, shear, reads, (1.0,), "Mohr's circle of stress")
 
     def _alone(self, key: Key, shear: Key, reads: list[Key], due: tuple[float, ...], law: str) -> None:

@@ -7,7 +7,7 @@ from collections.abc import Iterator
 from doubler.check.finding import Finding
 from doubler.check.margin_allowables import allowables_mixed
 from doubler.check.margin_anatomy import Margins
-from doubler.check.margin_factors import factor_findings
+from doubler.check.margin_factors import factor_findings, factors_unread
 from doubler.check.margin_form import margin_forms
 from doubler.check.policy import Policy
 from doubler.check.policy_rules import factors_too_small
@@ -24,3 +24,4 @@ def margin_findings(book: Examined, policy: Policy = NO_POLICY) -> Iterator[Find
     yield from margin_forms(margins)
     yield from allowables_mixed(margins)
     yield from factor_findings(margins)
+    yield from factors_unread(margins)

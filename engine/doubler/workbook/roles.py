@@ -35,10 +35,11 @@ _PURE = re.compile(
     r"margins?|reserve|utili[sz]ation|cycles|exponent|index|strain|percentage|multiplier|"
     r"friction|proportion|fraction|safety|knockdown|ncycles|probability|damage)\b"
     r"|^\s*#\s*(?:of\b|$)"
-    r"|^\s*(?:MS|M\.S\.|RF|R\.F\.|FS|F\.S\.|SF|S\.F\.|FF|FoS|MoS|Kt|K_t|Kf|ν|nu|µ_f|MS_\w+|RF_\w+|FS_\w+|SF_\w+|FF_\w+)\s*[:=]?\s*$",
+    r"|^\s*(?:MS|M\.S\.|RF|R\.F\.|FS|F\.S\.|SF|S\.F\.|FF|FoS|MoS|Kt|K_t|Kf|ν|nu|µ_f|MS_\w+|RF_\w+|FS_\w+|SF_\w+|FF_\w+|"
+    r"(?:γ|gamma)_?[MFGQ][\w,]{0,5})\s*[:=]?\s*$",
     re.IGNORECASE,
 )
-_SYMBOL_AT_END = re.compile(r"[,(\s](?:MS|RF|FS|SF|FF|FoS|MoS|Kt|ν|nu)\s*\)?\s*[:=]?\s*$")
+_SYMBOL_AT_END = re.compile(r"[,(\s](?:MS|RF|FS|SF|FF|FoS|MoS|Kt|ν|nu|γ_?[MFGQ]\w{0,2})\s*\)?\s*[:=]?\s*$")
 _NOT_PURE = re.compile(
     r"\b(?:expansion|conversion|intensity|stiffness|spring|film|heat|transfer|thermal|influence|drag|conductivity|"
     r"unit|fatigue strength|scale|paris|basquin|load|stress|temperature|rate|resistance|converts?|moment|shear flow|"
