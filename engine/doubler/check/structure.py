@@ -11,7 +11,7 @@ from doubler.check.finding import Finding
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined, Key, cell_name_of, shown
-from doubler.workbook.model import Address
+from doubler.workbook.model import Address, Sheet
 from doubler.workbook.syntax import ExternalRef
 
 _REMARK = re.compile(
@@ -200,23 +200,26 @@ def external_links(book: Examined) -> Iterator[Finding]:
 
 
 def hidden_inputs(book: Examined) -> Iterator[Finding]:
-    """Find hidden cells that hold numbers and feed visible results, one finding a hidden row, column or sheet."""
+    """Find hidden cells that hold numbers and feed visible results, one finding a block of hidden rows or columns."""
     sheets = book.workbook.sheets
     if not any(sheet.visibility != "visible" or sheet.hidden_rows or sheet.hidden_columns for sheet in sheets):
         return
+    hidden = {sheet.name: _Hidden(sheet) for sheet in sheets}
     places: dict[tuple[str, str], list[Key]] = {}
     for key in book.readers:
         cell = book.cell(key)
-        where = _hidden_by(book, key)
+        where = hidden[key[0]].by(key[1])
         if where is None or cell is None or (cell.value is None and cell.formula is None):
             continue
         if cell.formula is None and not isinstance(cell.value, float):
             continue
-        if any(_hidden_by(book, reader) is None for reader in book.readers[key]):
+        if any(hidden[reader[0]].by(reader[1]) is None for reader in book.readers[key]):
             places.setdefault((key[0], where), []).append(key)
     for (sheet, where), keys in places.items():
         keys.sort(key=lambda key: key[1])
-        readers = sorted({reader for key in keys for reader in book.readers[key] if _hidden_by(book, reader) is None})
+        readers = sorted(
+            {reader for key in keys for reader in book.readers[key] if hidden[reader[0]].by(reader[1]) is None}
+        )
         cells = [cell_name(*key[1]) for key in keys]
         named = f"{', '.join(cells[:5])}{', …' if len(cells) > 5 else ''}"
         yield Finding(
@@ -232,18 +235,37 @@ def hidden_inputs(book: Examined) -> Iterator[Finding]:
         )
 
 
-def _hidden_by(book: Examined, key: Key) -> str | None:
-    sheet = book.workbook.sheet(key[0])
-    if sheet is None:
-        return None
-    if sheet.visibility != "visible":
-        return f"the hidden sheet {sheet.name}"
-    row, column = key[1]
-    if row in sheet.hidden_rows:
-        return f"the hidden row {row}"
-    if column in sheet.hidden_columns:
-        return f"the hidden column {cell_name(1, column)[:-1]}"
-    return None
+class _Hidden:
+    """What hides the cells of a sheet."""
+
+    def __init__(self, sheet: Sheet) -> None:
+        self.sheet = sheet
+        self.rows = _blocks(sheet.hidden_rows)
+        self.columns = _blocks(sheet.hidden_columns)
+
+    def by(self, address: Address) -> str | None:
+        """Return what hides a cell, or None."""
+        if self.sheet.visibility != "visible":
+            return f"the hidden sheet {self.sheet.name}"
+        row, column = self.rows.get(address[0]), self.columns.get(address[1])
+        if row is not None:
+            return f"the hidden row {row[0]}" if row[0] == row[1] else f"the hidden rows {row[0]}:{row[1]}"
+        if column is None:
+            return None
+        first, last = (cell_name(1, end)[:-1] for end in column)
+        return f"the hidden column {first}" if first == last else f"the hidden columns {first}:{last}"
+
+
+def _blocks(lines: set[int]) -> dict[int, tuple[int, int]]:
+    """Return for each hidden row or column the first and last of those hidden with it."""
+    found: dict[int, tuple[int, int]] = {}
+    block: list[int] = []
+    for line in [*sorted(lines), 0]:
+        if block and line != block[-1] + 1:
+            found.update(dict.fromkeys(block, (block[0], block[-1])))
+            block = []
+        block.append(line)
+    return found
 
 
 def unused_inputs(book: Examined) -> Iterator[Finding]:

@@ -29,11 +29,13 @@ def stale_values(book: Examined, relative: float = RELATIVE) -> Iterator[Finding
     """Find stored values that are not what the formula gives; what only follows from them stands under them."""
     stale: dict[Key, Any] = {}
     empty: list[Key] = []
+    placeholders = _placeholders(book)
     for key, cell in book.formulas():
         value = book.value(key)
         if isinstance(value, NotEvaluated):
             continue
-        if cell.value is None and value not in (None, ""):
+        missing = cell.value is None or (placeholders and value != 0.0)
+        if missing and value not in (None, ""):
             empty.append(key)
         elif (
             not _same(cell.value, value, relative)
@@ -59,6 +61,11 @@ def stale_values(book: Examined, relative: float = RELATIVE) -> Iterator[Finding
             tuple(dict.fromkeys(cell_name_of(read) for read in list(book.cells_read(key))[:12])),
             tuple(cell_name_of(other) for other in follows[key]),
         )
+
+
+def _placeholders(book: Examined) -> bool:
+    """Return whether a writer put 0 for every formula's value, and asks for them to be calculated on opening."""
+    return book.workbook.calculated_on_load and all(cell.value in (None, 0.0) for _, cell in book.formulas())
 
 
 def _never_stored(book: Examined, empty: list[Key]) -> Finding:

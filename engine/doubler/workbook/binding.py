@@ -284,7 +284,7 @@ class Binder:
         rows, columns = area.last_row - area.first_row + 1, area.last_column - area.first_column + 1
         if rows * columns > LARGEST_AREA:
             raise CannotEvaluateError(
-                f"it reads a range of {rows * columns:,} cells between the first and the last that are filled, more than "
+                f"it reads a range of {rows * columns:,} cells between the first and the last filled one, more than "
                 f"the {LARGEST_AREA:,} that are evaluated at once; let it read the filled columns only"
             )
         whole = (full.last_row - full.first_row + 1, full.last_column - full.first_column + 1)

@@ -51,6 +51,8 @@ def bracket_unit(text: str) -> tuple[Unit | None, str, str]:
 def _fits(read: UnitText, words: str, *, square: bool) -> bool:
     if not read.doubtful or read.unit is None:
         return True
+    if square and read.unit.text == "in":
+        return True  # nothing else is written so; where the label speaks of an area, the unit is wrong and said to be
     agrees = role_agrees(read.unit, words)
     if square or read.unit.text == "in" or _SYMBOL.match(words.strip(" ,:=")):
         return agrees is not False

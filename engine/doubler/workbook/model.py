@@ -131,6 +131,8 @@ class Workbook:
     number_formats: list[str] = field(default_factory=lambda: ["General"])
     date1904: bool = False
     iterative: bool = False
+    calculated_on_load: bool = False
+    """Whether the file asks for all formulas to be calculated when it is opened."""
     external_links: list[str] = field(default_factory=list)
 
     def sheet(self, name: str) -> Sheet | None:

@@ -66,6 +66,7 @@ def workbook_from(package: Package) -> Workbook:
         sheets=[sheet for sheet in listed if sheet is not None],
         number_formats=read_number_formats(package, part),
         date1904=date1904,
+        calculated_on_load=calculation is not None and is_true(calculation.get("fullCalcOnLoad")),
         iterative=calculation is not None and is_true(calculation.get("iterate")),
         external_links=_external_links(package, part, root),
     )

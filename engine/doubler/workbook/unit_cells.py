@@ -73,7 +73,8 @@ class UnitCells:
         agrees = role_agrees(read.unit, words)
         if agrees is not None:
             # In a column of units a wrong one is read for what it says, so that it is found.
-            plainly = column.firm > column.other and text not in _NEVER_ALONE and text.islower() is False
+            plainly = column.firm > column.other and text not in _NEVER_ALONE
+            plainly = plainly and (text == "in" or not text.islower())
             return read if agrees or plainly else NOTHING
         if column.firm and column.firm + column.doubtful > column.other:
             return read
