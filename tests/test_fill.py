@@ -160,6 +160,10 @@ def test_a_file_changed_by_hand_is_not_written_over(ready: tuple[Path, Path, Pat
         ("case,load [kN]\n../x,10\n", r"row 2: the case's name '\.\./x' holds a character that no file name takes"),
         ("case,load [kN]\n=cmd,10\n", "begins like a formula"),
         (f"case,load [kN]\n{'n' * 300},10\n", "is 300 characters long; write at most 100"),
+        (f"case,load [kN]\n{'漢' * 90},10\n", "takes 270 bytes in a file's name; write fewer characters"),
+        ("case,load [kN]\né,10\ne\u0301,11\n", "row 3: the case's name 'e\u0301' stands in row 2 too"),
+        ("case,load [kN]\n\u202egpj,10\n", "holds a control character"),
+        ("\ncase,load [kN]\na,10\n", "the first row of .* is empty: write the headings"),
         ("case,load [kN]\ncon,10\n", "is a device's name"),
         ("case,load [kN]\nLPT1.txt,10\n", "is a device's name"),
         ("case,load [kN]\nsummary,10\n", r"would take the place of summary\.xlsx"),
@@ -311,3 +315,17 @@ def test_a_cell_that_shows_a_percentage_is_read_as_it_shows(tmp_path: Path, head
     book.save(tmp_path / "cases.xlsx")
     (batch,) = open_cases(tmp_path / "cases.xlsx").batches()
     assert batch.columns[1].to_pylist() == [due]
+
+
+@pytest.mark.parametrize("suffix", [".csv", ".xlsx"])
+def test_a_heading_may_be_broken_into_lines(ready: tuple[Path, Path, Path], suffix: str) -> None:
+    table = ready[1].with_suffix(suffix)
+    if suffix == ".csv":
+        table.write_text('case,"load\n[kN]"\nlight,11\n')
+    else:
+        book = openpyxl.Workbook()
+        for row in (["case", "load\n[kN]"], ["light", 11]):
+            book.active.append(row)
+        book.save(table)
+    fill(ready[0], table, ready[2])
+    assert stored(ready[2] / "light.xlsx")["C3"] == 11.0

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+import unicodedata
 from pathlib import Path
 from typing import Any
 
@@ -10,11 +11,16 @@ from doubler.errors import InputError
 
 LONGEST = 100
 """Characters in a case's name; with its suffix the file's name then fits every file system."""
+LONGEST_IN_BYTES = 240
+"""The same in bytes of UTF-8, in which some file systems count: of 漢 there are three a character."""
 
 _FAULTS = (
     (r"^\s*$", "is empty; give every case a name"),
     (r"^\s|\s$", "begins or ends with a space; write it without"),
-    (r"[\x00-\x1f\x7f]", "holds a control character; write letters, digits, spaces, - and _"),
+    (
+        r"[\x00-\x1f\x7f-\x9f\u200b-\u200f\u2028-\u202e\u2060-\u2069\ufeff]",
+        "holds a control character; write letters, digits, spaces, - and _",
+    ),
     (r'[\\/:*?"<>|]', 'holds a character that no file name takes (\\ / : * ? " < > |); write letters, digits, - and _'),
     (r"^[=+@]", "begins like a formula; begin it with a letter or a digit"),
     (r"^\.|\.$", "begins or ends with a point; begin and end it with a letter or a digit"),
@@ -55,14 +61,16 @@ class CaseNames:
         Raises
         ------
         InputError
-            A name that is empty, hostile, too long, or already taken (also where only capitals differ, since some file
-            systems do not tell them apart).
+            A name that is empty, hostile, too long, or already taken (also where only capitals differ, or
+            how an accent is put together, since some file systems do not tell them apart).
         """
         taken = list(names)
         for row, name in enumerate(taken, start=first_row):
-            if _ANY_FAULT.search(name) or len(name) > LONGEST:
+            plain = name.isascii()
+            too_long = len(name) > LONGEST or (not plain and len(name.encode()) > LONGEST_IN_BYTES)
+            if too_long or _ANY_FAULT.search(name):
                 raise InputError(f"{self.path}, row {row}: the case's name {_shown(name)} {_fault(name)}")
-            key = name.casefold()
+            key = name.casefold() if plain else unicodedata.normalize("NFC", name).casefold()
             before = self._rows.setdefault(key, row)
             if before != row:
                 raise InputError(
@@ -75,6 +83,8 @@ class CaseNames:
 def _fault(name: str) -> str:
     if len(name) > LONGEST:
         return f"is {len(name)} characters long; write at most {LONGEST}"
+    if len(name.encode()) > LONGEST_IN_BYTES:
+        return f"takes {len(name.encode())} bytes in a file's name; write fewer characters ({LONGEST_IN_BYTES} bytes)"
     return next(words for pattern, words in _FAULTS if re.search(pattern, name))
 
 

@@ -121,7 +121,7 @@ def _table(path: Path, texts: list[str], rows: int | None, batches: Callable[[in
 
 
 def _heading(path: Path, text: str, column: int) -> Heading:
-    text = text.strip()
+    text = " ".join(text.split())  # a heading may be broken into lines
     if not text:
         raise InputError(f"{path}: column {column} has no heading; head it with an input and its unit")
     name, unit_text, place = split_heading(text)
@@ -134,7 +134,7 @@ def _heading(path: Path, text: str, column: int) -> Heading:
 
 
 def _open_csv(path: Path) -> CaseTable:
-    head, delimiter = _csv_head(path)
+    head, delimiter, lines = _csv_head(path)
 
     def batches(size: int) -> Iterator[RawBatch]:
         import pyarrow as pa
@@ -151,7 +151,7 @@ def _open_csv(path: Path) -> CaseTable:
             reader = arrow_csv.open_csv(
                 path,
                 read_options=arrow_csv.ReadOptions(
-                    column_names=names, skip_rows=1, block_size=1 << 22, use_threads=False
+                    column_names=names, skip_rows=lines, block_size=1 << 22, use_threads=False
                 ),
                 parse_options=arrow_csv.ParseOptions(
                     delimiter=delimiter, newlines_in_values=True, invalid_row_handler=refuse
@@ -185,8 +185,8 @@ def _open_csv(path: Path) -> CaseTable:
     return _table(path, head, None, batches)
 
 
-def _csv_head(path: Path) -> tuple[list[str], str]:
-    """Return the headings of a CSV file and what separates its columns: comma, semicolon or tab."""
+def _csv_head(path: Path) -> tuple[list[str], str, int]:
+    """Return the headings of a CSV file, what separates its columns (comma, semicolon or tab), and the head's lines."""
     with path.open("rb") as stream:
         start = stream.read(4)
     if start[:2] in (b"\xff\xfe", b"\xfe\xff") or b"\x00" in start:
@@ -196,14 +196,16 @@ def _csv_head(path: Path) -> tuple[list[str], str]:
             line = stream.readline()
             delimiter = max(",;\t", key=line.count) if line else ","
             stream.seek(0)
-            head = next(csv.reader(stream, delimiter=delimiter), [])
+            reader = csv.reader(stream, delimiter=delimiter)
+            head = next(reader, [])
     except UnicodeDecodeError:
         raise InputError(f"{path} is not UTF-8 text; save it as CSV UTF-8") from None
     except csv.Error as error:
         raise InputError(f"{path} is not readable as CSV ({error})") from None
     if not any(text.strip() for text in head):
-        raise InputError(f"{path} is empty: write the headings in its first row and one row a load case below")
-    return head, delimiter
+        what = f"{path} is empty" if not line else f"the first row of {path} is empty"
+        raise InputError(f"{what}: write the headings in its first row and one row a load case below")
+    return head, delimiter, reader.line_num
 
 
 def _open_parquet(path: Path) -> CaseTable:

@@ -126,6 +126,8 @@ def _find(book: Examined, text: str) -> Key:
         ) from None
     if sheet is None:
         sheets = ", ".join(s.name for s in book.workbook.sheets)
+        if sheet_name:
+            raise InputError(f"{name} has no sheet {sheet_name!r}; it has {sheets}")
         raise InputError(f"{name}: say on which sheet {text!r} stands; it has {sheets}")
     if address not in sheet.cells and book.graph.group_at(sheet.name, address) is None:
         raise InputError(f"{name}: {full_name(sheet.name, *address)} is empty; give a cell with a formula")
