@@ -117,6 +117,10 @@ class Session:
         self.documents[key].calculateAll()
         return time.perf_counter() - start
 
+    def automatic(self, key: str, on: bool) -> None:
+        """Let the document calculate by itself, or only when asked."""
+        self.documents[key].enableAutomaticCalculation(on)
+
     def put(self, key: str, sheet: str, cells: dict[str, Any]) -> None:
         """Set cells: a number, or text as typed (a formula begins with =)."""
         target = self._sheet(key, sheet)

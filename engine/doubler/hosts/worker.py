@@ -7,18 +7,23 @@ gone.
 
 from __future__ import annotations
 
+import gc
 import hashlib
 import json
+import math
 import os
 import sys
 import threading
 import time
+from itertools import chain
 from typing import Any
 
 from doubler import __version__, catalogue
 from doubler.errors import ErrorValue
 from doubler.hosts.calc_client import ERRORS, PROTOCOL
 from doubler.hosts.calc_pipe import Reader, packed, write
+
+_PLAIN = {float, str}
 
 
 def catalogue_digest() -> str:
@@ -43,8 +48,10 @@ def decoded(given: Any) -> Any:
         return given
     if kind is not tuple and kind is not list:
         return _cell(given)
-    if all(type(cell) is float for row in given for cell in row):
-        return given
+    if len(given) > 1:
+        flat = list(chain.from_iterable(given))
+        if set(map(type, flat)) <= _PLAIN and "" not in flat:
+            return given
     return [[_cell(cell) for cell in row] for row in given]
 
 
@@ -81,6 +88,15 @@ def encoded(value: Any) -> Any:
     return encoded(float(value))
 
 
+def shown(grid: list[list[Any]]) -> tuple[tuple[Any, ...], ...]:
+    """Turn a result into what Calc shows."""
+    if len(grid) > 1:
+        flat = list(chain.from_iterable(grid))
+        if set(map(type, flat)) == {float} and all(map(math.isfinite, flat)):
+            return tuple(map(tuple, grid))
+    return tuple([tuple([encoded(value) for value in row]) for row in grid])
+
+
 def answer(verb: str, name: str, body: Any) -> Any:
     """Answer one request; a fault of our own becomes an error value with its reason, never silence."""
     function = catalogue.lookup(name)
@@ -91,7 +107,7 @@ def answer(verb: str, name: str, body: Any) -> Any:
     else:
         try:
             result = catalogue.call_cells(function, [decoded(argument) for argument in body])
-            grid, reasons = tuple([tuple([encoded(value) for value in row]) for row in result.grid]), result.reasons
+            grid, reasons = shown(result.grid), result.reasons
         except Exception as fault:
             grid, reasons = (
                 ((ERRORS["#VALUE!"],),),
@@ -134,6 +150,10 @@ def main() -> None:
     if os.name == "posix":
         threading.Thread(target=_end_with_parent, args=(os.getppid(),), daemon=True).start()
     mechanics.load()
+    # What is loaded stays; a column of a hundred thousand rows must not set off a search through all of it.
+    gc.collect()
+    gc.freeze()
+    gc.set_threshold(200_000, 20, 20)
     try:
         serve(source, target)
     except BrokenPipeError:
