@@ -4,6 +4,8 @@ import datetime
 import math
 import os
 import shutil
+import subprocess
+import sys
 import zipfile
 from collections.abc import Callable
 from pathlib import Path
@@ -95,6 +97,17 @@ def test_a_run_killed_between_a_file_and_its_line_in_the_log_goes_on(ready: tupl
     assert fill(*ready).written == 2
     again = fill(*ready)
     assert (again.written, again.kept) == (0, 3)
+
+
+def test_what_a_killed_run_was_writing_is_removed(ready: tuple[Path, Path, Path]) -> None:
+    fill(*ready)
+    dead = subprocess.Popen([sys.executable, "-c", ""])
+    dead.wait()
+    mine, foreign = f".doubler-{os.getpid()}-1-1.tmp", ".doubler-notes.tmp"
+    for name in (f".doubler-{dead.pid}-140000033307520-132.tmp", mine, foreign):
+        (ready[2] / name).write_bytes(b"half")
+    fill(*ready)
+    assert {path.name for path in ready[2].glob("*.tmp")} == {mine, foreign}
 
 
 def test_a_second_run_into_the_same_folder_is_refused(ready: tuple[Path, Path, Path]) -> None:

@@ -25,7 +25,7 @@ from doubler.workbook.addresses import full_name, parse_area
 from doubler.workbook.evaluate import Evaluation, NotEvaluated, evaluate_blocks
 from doubler.workbook.model import Scalar
 from doubler.workbook.opened import OpenedTemplate, open_template, refuse_unknown
-from doubler.workbook.output import refuse_target
+from doubler.workbook.output import refuse_target, remove_left_behind
 from doubler.workbook.writer import CellKey, FillPlan, PackageTemplate
 
 AT_ONCE = 512
@@ -332,6 +332,7 @@ class _Log:
             raise InputError(
                 f"another run is writing to {self.path.parent}; wait until it has ended, or give another folder"
             )
+        remove_left_behind(self.path.parent)
         if stream.tell() and not self.path.read_bytes().endswith(b"\n"):  # a run was killed within a line
             stream.write(b"\n")
         self._stream = io.TextIOWrapper(stream, encoding="utf-8")

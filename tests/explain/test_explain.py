@@ -72,7 +72,13 @@ def test_signs_and_powers_keep_their_order(tmp_path: Path) -> None:
 
 
 @pytest.mark.parametrize(
-    ("cell", "message"), [("nothing", "has no cell or name"), ("Strap!Z99", "is empty"), ("C5", "say on which sheet")]
+    ("cell", "message"),
+    [
+        ("nothing", "has no cell or name"),
+        ("Strap!Z99", "is empty"),
+        ("C5", "say on which sheet"),
+        ("Nowhere!C5", "has no sheet 'Nowhere'; it has Strap"),
+    ],
 )
 def test_a_cell_that_is_not_there(tmp_path: Path, cell: str, message: str) -> None:
     with pytest.raises(InputError, match=message):

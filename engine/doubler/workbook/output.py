@@ -5,6 +5,7 @@ from __future__ import annotations
 import errno
 import itertools
 import os
+import re
 import stat
 import threading
 from collections.abc import Iterable
@@ -13,6 +14,7 @@ from pathlib import Path
 from doubler.errors import InputError
 
 _COUNTER = itertools.count()
+_TEMPORARY = re.compile(r"\.doubler-(\d+)-\d+-\d+\.tmp")
 _FULL = {errno.ENOSPC, errno.EDQUOT, errno.EFBIG}
 
 
@@ -50,6 +52,33 @@ def write_file(target: Path, pieces: Iterable[bytes | memoryview]) -> None:
 def temporary_beside(target: Path) -> Path:
     """Return a free name for a temporary file in the target's folder, short whatever the target is called."""
     return target.with_name(f".doubler-{os.getpid()}-{threading.get_ident()}-{next(_COUNTER)}.tmp")
+
+
+def remove_left_behind(folder: Path) -> None:
+    """Remove the temporary files of processes that were killed while they wrote into a folder.
+
+    Parameters
+    ----------
+    folder : Path
+        The folder; the caller keeps other runs out of it. Nothing is done where the system cannot say which processes
+        are alive.
+    """
+    if os.name != "posix":
+        return
+    for path in folder.glob(".doubler-*.tmp"):
+        owner = _TEMPORARY.fullmatch(path.name)
+        if owner and not _is_alive(int(owner[1])):
+            path.unlink(missing_ok=True)
+
+
+def _is_alive(process: int) -> bool:
+    try:
+        os.kill(process, 0)
+    except ProcessLookupError:
+        return False
+    except (OSError, OverflowError):
+        return True
+    return True
 
 
 def refuse_target(target: Path) -> None:
