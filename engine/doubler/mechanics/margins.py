@@ -16,18 +16,19 @@ _FACTORS = {
     "cap": POSITIVE,
 }
 _SIGNS = (
-    condition("the allowable must not be zero", lambda allowable: allowable != 0.0),
+    condition("the allowable must not be zero", lambda allowable: np.min(allowable) > 0.0 or allowable != 0.0),
     condition(
         "a positive load stands against a negative (compressive) allowable; take the allowable of the load's own sign",
-        lambda applied, allowable: (allowable > 0.0) | (applied <= 0.0),
+        # The usual case is settled by one look at the least allowable.
+        lambda applied, allowable: np.min(allowable) > 0.0 or (allowable > 0.0) | (applied <= 0.0),
     ),
-    condition(_NO_LOAD, lambda applied, cap: (applied != 0.0) | (cap is not None)),
+    condition(_NO_LOAD, lambda applied, cap: cap is not None or applied != 0.0),
 )
 
 
 def _margin(applied: Values, allowable: Values, factors: Values, cap: Values) -> Values:
     """Return allowable/(factors × applied) − 1 of magnitudes; only a cap makes it finite at zero load."""
-    margin = np.abs(allowable) / (factors * np.abs(applied)) - 1.0
+    margin = np.abs(allowable / (factors * applied)) - 1.0  # the factors are positive
     return margin if cap is None else np.minimum(margin, cap)
 
 
@@ -85,7 +86,7 @@ def strength(
     >>> cell('=MARGIN_STRENGTH("-20 kN", "45 kN", 1.5, 1.15)')
     0.3043478261
     """
-    return _margin(applied, allowable, safety_factor * fitting_factor * other_factor, cap)
+    return _margin(applied, allowable, safety_factor * (fitting_factor * other_factor), cap)
 
 
 @worksheet_function(
@@ -97,7 +98,7 @@ def strength(
         "other_factor": AT_LEAST_ONE,
         "cap": POSITIVE,
     },
-    conditions=(condition(_NO_LOAD, lambda applied, cap: (applied != 0.0) | (cap is not None)),),
+    conditions=(condition(_NO_LOAD, lambda applied, cap: cap is not None or applied != 0.0),),
 )
 def yielding(
     applied: X,
@@ -157,7 +158,7 @@ def yielding(
         "other_factor": AT_LEAST_ONE,
         "cap": POSITIVE,
     },
-    conditions=(condition(_NO_LOAD, lambda applied, cap: (applied != 0.0) | (cap is not None)),),
+    conditions=(condition(_NO_LOAD, lambda applied, cap: cap is not None or applied != 0.0),),
 )
 def ultimate(
     applied: X,
@@ -213,7 +214,7 @@ def ultimate(
 @worksheet_function(
     "MARGIN_STABILITY",
     valid={"critical": POSITIVE} | _FACTORS,
-    conditions=(condition(_NO_LOAD, lambda applied, cap: (applied != 0.0) | (cap is not None)),),
+    conditions=(condition(_NO_LOAD, lambda applied, cap: cap is not None or applied != 0.0),),
 )
 def stability(
     applied: X,
@@ -261,7 +262,7 @@ def stability(
     >>> cell('=MARGIN_STABILITY("-40 kN", "90 kN", 1.5)')
     0.5
     """
-    return _margin(applied, critical, safety_factor * fitting_factor * other_factor, cap)
+    return _margin(applied, critical, safety_factor * (fitting_factor * other_factor), cap)
 
 
 @worksheet_function(
@@ -272,7 +273,7 @@ def stability(
             "the compression allowable must not be zero",
             lambda compression_allowable: compression_allowable != 0.0,
         ),
-        condition(_NO_LOAD, lambda applied, cap: (applied != 0.0) | (cap is not None)),
+        condition(_NO_LOAD, lambda applied, cap: cap is not None or applied != 0.0),
     ),
 )
 def by_sign(
@@ -325,7 +326,7 @@ def by_sign(
     [[0.5], [0.1]]
     """
     chosen = np.where(applied > 0.0, tension_allowable, compression_allowable)
-    return _margin(applied, chosen, safety_factor * fitting_factor * other_factor, cap)
+    return _margin(applied, chosen, safety_factor * (fitting_factor * other_factor), cap)
 
 
 @worksheet_function("MARGIN_RESERVE_FACTOR", valid=_FACTORS | {"cap": AT_LEAST_ONE}, conditions=_SIGNS)
@@ -385,7 +386,7 @@ def reserve_factor(
     conditions=(
         condition(
             _NO_LOAD.replace("load", "deflection"),
-            lambda deflection, cap: (deflection != 0.0) | (cap is not None),
+            lambda deflection, cap: cap is not None or deflection != 0.0,
         ),
     ),
 )

@@ -293,7 +293,9 @@ def interaction_pair(first: Ratio, second: Ratio, pair: Pair, cap: Ratio | None 
     conditions=(
         condition(
             _NO_LOAD,
-            lambda compression, bending, torsion, cap: (compression + bending + torsion > 0.0) | (cap is not None),
+            lambda compression, bending, torsion, cap: (
+                cap is not None or (compression > 0.0) | (bending > 0.0) | (torsion > 0.0)
+            ),
         ),
     ),
 )

@@ -40,6 +40,11 @@ def _hollow(inner_height: Values, inner_width: Values) -> tuple[Values, Values]:
     return (0.0, 0.0) if inner_height is None or inner_width is None else (inner_height, inner_width)
 
 
+def _cubes(height: Values, width: Values, inner_h: Values, inner_b: Values) -> Values:
+    """Return b·h³ less that of the hollow; by products, since a power of arrays costs ten of them."""
+    return width * height * height * height - inner_b * inner_h * inner_h * inner_h
+
+
 @worksheet_function("SECTION_RECTANGLE_AREA", valid=_SIZES, conditions=_HOLLOW)
 def area(height: Length, width: Length, inner_height: Length | None = None, inner_width: Length | None = None) -> Area:
     """Area of a solid or hollow rectangular section.
@@ -119,7 +124,7 @@ def second_moment(
     45000.0
     """
     inner_h, inner_b = _hollow(inner_height, inner_width)
-    return (width * height**3 - inner_b * inner_h**3) / 12.0
+    return _cubes(height, width, inner_h, inner_b) / 12.0
 
 
 @worksheet_function("SECTION_RECTANGLE_POLAR_MOMENT", valid=_SIZES, conditions=_HOLLOW)
@@ -201,7 +206,9 @@ def section_modulus(
     3000.0
     """
     inner_h, inner_b = _hollow(inner_height, inner_width)
-    return (width * height**3 - inner_b * inner_h**3) / (6.0 * height)
+    if inner_height is None:
+        return width * height * height / 6.0
+    return _cubes(height, width, inner_h, inner_b) / (6.0 * height)
 
 
 @worksheet_function("SECTION_RECTANGLE_PLASTIC_MODULUS", valid=_SIZES, conditions=_HOLLOW)
@@ -340,7 +347,7 @@ def radius_of_gyration(
     8.660254038
     """
     inner_h, inner_b = _hollow(inner_height, inner_width)
-    return np.sqrt((width * height**3 - inner_b * inner_h**3) / (12.0 * (height * width - inner_h * inner_b)))
+    return np.sqrt(_cubes(height, width, inner_h, inner_b) / (12.0 * (height * width - inner_h * inner_b)))
 
 
 @worksheet_function("SECTION_RECTANGLE_TORSION_CONSTANT", valid={"height": POSITIVE, "width": POSITIVE})

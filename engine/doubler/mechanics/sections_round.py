@@ -26,6 +26,12 @@ def _bore(inner_diameter: Values) -> Values:
     return 0.0 if inner_diameter is None else inner_diameter
 
 
+def _fourth_powers(diameter: Values, inner_diameter: Values) -> Values:
+    """Return the difference of the fourth powers, as a product of which a thin wall loses no digit."""
+    bore = _bore(inner_diameter)
+    return (diameter - bore) * (diameter + bore) * (diameter * diameter + bore * bore)
+
+
 @worksheet_function(
     "SECTION_ROUND_AREA", valid={"diameter": POSITIVE, "inner_diameter": NOT_NEGATIVE}, conditions=(_HOLLOW,)
 )
@@ -99,7 +105,7 @@ def second_moment(diameter: Length, inner_diameter: Length | None = None) -> Sec
     >>> cell('=SECTION_ROUND_SECOND_MOMENT("20 mm", , "mm^4")')
     7853.981634
     """
-    return np.pi / 64.0 * (diameter**4 - _bore(inner_diameter) ** 4)
+    return np.pi / 64.0 * _fourth_powers(diameter, inner_diameter)
 
 
 @worksheet_function(
@@ -137,7 +143,7 @@ def polar_moment(diameter: Length, inner_diameter: Length | None = None) -> Seco
     >>> cell('=SECTION_ROUND_POLAR_MOMENT("20 mm", "16 mm", "mm^4")')
     9273.981513
     """
-    return np.pi / 32.0 * (diameter**4 - _bore(inner_diameter) ** 4)
+    return np.pi / 32.0 * _fourth_powers(diameter, inner_diameter)
 
 
 @worksheet_function(
@@ -176,7 +182,7 @@ def torsion_constant(diameter: Length, inner_diameter: Length | None = None) -> 
     >>> cell('=SECTION_ROUND_TORSION_CONSTANT("20 mm", , "mm^4")')
     15707.96327
     """
-    return np.pi / 32.0 * (diameter**4 - _bore(inner_diameter) ** 4)
+    return np.pi / 32.0 * _fourth_powers(diameter, inner_diameter)
 
 
 @worksheet_function(
@@ -214,7 +220,7 @@ def section_modulus(diameter: Length, inner_diameter: Length | None = None) -> S
     >>> cell('=SECTION_ROUND_MODULUS("20 mm", , "mm^3")')
     785.3981634
     """
-    return np.pi / 32.0 * (diameter**4 - _bore(inner_diameter) ** 4) / diameter
+    return np.pi / 32.0 * _fourth_powers(diameter, inner_diameter) / diameter
 
 
 @worksheet_function(
@@ -253,7 +259,8 @@ def plastic_modulus(diameter: Length, inner_diameter: Length | None = None) -> S
     >>> cell('=SECTION_ROUND_PLASTIC_MODULUS("20 mm", , "mm^3")')
     1333.333333
     """
-    return (diameter**3 - _bore(inner_diameter) ** 3) / 6.0
+    bore = _bore(inner_diameter)
+    return (diameter - bore) * (diameter * (diameter + bore) + bore * bore) / 6.0
 
 
 @worksheet_function(

@@ -160,7 +160,7 @@ def cantilever(length: Length, second_moment: SecondMoment, modulus: Modulus) ->
     >>> cell('=STIFFNESS_CANTILEVER("100 mm", "1000 mm^4", "200 GPa", "N/mm")')
     600.0
     """
-    return 3.0 * modulus * second_moment / length**3
+    return 3.0 * modulus * second_moment / (length * length * length)
 
 
 @worksheet_function(
@@ -201,7 +201,7 @@ def cantilever_deflection(force: Force, length: Length, second_moment: SecondMom
     >>> cell('=STIFFNESS_CANTILEVER_DEFLECTION("30 N", "100 mm", "1000 mm^4", "200 GPa", "mm")')
     0.05
     """
-    return force * length**3 / (3.0 * modulus * second_moment)
+    return force * length * length * length / (3.0 * modulus * second_moment)
 
 
 @worksheet_function("STIFFNESS_MIDSPAN", valid={"length": POSITIVE, "second_moment": POSITIVE, "modulus": POSITIVE})
@@ -237,7 +237,7 @@ def midspan(length: Length, second_moment: SecondMoment, modulus: Modulus) -> St
     >>> cell('=STIFFNESS_MIDSPAN("100 mm", "1000 mm^4", "200 GPa", "N/mm")')
     9600.0
     """
-    return 48.0 * modulus * second_moment / length**3
+    return 48.0 * modulus * second_moment / (length * length * length)
 
 
 @worksheet_function(
@@ -277,7 +277,7 @@ def midspan_deflection(force: Force, length: Length, second_moment: SecondMoment
     >>> cell('=STIFFNESS_MIDSPAN_DEFLECTION("480 N", "100 mm", "1000 mm^4", "200 GPa", "mm")')
     0.05
     """
-    return force * length**3 / (48.0 * modulus * second_moment)
+    return force * length * length * length / (48.0 * modulus * second_moment)
 
 
 @worksheet_function(

@@ -18,7 +18,8 @@ DIRECTED = condition(
 
 def radius(strain_x: Any, strain_y: Any, shear_strain: Any) -> Any:
     """Return the radius of Mohr's circle of strain: half the largest shear strain in the plane."""
-    return 0.5 * np.hypot(strain_x - strain_y, shear_strain)
+    across = strain_x - strain_y
+    return 0.5 * np.sqrt(across * across + shear_strain * shear_strain)
 
 
 def direction(strain_x: Any, strain_y: Any, shear_strain: Any) -> Any:

@@ -88,8 +88,9 @@ def torsion_round(torque: Moment, outer_diameter: Length, inner_diameter: Length
     >>> cell('=STRESS_TORSION_ROUND("4 kN*m", "80 mm", "60 mm", "MPa")')
     58.20523633
     """
-    inner = 0.0 if inner_diameter is None else inner_diameter**4
-    return (16.0 / np.pi) * torque * outer_diameter / (outer_diameter**4 - inner)
+    outer = outer_diameter * outer_diameter
+    inner = 0.0 if inner_diameter is None else inner_diameter * inner_diameter
+    return (16.0 / np.pi) * torque * outer_diameter / ((outer - inner) * (outer + inner))
 
 
 # A circle of the enclosed area has the radius √(A/π): the widest that any wall can stand from the middle of its cell.
