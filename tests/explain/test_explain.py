@@ -83,3 +83,13 @@ def test_signs_and_powers_keep_their_order(tmp_path: Path) -> None:
 def test_a_cell_that_is_not_there(tmp_path: Path, cell: str, message: str) -> None:
     with pytest.raises(InputError, match=message):
         explain(strap_template(tmp_path / "strap.xlsx"), cell)
+
+
+def test_a_step_whose_units_do_not_agree_says_so(tmp_path: Path) -> None:
+    """Numbers with units stand beside a result: where the equation is false, it says so."""
+    bad = strap_template(tmp_path / "bad.xlsx", {"stress": "=C3/C9"})
+    steps = explain(bad, "ms_yield").steps
+    said = [remark for step in steps for remark in step.notes]
+    assert any("The units do not agree: C10 is labelled MPa" in remark for remark in said), said
+    sound = explain(strap_template(tmp_path / "good.xlsx"), "ms_yield").steps
+    assert not any("do not agree" in remark for step in sound for remark in step.notes)

@@ -48,8 +48,8 @@ class Step:
     result
         With its unit.
     notes
-        Which row a lookup took, which branch was taken, what a literal converts, the formula and source of one of our
-        functions.
+        Where units do not agree, which row a lookup took, which branch was taken, what a literal converts, the formula
+        and source of one of our functions.
     """
 
     symbol: str

@@ -48,6 +48,8 @@ class Remarks:
     def all(self) -> list[str]:
         """Return the remarks, each once."""
         judgement = self.chain.book.tracing.verdict(*self.key)
+        for fault in judgement.faults if judgement is not None else ():
+            self.found.append(f"The units do not agree: {fault.message}")
         for use in judgement.uses if judgement is not None else ():
             self.found.append(f"{use.text} converts units")
         self._visit(self.tree)
