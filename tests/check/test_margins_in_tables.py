@@ -36,6 +36,18 @@ N_b,Rd|={chi}*{a}*{fy}/{g1}/1000 {nb}|kN
 Utilisation, section|={n}/{pl}|-
 Utilisation, buckling|={n}/{nb}|-
 """,
+    "bracket": """!sheet Bracket
+Factor of safety|1.5 {fs}
+Axial load limit|4000 {P}|N
+Side load limit|900 {Q}|N
+Area|80 {A}|mm²
+Axial stress ult|={P}*{fs}/{A} {s1}|MPa
+Side stress ult|={Q}*{fs}/{A} {s2}|MPa
+Total stress ult|={s1}+{s2} {s}|MPa
+Ftu|480 {ftu}|MPa
+MS|={ftu}/{s}-1
+Utilisation|={s}/{ftu} {u}
+""",
     "cases": """!sheet Joint
 LC|F1|F2|F3|Largest
 |kN|kN|kN|kN
@@ -49,6 +61,8 @@ WRONG = [
     ("reserves", "ms", "=B4/C4", "margin-form"),
     ("truss", "c", "={$ftu}/ABS(D6)-1", "allowable-mixed"),
     ("limit_state", "nb", "={chi}*{a}*{fy}/1000", "factor-missing"),
+    ("bracket", "s2", "={Q}/{A}", "factor-missing"),
+    ("bracket", "u", "={ftu}/{s}", "margin-form"),
     ("cases", "m", "=MAX(B4:C4)", "short-range"),
 ]
 

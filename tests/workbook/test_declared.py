@@ -93,6 +93,8 @@ NO_UNITS = [
     rows(("Count", 4, "N/A")),
     rows(("Type in", 4)),
     rows(("Answer", 4, "OK")),
+    rows(("Section modulus of bar", 21206)),
+    rows(("Stress in the bar", 4)),
     rows(("Bolt(s)", 4)),
     rows(("Section (A)", 4)),
     rows(("Load (max)", 4)),

@@ -13,6 +13,7 @@ from doubler.check.finding import SEVERITIES, Finding, rank
 from doubler.check.folding import folded
 from doubler.check.policy import Policy, policy_for
 from doubler.check.policy_rules import margins_too_small, units_not_allowed
+from doubler.check.round_sections import round_findings
 from doubler.check.short_range import short_ranges
 from doubler.workbook.collector import collector_held
 from doubler.workbook.evaluate import NotEvaluated
@@ -39,6 +40,7 @@ RULES: tuple[Rule, ...] = (
     elastic.modulus_mismatches,
     strength.margin_findings,
     shear_form.shear_findings,
+    round_findings,
     margins.negative_margins,
     coverage.not_recalculated,
     coverage.not_traced,

@@ -12,7 +12,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass, field
 
 from doubler.check.fills import walk
-from doubler.check.roles import ALLOWABLE, APPLIED, FACTOR, MARGIN, RESERVE, Role, Roles
+from doubler.check.roles import ALLOWABLE, APPLIED, FACTOR, MARGIN, RESERVE, USED, Role, Roles
 from doubler.check.trials import Trials
 from doubler.workbook.examined import Examined, Key
 from doubler.workbook.syntax import Number
@@ -106,10 +106,13 @@ class Margins:
     def __init__(self, book: Examined, roles: Roles) -> None:
         self.book = book
         self.roles = roles
-        self.margins = list(self._anatomies())
+        found = list(self._anatomies())
+        self.margins = [margin for margin in found if margin.role.part != USED]
+        self.utilisations = [margin for margin in found if margin.role.part == USED]
         self.factors = self._factors() if self.margins else []
+        if found:
+            self._find_forms(found)
         if self.margins:
-            self._find_forms()
             self._ask_factors()
 
     def _anatomies(self) -> Iterable[Anatomy]:
@@ -120,7 +123,7 @@ class Margins:
                 continue
             role = self.roles.at(key)
             value = book.number(key)
-            if role is None or role.part not in (MARGIN, RESERVE) or value is None:
+            if role is None or role.part not in (MARGIN, RESERVE, USED) or value is None:
                 continue
             direct = self._read_by(key)
             if direct is None or any(self._is_margin(read) for read in direct):
@@ -132,7 +135,7 @@ class Margins:
 
     def _is_margin(self, key: Key) -> bool:
         role = self.roles.at(key)
-        return role is not None and role.part in (MARGIN, RESERVE)
+        return role is not None and role.part in (MARGIN, RESERVE, USED)
 
     def _read_by(self, key: Key) -> list[Key] | None:
         reads = list(dict.fromkeys(self.book.cells_read(key)))
@@ -185,10 +188,10 @@ class Margins:
             found.append(FactorGroup(name, role, tuple(keys), self.book.number(keys[0]) or 1.0))
         return found
 
-    def _find_forms(self) -> None:
+    def _find_forms(self, margins: list[Anatomy]) -> None:
         trials = Trials(self.book)
         asked: list[tuple[Anatomy, int | None, int | None]] = []
-        for margin in self.margins:
+        for margin in margins:
             numbers = []
             for keys in (margin.allowables, margin.applied):
                 held = {key: self.book.number(key) or 0.0 for key in keys}

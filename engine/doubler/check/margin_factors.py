@@ -25,6 +25,8 @@ def factor_findings(margins: Margins) -> Iterator[Finding]:
             load_is_ultimate = _ultimate_input(margins, margin) and not group.role.modes
             if _like(answer, once * once) or (load_is_ultimate and _like(answer, once)):
                 yield _twice(group, margin, load_is_ultimate and _like(answer, once))
+            elif _in_part(margins, group, margin, answer):
+                yield _partly(margins, group, margin)
             elif _like(answer, 1.0) and not load_is_ultimate and not _otherwise(margins, group, margin):
                 missing.append(margin)
         yield from _missing(margins, group, missing)
@@ -209,6 +211,59 @@ def _twice(group: FactorGroup, margin: Anatomy, ultimate: bool) -> Finding:
         f"applied once: {shown(group.value)}",
         tuple(cell_name_of(key) for key in (*group.keys[:3], *margin.applied[:3])),
         tuple(map(cell_name_of, margin.line)),
+    )
+
+
+_UNFACTORED = re.compile(
+    r"\b(?:pre-?load|pre-?tension|pre-?stress|clamp\w*|thermal|temperature|residual|dead|permanent|self-?weight|weight|"
+    r"fit|interference|shrink|pressure|torque|ultimate|ult|design)\b|(?:^|\s)(?:γ|ψ)",
+    re.IGNORECASE,
+)
+
+
+def _in_part(margins: Margins, group: FactorGroup, margin: Anatomy, answer: float) -> bool:
+    """Return whether a factor acts on some of a margin's loads only, and nothing says that the others are without it.
+
+    Loads that are known for certain (preload, dead weight, temperature) commonly have no factor or one of their own.
+    """
+    once = margin.load_answer
+    if not once < 1 or group.role.modes or not 1.05 * once < answer < 0.95:
+        return False
+    others = [other for other in margins.factors if other is not group and not other.role.modes]
+    if any(not _like(margin.answers.get(other.name, 1.0), 1.0) for other in others):
+        return False
+    loads = [margins.roles.at(key) for key in margin.constants]
+    if any(role is not None and role.part == APPLIED and _UNFACTORED.search(role.words) for role in loads):
+        return False
+    return len(_without(margins, group, margin)) == 1
+
+
+def _without(margins: Margins, group: FactorGroup, margin: Anatomy) -> list[Key]:
+    """Return the formulas behind a margin that make loads of constants alone and that a factor does not reach."""
+    reached = margins.book.downstream(group.keys)
+    found = []
+    for key in margin.chain - reached:
+        role = margins.roles.at(key)
+        reads = margins.book.cells_read(key)
+        if role is not None and role.part == APPLIED and not any(read in margin.chain for read in reads):
+            found.append(key)
+    return found
+
+
+def _partly(margins: Margins, group: FactorGroup, margin: Anatomy) -> Finding:
+    (key,) = _without(margins, group, margin)
+    return Finding(
+        key[0],
+        cell_name(*key[1]),
+        "factor-missing",
+        "warning",
+        f"{_named(group)} ({cell_name(*group.keys[0][1])}) acts on some loads of the {margin.role.part} in "
+        f"{cell_name(*margin.key[1])}, and {cell_name(*key[1])} is without it; apply it here too, or say why it is not "
+        "meant.",
+        "not applied",
+        f"applied once: {shown(group.value)}",
+        tuple(cell_name_of(k) for k in (*group.keys[:3], margin.key)),
+        (cell_name_of(margin.key),),
     )
 
 

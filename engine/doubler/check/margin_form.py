@@ -23,7 +23,7 @@ from doubler.workbook.examined import cell_name_of, shown
 _MINUS_ONE = re.compile(r"^(.*\S)\s*-\s*1(?:\.0*)?\s*$", re.DOTALL)
 _ROUNDS = re.compile(r"(?:ROUND|ROUNDUP|ROUNDDOWN|TRUNC|INT|FLOOR|CEILING|MROUND)(?:\.MATH)?\(", re.IGNORECASE)
 _SAYS = {
-    LACKS_ONE: "it is allowable over load, a reserve factor: the -1 is missing",
+    LACKS_ONE: "it is allowable over load, a reserve factor",
     INVERTED: "it is load over allowable: the ratio is upside down",
     UTILISATION: "it is load over allowable, a utilisation",
     COMPLEMENT: "it is 1 minus load over allowable, which is no margin of safety and smaller than it",
@@ -38,6 +38,9 @@ def margin_forms(margins: Margins) -> Iterator[Finding]:
         if margin.form in (UNKNOWN, due):
             continue
         yield _finding(margins, margin, due)
+    for margin in margins.utilisations:
+        if margin.form in (LACKS_ONE, PROPER, INVERTED):
+            yield _finding(margins, margin, UTILISATION)
 
 
 def _finding(margins: Margins, margin: Anatomy, due: str) -> Finding:
@@ -46,17 +49,19 @@ def _finding(margins: Margins, margin: Anatomy, due: str) -> Finding:
     rounded = margin.form not in (LACKS_ONE, PROPER) and _ROUNDS.search(formula)
     mended = "" if rounded else _mended(formula, margin.form, due)
     reserve = margin.reserve(margin.value)
-    right = None if reserve is None else reserve - 1 if due == PROPER else reserve
-    name = "margin of safety" if due == PROPER else "reserve factor"
+    right = None if reserve is None else {PROPER: reserve - 1, UTILISATION: 1 / reserve}.get(due, reserve)
+    name = {PROPER: "margin of safety", UTILISATION: "utilisation"}.get(due, "reserve factor")
     value = "" if right is None else f" ({shown(margin.value)} as written, {shown(right)} when mended)"
-    law = "allowable/(factors × load)" + (" - 1" if due == PROPER else "")
+    lacking = ": the -1 is missing" if due == PROPER and margin.form == LACKS_ONE else ""
+    law = "factors × load/allowable" if due == UTILISATION else "allowable/(factors × load)"
+    law += " - 1" if due == PROPER else ""
     advice = f"write ={mended}" if mended else f"write {law} inside the rounding"
     return Finding(
         margin.key[0],
         cell_name(*margin.key[1]),
         "margin-form",
         "error",
-        f"The cell is labelled a {name} and {_SAYS[margin.form]}{value}; {advice}.",
+        f"The cell is labelled a {name} and {_SAYS[margin.form]}{lacking}{value}; {advice}.",
         f"={formula}",
         f"={mended}" if mended else "",
         tuple(cell_name_of(key) for key in (*margin.allowables, *margin.applied)[:12]),
@@ -74,6 +79,10 @@ def _mended(formula: str, form: str, due: str) -> str:
         if form == INVERTED:
             return f"1/({inside})-1" if less else f"1/({formula}+1)-1"
         return f"1/({formula})-1" if form == UTILISATION else f"1/(1-({formula}))-1"
+    if due == UTILISATION:
+        if form == INVERTED:
+            return inside if less else f"{formula}+1"
+        return f"1/({inside if form == PROPER and less else formula}{'' if form == LACKS_ONE or less else '+1'})"
     if form == PROPER:
         return inside if less else f"{formula}+1"
     if form == UTILISATION:

@@ -28,6 +28,12 @@ _TERMS: tuple[tuple[str, str, str, str], ...] = (
     ("poisson's ratio", "ratio", r"poisson(?:'s|s|’s)?(?: ratio| number)?", r"ν|nu|n_u|μ|v_?xy|v"),
     ("margin of safety", "ratio", r"margins?(?: of safety)?|minimum margin|min\.? margin", r"M\.?S\.?|MoS"),
     ("reserve factor", "ratio", r"reserve factors?", r"R\.?F\.?"),
+    (
+        "utilisation",
+        "ratio",
+        r"utili[sz]ations?|utili[sz]ation (?:ratio|factor)|unity check|usage factor",
+        r"U\.?[FRC]\.?",
+    ),
 )
 _WORDS = {name: re.compile(rf"(?<![\w]){'(?:' + words + ')'}(?![\w])", re.IGNORECASE) for name, _, words, _ in _TERMS}
 _SYMBOLS = {

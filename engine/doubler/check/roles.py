@@ -21,7 +21,9 @@ from doubler.workbook.unit_text import read_unit_text
 
 Terms = Mapping[str, Mapping[str, Any]]
 
-ALLOWABLE, APPLIED, FACTOR, MARGIN, RESERVE = "allowable", "applied", "factor", "margin of safety", "reserve factor"
+ALLOWABLE, APPLIED, FACTOR, MARGIN, RESERVE, USED = (
+    "allowable", "applied", "factor", "margin of safety", "reserve factor", "utilisation",
+)  # fmt: skip
 
 
 @dataclass(frozen=True, slots=True)
@@ -31,7 +33,7 @@ class Role:
     Attributes
     ----------
     part
-        `ALLOWABLE`, `APPLIED`, `FACTOR`, `MARGIN` or `RESERVE`.
+        `ALLOWABLE`, `APPLIED`, `FACTOR`, `MARGIN`, `RESERVE` or `USED`.
     modes
         The modes of failure or loading that its words name: shear, bearing, tension …
     level
@@ -139,7 +141,7 @@ class Roles:
         texts = [" ".join(label.left), *stacked_headers(book, key), label.name.replace("_", " "), label.name]
         texts = [text for text in dict.fromkeys(texts) if text]
         named = quantity_at(book, key)
-        if named in (MARGIN, RESERVE):
+        if named in (MARGIN, RESERVE, USED):
             words = next((text for text in texts if self.names(text, named)), texts[0])
             modes, level = self.table.modifiers(words)
             return Role(named, modes, level, words)

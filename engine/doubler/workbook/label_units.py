@@ -15,6 +15,10 @@ _BRACKET = re.compile(r"([\[(])([^\[\]()]*(?:\([^()]*\)[^\[\]()]*)?)[\])]")
 _COMMA = re.compile(r",\s*(\S{1,20}(?:\s\S{1,8})?)\s*[:=]?\s*$")
 _SLASH = re.compile(r"^(?P<label>.*\S)\s*/\s*(?P<unit>\(?[^\s/].*)$")
 _TAIL = re.compile(r"^(?P<label>.*\S)\s+(?:in\s+)?(?P<unit>[^\s()\[\]]+)\s*[:=]?\s*$")
+_NOUN_FOLLOWS = re.compile(
+    r"\b(?:of|per|the|an?|for|at|on|to|and|each|round|square|flat|solid|hollow|hex|tie|tension|torsion|steel|cross)$",
+    re.IGNORECASE,
+)
 _SHEET_NOTE = re.compile(
     r"^(?:note\s*:?\s*)?(?:all\s+)?(?P<what>\w+(?:\s+and\s+\w+)?)\s+(?:are\s+)?(?:given\s+)?in\s+(?P<unit>[^\s,;.]+)"
     r"(?:\s+(?:unless|u\.?n\.?o).*)?\.?$",
@@ -71,6 +75,8 @@ def loose_unit(text: str) -> Unit | None:
         if match is None or len(text) > 60:
             continue
         read = read_unit_text(match["unit"])
+        if read.doubtful and _NOUN_FOLLOWS.search(match["label"]):
+            continue  # 'Section modulus of bar'
         if read.unit is None or match["unit"].casefold() in ("ratio", "strain", "-", "1", "–", "%"):
             continue
         agrees = role_agrees(read.unit, match["label"])
