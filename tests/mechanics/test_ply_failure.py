@@ -74,7 +74,9 @@ def test_no_stress_has_no_reserve_and_strengths_must_be_positive() -> None:
     with pytest.raises(InputError, match="compression_2 must be positive"):
         ply_failure.reserve("Hashin", 1.0, 0.0, 0.0, 1.0, 1.0, 1.0, -1.0, 1.0)
     with pytest.raises(InputError, match="no strain acts"):
-        ply_failure.reserve_strain(0.0, 0.0, 0.0, *STRENGTHS)
+        ply_failure.reserve_strain(0.0, 0.0, 0.0, 0.01, 0.008, 0.004, 0.012, 0.015)
+    with pytest.raises(InputError, match="compression_1 must be above 0 and at most"):
+        ply_failure.reserve_strain(-0.003, 0.0, 0.0, 0.01, 8.0, 0.004, 0.012, 0.015)
 
 
 def test_strains_each_have_their_own_limit() -> None:

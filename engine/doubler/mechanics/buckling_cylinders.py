@@ -97,9 +97,9 @@ def knock_down(loading: Loading, slenderness: Ratio) -> Ratio:
             ),
         ),
         condition(
-            "so long a cylinder may buckle as a column: its length must be at most 10 times its radius; see "
-            "BUCKLING_COLUMN for longer ones",
-            lambda length, radius: length <= 10.0 * radius * (1.0 + 1e-9),
+            "so long a cylinder may buckle as a column, and the tests behind the knock-down end at a length of 5 times "
+            "its radius; see BUCKLING_COLUMN for longer ones",
+            lambda length, radius: length <= 5.0 * radius * (1.0 + 1e-9),
         ),
         condition(
             "the elastic buckling stress lies above the proportional limit, where this formula is unsafe",

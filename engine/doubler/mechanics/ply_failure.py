@@ -8,7 +8,7 @@ import numpy as np
 
 from doubler.catalogue import worksheet_function
 from doubler.catalogue.annotations import Ratio, ShearStrain, Strain, Stress, Text
-from doubler.catalogue.limits import POSITIVE, between, condition
+from doubler.catalogue.limits import POSITIVE, Limit, between, condition
 from doubler.mechanics.ply_criteria import MODES, criterion_modes, index_of, max_stress, mode_factors
 
 Criterion = Literal["max stress", "Tsai-Hill", "Tsai-Wu", "Hashin"]
@@ -30,6 +30,16 @@ _STRESSED = condition(
 _STRAINED = condition(
     "there is no reserve where no strain acts",
     lambda strain_1, strain_2, shear_strain: (strain_1 != 0.0) | (strain_2 != 0.0) | (shear_strain != 0.0),
+)
+_STRAIN_LIMITS = dict.fromkeys(
+    _STRENGTHS,
+    Limit(
+        0.0,
+        0.5,
+        True,
+        False,
+        "must be above 0 and at most 0.5 (50 %); a bare number is a ratio: write its unit, such as %",
+    ),
 )
 _NOTHING = (np.zeros(1), np.zeros(1), np.zeros(1))
 
@@ -256,7 +266,7 @@ def mode(
     return named_modes(criterion, factors, mode_factors(max_stress(*strengths), _NOTHING, stress))
 
 
-@worksheet_function("PLY_RESERVE_STRAIN", valid=_STRENGTHS, conditions=(_STRAINED,))
+@worksheet_function("PLY_RESERVE_STRAIN", valid=_STRAIN_LIMITS, conditions=(_STRAINED,))
 def reserve_strain(
     strain_1: Strain,
     strain_2: Strain,
@@ -297,7 +307,8 @@ def reserve_strain(
 
     Notes
     -----
-    Each strain against its own limit; they do not act upon each other. The free thermal strain is no cause of failure:
+    Each strain against its own limit; they do not act upon each other. A limit above 50 % is refused: it would be a
+    number of ‰ or µε without its unit, and the reserve far too large. The free thermal strain is no cause of failure:
     take it off the total strains of PLY_STRAIN first.
 
     References
