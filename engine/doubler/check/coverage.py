@@ -12,13 +12,13 @@ from doubler.workbook.examined import Examined, Key, cell_name_of
 
 
 def not_recalculated(book: Examined) -> Iterator[Finding]:
-    """Name the formulas that could not be recalculated, once a root."""
-    found: dict[str, tuple[str, list[Key]]] = {}
+    """Name the formulas that could not be recalculated, once a reason on a sheet."""
+    found: dict[tuple[str, str], tuple[str, list[Key]]] = {}
     for key, _ in book.formulas() if book.values.not_evaluated else ():
         value = book.value(key)
         if isinstance(value, NotEvaluated):
-            found.setdefault(value.root, (value.reason, []))[1].append(key)
-    for root, (reason, keys) in found.items():
+            found.setdefault((value.root.rpartition("!")[0], value.reason), (value.root, []))[1].append(key)
+    for (_, reason), (root, keys) in found.items():
         if "circular" in reason:  # has a finding of its own
             continue
         first = next((key for key in keys if f"{key[0]}!{cell_name(*key[1])}" == root), keys[0])

@@ -88,7 +88,10 @@ def _never_stored(book: Examined, empty: list[Key]) -> Finding:
 
 def _same(stored: Any, value: Any, relative: float = RELATIVE) -> bool:
     if isinstance(stored, bool) or isinstance(value, bool):
-        return stored is value
+        # Some programs keep a logical as the number 1 or 0.
+        return isinstance(stored, bool | float) and isinstance(value, bool | float) and stored == value
+    if isinstance(stored, ErrorValue) and isinstance(value, ErrorValue):
+        return True  # programs differ in the kind of error; that there is one has a finding of its own
     if isinstance(stored, float) and isinstance(value, float):
         return math.isclose(stored, value, rel_tol=relative, abs_tol=1e-12)
     if stored in (None, "") and value in (None, ""):
@@ -164,7 +167,8 @@ def error_values(book: Examined) -> Iterator[Finding]:
         error = wrong[key]
         follows = sorted(book.downstream([key]) & set(wrong))
         on_purpose = error is ErrorValue.NA and _asks_for_na(book.tree(key))
-        reason = book.values.reason(*key) if book.graph.group_at(*key) else None
+        lost = isinstance(book.value(key), NotEvaluated)
+        reason = book.values.reason(*key) if book.graph.group_at(*key) and not lost else None
         why = f": {reason.removeprefix(f'{error}: ').rstrip('.')}" if reason else ""
         yield Finding(
             key[0],

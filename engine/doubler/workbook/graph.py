@@ -6,6 +6,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass, field
 from typing import Any
 
+from doubler.workbook.cell_facts import asks_of_cells, with_facts
 from doubler.workbook.coerce import CannotEvaluateError
 from doubler.workbook.geometry import Geometry, Place, Run
 from doubler.workbook.model import Address, Area, Cell, Sheet, Workbook
@@ -155,7 +156,7 @@ class _Builder:
         self.resolver = Resolver(workbook)
         self.programs: dict[tuple[int, bool], Program | str] = {}
         self.kept: list[Node] = []
-        self.subtotals: dict[int, bool] = {}
+        self.by_cell: dict[int, bool] = {}
         self.ranges: SubtotalRanges | None = None
 
     def groups(self) -> list[Group]:
@@ -212,7 +213,7 @@ class _Builder:
         return group
 
     def _grouped(self, run: Run, sheet: Sheet, tree: Node) -> list[Group]:
-        if self._holds_subtotal(tree):
+        if self._by_cell(tree):
             return [part for part in _split(Group(run, tree)) if self._compile(part, sheet, array=False)]
         if run.count > 1 and not self.resolver.is_plain(tree) and not self._alike(run, sheet, tree):
             return [part for part in _split(Group(run, tree)) if self._compile(part, sheet, array=False)]
@@ -222,10 +223,11 @@ class _Builder:
             return _split(group)
         return [group]
 
-    def _holds_subtotal(self, tree: Node) -> bool:
-        known = self.subtotals.get(id(tree))
+    def _by_cell(self, tree: Node) -> bool:
+        """Whether a formula means another thing in each of its copies."""
+        known = self.by_cell.get(id(tree))
         if known is None:
-            known = self.subtotals[id(tree)] = holds_subtotal(tree)
+            known = self.by_cell[id(tree)] = holds_subtotal(tree) or asks_of_cells(tree)
         return known
 
     def _alike(self, run: Run, sheet: Sheet, tree: Node) -> bool:
@@ -243,9 +245,9 @@ class _Builder:
             if not self.resolver.is_plain(tree):
                 tree = self.resolver.resolve(tree, sheet, group.run.cell(0))
                 self.kept.append(tree)
-            if self._holds_subtotal(group.tree):
+            if self._by_cell(group.tree):
                 self.ranges = self.ranges or SubtotalRanges(self.workbook, self.geometry)
-                tree = self.ranges.cut(tree, group.run)
+                tree = with_facts(self.ranges.cut(tree, group.run), group.run, self.workbook, self.geometry)
                 self.kept.append(tree)
         except CannotEvaluateError as error:
             group.reason = str(error)

@@ -87,16 +87,20 @@ class SubtotalRanges:
         first = 1 if name == "SUBTOTAL" else 2
         if not any(self._concerned(node, run) for node in arguments[first:]):
             return arguments
-        passed = _passed(name, arguments)
+        hidden = any(self._holds_hidden(place) for node in arguments[first:] for place in self._places(node, run))
+        passed = _passed(name, arguments, hidden)
         return (*arguments[:first], *(self._argument(name, arguments, node, passed, run) for node in arguments[first:]))
 
     def _concerned(self, node: Node, run: Run) -> bool:
         """Say whether a range holds a subtotal or a hidden row at all."""
         return any(
-            any(address in area for address in self.cells[sheet])
-            or any(area.first_row <= row <= area.last_row for row in self.workbook.sheets[sheet].hidden_rows)
-            for sheet, area in self._places(node, run)
+            any(address in place[1] for address in self.cells[place[0]]) or self._holds_hidden(place)
+            for place in self._places(node, run)
         )
+
+    def _holds_hidden(self, place: Place) -> bool:
+        index, area = place
+        return any(area.first_row <= row <= area.last_row for row in self.workbook.sheets[index].hidden_rows)
 
     def _places(self, node: Node, run: Run) -> list[Place]:
         if not isinstance(node, CellRef | RangeRef | Binary):
@@ -144,7 +148,9 @@ class SubtotalRanges:
         return rows, set(cells)
 
 
-def _passed(name: str, arguments: tuple[Node, ...]) -> _Passed:
+def _passed(name: str, arguments: tuple[Node, ...], hidden: bool) -> _Passed:
+    if name == "SUBTOTAL" and not hidden:
+        return _Passed(subtotals=True, hidden=False, filtered=False)  # whichever statistic its number chooses
     number = arguments[0 if name == "SUBTOTAL" else 1] if len(arguments) > 1 else None
     value = 0.0 if name == "AGGREGATE" and isinstance(number, Omitted) else getattr(number, "value", None)
     if not isinstance(value, float):

@@ -162,6 +162,10 @@ class _Tracer:
             judgement = self._lost(key, lost.reason, declared, tree, lost.cells)
         except RecursionError:
             judgement = self._lost(key, "its formula, or the chain behind it, is nested too deeply", declared, tree)
+        except Exception as error:
+            # One bad formula never stops the rest; what went wrong is said, not hidden.
+            reason = group.reason or f"the trace failed: {type(error).__name__}: {error}"
+            judgement = self._lost(key, reason, declared, tree)
         judgement.met = frozenset(units.met)
         judgement.constraints = tuple(constraints)
         judgement.host, judgement.tree = key, tree

@@ -23,6 +23,8 @@ def criterion(value: Any) -> Callable[[Any], bool]:
     """Return the test that a criterion stands for: ``">=3"``, ``"ab*"``, ``5``, ``"<>"`` and the like."""
     if not isinstance(value, str):
         wanted = 0.0 if value is None else value
+        if type(wanted) is float:
+            return lambda cell: _is_number(cell, wanted)
         return lambda cell: type(cell) is type(wanted) and cell == wanted
     match = _CRITERION.match(value)
     assert match is not None
@@ -34,6 +36,8 @@ def criterion(value: Any) -> Callable[[Any], bool]:
         return (lambda cell: cell is None) if operator == "=" else lambda cell: cell is not None
     if operator in {"=", "<>"}:
         equal = _equality(operand, number)
+        if operator == "<>" and type(number) is float:
+            return lambda cell: cell != number or type(cell) is not float  # text that spells it is another thing here
         return equal if operator == "=" else lambda cell: not equal(cell)
     holds: dict[str, Callable[[int], bool]] = {
         "<": lambda order: order < 0,
@@ -67,7 +71,25 @@ def _operand(text: str) -> Any:
     return text if isinstance(number, ErrorValue) else number
 
 
+def _spelt(cell: Any) -> float | None:
+    """Return the number that a text spells; None for anything else."""
+    if not isinstance(cell, str):
+        return None
+    try:
+        number = number_from_text(cell)
+    except CannotEvaluateError:
+        return None
+    return number if isinstance(number, float) else None
+
+
+def _is_number(cell: Any, wanted: float) -> bool:
+    """Whether a cell holds a number, or is text that spells it: to a criterion of equality both are one."""
+    return (type(cell) is float and cell == wanted) or _spelt(cell) == wanted
+
+
 def _equality(text: str, wanted: Any) -> Callable[[Any], bool]:
+    if type(wanted) is float:
+        return lambda cell: _is_number(cell, wanted)
     if not isinstance(wanted, str):
         folded = fold(text)
         return lambda cell: (
@@ -88,7 +110,12 @@ def _mask(area: Grid, wanted: Any) -> Any:
     if isinstance(wanted, np.ndarray | Mixed):
         if isinstance(wanted, np.ndarray) and wanted.dtype == F8:
             mixed = as_mixed(data)
-            return (mixed.numbers == wanted) & (mixed.slot < 0)
+            held = (mixed.numbers == wanted) & (mixed.slot < 0)
+            for code, item in enumerate(mixed.items):
+                number = _spelt(item)
+                if number is not None:
+                    held = held | ((mixed.slot == code) & (wanted == number))
+            return held
         from doubler.workbook.lanes import scalars
 
         shape = np.broadcast_shapes(data.shape, wanted.shape)
