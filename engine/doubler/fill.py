@@ -97,6 +97,8 @@ def fill(
     InputError
         The template, the table or the folder will not do; then nothing has been written.
     """
+    if not str(out).strip():
+        raise InputError("the name of the folder for the results is empty; give a folder, such as --out filled")
     folder = Path(out)
     opened = open_template(template)
     table = open_cases(cases)

@@ -227,3 +227,17 @@ def test_a_reader_that_leaves_is_no_fault(tmp_path: Path) -> None:
     done = subprocess.run(["bash", "-c", f"set -o pipefail; {command}"], capture_output=True, text=True, check=False)
     assert "Traceback" not in done.stderr
     assert done.returncode == 0
+
+
+@pytest.mark.skipif(not hasattr(os, "mkfifo"), reason="there are no named pipes here")
+def test_a_pipe_is_no_workbook_to_wait_for(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    os.mkfifo(tmp_path / "pipe.xlsx")
+    assert main(["check", str(tmp_path / "pipe.xlsx")]) == 2
+    assert "is a pipe or a device" in capsys.readouterr().err
+
+
+def test_an_empty_folder_name_is_no_folder(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    template = strap_template(tmp_path / "strap.xlsx")
+    cases = cases_csv(tmp_path / "cases.csv", GOOD)
+    assert main(["fill", str(template), str(cases), "--out", ""]) == 2
+    assert "give a folder" in capsys.readouterr().err

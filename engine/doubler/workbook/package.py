@@ -275,6 +275,8 @@ def _read_file(path: Path) -> bytes:
     try:
         if path.is_dir():
             raise InputError(f"{path} is a folder; give a workbook file (.xlsx or .xlsm)")
+        if path.exists() and not path.is_file():
+            raise InputError(f"{path} is a pipe or a device; give a workbook file (.xlsx or .xlsm)")
         if (size := path.stat().st_size) > MAX_FILE:
             raise InputError(f"{path} is {size // 1024**2} MiB large; the limit is {MAX_FILE // 1024**2} MiB")
         return path.read_bytes()

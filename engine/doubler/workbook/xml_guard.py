@@ -172,7 +172,7 @@ def _decode_head(head: bytes) -> str:
 
 def _malformed(where: str, error: Exception) -> InputError:
     return InputError(
-        f"{where} is not well-formed XML ({error}); the workbook is damaged, save it again in a spreadsheet program"
+        f"{where} is not well-formed XML ({str(error).removesuffix('.').partition(' (<string>')[0]}); the workbook is damaged, save it again in a spreadsheet program"
     )
 
 
