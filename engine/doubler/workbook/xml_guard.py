@@ -171,8 +171,9 @@ def _decode_head(head: bytes) -> str:
 
 
 def _malformed(where: str, error: Exception) -> InputError:
+    what = str(error).removesuffix(".").partition(" (<string>")[0]
     return InputError(
-        f"{where} is not well-formed XML ({str(error).removesuffix('.').partition(' (<string>')[0]}); the workbook is damaged, save it again in a spreadsheet program"
+        f"{where} is not well-formed XML ({what}); the workbook is damaged, save it again in a spreadsheet program"
     )
 
 
