@@ -94,13 +94,12 @@ def constant(value):
 
 
 def as_text(call):
-    """The call as typed on the command line, where every cell is empty; empty cells inside arrays cannot be typed."""
+    """The call as typed on the command line; None where it has an empty cell that an argument left out is not."""
+    declared = catalogue.lookup(call.function).arguments
     parts = []
-    for block in call.arguments:
-        if block is None:
+    for index, block in enumerate(call.arguments):
+        if block is None or (block == [[None]] and not declared[index].optional):
             parts.append("")
-        elif block == [[None]]:
-            parts.append("Z9")
         elif any(value is None for row in block for value in row):
             return None
         elif len(block) == 1 and len(block[0]) == 1:
