@@ -171,3 +171,17 @@ def test_elsewhere_than_on_windows_excel_is_refused_with_the_way_out(tmp_path, m
     report = excel_commands.run("status", tmp_path)
     assert not report.right
     assert all(finding.cure for finding in report.findings if not finding.right)
+
+
+def test_a_vba_module_of_another_catalogue_is_named_with_its_cure(tmp_path, vba):
+    path = excel_commands.module_path(tmp_path)
+
+    def module():
+        return next(f for f in excel_commands.run("status", tmp_path).findings if f.what == "VBA module")
+
+    assert "doubler host excel install" in module().cure
+    path.write_text(vba, encoding="ascii")
+    assert module().right
+    path.write_text(vba.replace("Function STRESS_AXIAL(", "Function STRESS_OTHER("), encoding="ascii")
+    assert not module().right
+    assert "STRESS_AXIAL" in module().found

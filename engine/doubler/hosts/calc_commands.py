@@ -2,10 +2,8 @@
 
 from __future__ import annotations
 
-import json
 import tempfile
 from collections.abc import Sequence
-from dataclasses import asdict, dataclass
 from pathlib import Path
 from typing import Any
 
@@ -14,30 +12,8 @@ from doubler.errors import ErrorValue, InputError
 from doubler.hosts import calc_profile, conformance
 from doubler.hosts.calc_basic import PLAIN_NAMES_FROM, install_basic, remove_basic
 from doubler.hosts.calc_client import error_text
-from doubler.hosts.calc_extension import IDENTIFIER, host_functions, settings, write_extension
-
-
-@dataclass(frozen=True, slots=True)
-class Finding:
-    """One thing that was looked at: what, whether it is as it should be, what was found, and the cure."""
-
-    what: str
-    right: bool
-    found: str
-    cure: str = ""
-
-
-@dataclass(frozen=True, slots=True)
-class Report:
-    """What a command did or found: lines to print, findings, and whether all is right."""
-
-    lines: tuple[str, ...]
-    findings: tuple[Finding, ...] = ()
-    right: bool = True
-
-    def as_object(self) -> dict[str, Any]:
-        """Return it for ``--json``."""
-        return {"right": self.right, "lines": list(self.lines), "findings": [asdict(f) for f in self.findings]}
+from doubler.hosts.calc_extension import IDENTIFIER, host_functions, write_extension
+from doubler.hosts.calc_status import Finding, Report, status
 
 
 def run(action: str, profile: Path | None) -> Report:
@@ -108,86 +84,6 @@ def remove(profile: Path) -> Report:
     return Report(
         (f"removed from the profile {profile}: {', '.join(before) or 'no extension'}, {len(modules)} modules",)
     )
-
-
-def installed_settings(profile: Path) -> list[dict[str, Any]]:
-    """Return the settings of the extensions of ours that a profile has installed.
-
-    The folder of a removed extension stays until LibreOffice starts the next time; the list beside it tells which hold.
-    """
-    cache = profile / "user" / "uno_packages" / "cache"
-    listed = cache / "uno_packages.pmap"
-    known = listed.read_bytes() if listed.is_file() else b""
-    paths = sorted((cache / "uno_packages").glob("*/*/doubler_settings.json"))
-    return [
-        json.loads(path.read_text("utf-8"))
-        for path in paths
-        if path.parent.parent.name.removesuffix("_").encode() in known
-    ]
-
-
-def status(profile: Path) -> Report:
-    """Name versions, and everything that keeps the functions from working, each with its cure."""
-    found: list[Finding] = []
-    try:
-        program = calc_profile.program()
-    except InputError as error:
-        found.append(Finding("LibreOffice", False, "not found", str(error)))
-        return _status(found)
-    version = calc_profile.version(program)
-    told = ".".join(map(str, version)) or "unknown"
-    found.append(Finding("LibreOffice", bool(version), f"{told} at {program}", "" if version else "repair it"))
-    found.append(
-        Finding(
-            "Python in LibreOffice",
-            calc_profile.has_python_support(program),
-            "pythonloader looked for",
-            "install LibreOffice's Python part (Debian: apt install python3-uno)",
-        )
-    )
-    python = calc_profile.uno_python(program)
-    found.append(
-        Finding(
-            "Python with uno",
-            python is not None,
-            str(python or "none"),
-            "install it (Debian: apt install python3-uno); install and test need it",
-        )
-    )
-    installed = installed_settings(profile)
-    again = "doubler host calc install"
-    found.append(
-        Finding("extension", len(installed) == 1, f"{len(installed)} in the profile {profile}", f"run: {again}")
-    )
-    for own in installed:
-        found += _settings_findings(own, again)
-    if version and version[:2] < PLAIN_NAMES_FROM:
-        modules = list((profile / "user" / "basic" / "Standard").glob("doubler_cells_*.xba"))
-        found.append(Finding("plain names in .xlsx", bool(modules), f"{len(modules)} Basic modules", f"run: {again}"))
-    return _status(found)
-
-
-def _settings_findings(own: dict[str, Any], again: str) -> list[Finding]:
-    now = settings()
-    interpreter = Path(own["command"][0])
-    same = (own["version"], own["digest"]) == (now["version"], now["digest"])
-    return [
-        Finding("worker", interpreter.is_file(), str(interpreter), f"that Python is gone; run: {again}"),
-        Finding(
-            "versions",
-            same,
-            f"installed by doubler {own['version']} ({own['digest']}), now {now['version']} ({now['digest']})",
-            f"run: {again}",
-        ),
-    ]
-
-
-def _status(found: Sequence[Finding]) -> Report:
-    lines = [
-        f"{'ok ' if f.right else 'BAD'} {f.what}: {f.found}" + ("" if f.right or not f.cure else f" -> {f.cure}")
-        for f in found
-    ]
-    return Report(tuple(lines), tuple(found), all(f.right for f in found))
 
 
 def test(profile: Path) -> Report:

@@ -8,10 +8,11 @@ import importlib.util
 import os
 import sys
 from pathlib import Path
+from typing import Any
 
 from doubler import __version__
 from doubler.errors import InputError
-from doubler.hosts.calc_commands import Finding, Report
+from doubler.hosts.calc_status import Finding, Report, report
 from doubler.workbook.output import write_file
 
 
@@ -78,6 +79,7 @@ def remove(folder: Path) -> Report:
 def status(folder: Path) -> Report:
     """Name versions and what keeps the functions from working, each with its cure."""
     found = [
+        Finding("doubler", True, __version__),
         Finding(
             "system",
             sys.platform == "win32",
@@ -86,16 +88,11 @@ def status(folder: Path) -> Report:
         ),
         _package("xlwings", "pip install doubler[excel]"),
         _package("pywin32", "pip install pywin32 (it comes with xlwings on Windows)"),
-        Finding("VBA module", module_path(folder).is_file(), str(module_path(folder)), "doubler host excel install"),
-        Finding("doubler", True, __version__),
+        _module(module_path(folder)),
     ]
     if sys.platform == "win32":
-        found.append(_excel())
-    lines = [
-        f"{'ok ' if f.right else 'BAD'} {f.what}: {f.found}" + ("" if f.right or not f.cure else f" -> {f.cure}")
-        for f in found
-    ]
-    return Report(tuple(lines), tuple(found), all(f.right for f in found))
+        found += _excel()
+    return report(found)
 
 
 def _package(name: str, cure: str) -> Finding:
@@ -105,16 +102,64 @@ def _package(name: str, cure: str) -> Finding:
         return Finding(name, False, "not installed", cure)
 
 
-def _excel() -> Finding:
-    """Look whether Excel is registered as a program that can be driven; one from the Store is not, in some versions."""
+def _module(path: Path) -> Finding:
+    """Look whether the VBA module is there and holds every function of the catalogue as it is now."""
+    again = "doubler host excel install, then import the module into the add-in again (docs/hosts.md)"
+    if not path.is_file():
+        return Finding("VBA module", False, f"{path} is not there", again)
+    from doubler.hosts.excel_names import vba_functions
+
+    there = vba_functions(path.read_text(encoding="ascii", errors="replace"))
+    from doubler.hosts.excel_functions import excel_functions
+
+    due = {host.name: len(host.arguments) for host in excel_functions()}
+    if there == due:
+        return Finding("VBA module", True, f"{path}, {len(due)} functions")
+    changed = sorted(name for name in there.keys() | due.keys() if there.get(name) != due.get(name))
+    shown = ", ".join(changed[:5]) + (", …" if len(changed) > 5 else "")
+    return Finding("VBA module", False, f"{path} is of another catalogue: {shown}", again)
+
+
+def _excel() -> list[Finding]:
+    """Look in the registry for Excel and its macro security. Not tried on a real Windows."""
     winreg = importlib.import_module("winreg")
-    try:
-        winreg.CloseKey(winreg.OpenKey(winreg.HKEY_CLASSES_ROOT, "Excel.Application"))
-    except OSError:
-        return Finding(
-            "Excel", False, "not registered", "install desktop Excel from Microsoft 365, not the Store's or the web's"
+
+    def read(root: Any, path: str, name: str) -> Any:
+        try:
+            with winreg.OpenKey(root, path) as key:
+                return winreg.QueryValueEx(key, name)[0]
+        except OSError:
+            return None
+
+    number = read(winreg.HKEY_CLASSES_ROOT, r"Excel.Application\CurVer", "")
+    if not number:
+        cure = (
+            "install desktop Excel from Microsoft 365 or a disc; Excel on the web and on phones has no such functions"
         )
-    return Finding("Excel", True, "registered")
+        return [Finding("Excel", False, "not registered as a program that can be driven", cure)]
+    found = [Finding("Excel", True, str(number))]
+    where = read(winreg.HKEY_LOCAL_MACHINE, r"SOFTWARE\Microsoft\Windows\CurrentVersion\App Paths\excel.exe", "")
+    if where and "WindowsApps" in str(where):
+        cure = "remove the Store's Office and install it from account.microsoft.com"
+        found.append(
+            Finding("Excel's package", False, f"from the Store ({where}), which COM programs cannot drive", cure)
+        )
+    release = str(number).rpartition(".")[2] + ".0"
+    security = rf"Software\Microsoft\Office\{release}\Excel\Security"
+    macros = read(winreg.HKEY_CURRENT_USER, security, "VBAWarnings")
+    settings = "File > Options > Trust Center > Trust Center Settings > Macro Settings"
+    if macros == 4:
+        found.append(Finding("macro security", False, "all macros are switched off", f"allow them under {settings}"))
+    trusted = read(winreg.HKEY_CURRENT_USER, security, "AccessVBOM")
+    found.append(
+        Finding(
+            "access to the VBA project",
+            trusted == 1,
+            "trusted" if trusted == 1 else "not trusted: the module cannot be imported by a program",
+            f"tick 'Trust access to the VBA project object model' under {settings}",
+        )
+    )
+    return found
 
 
 def test(folder: Path) -> Report:

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 from doubler.hosts.calc_extension import HostFunction
 
 _WORDS = """
@@ -32,3 +34,9 @@ def vba_names(host: HostFunction) -> list[str]:
         used.add(name.casefold())
         found.append(name)
     return found
+
+
+def vba_functions(text: str) -> dict[str, int]:
+    """Return the worksheet functions of a VBA module, and how many arguments each takes."""
+    heads = re.findall(r"(?m)^Function (\w+)\((.*?)\)", text)
+    return {name: len(arguments.split(",")) if arguments.strip() else 0 for name, arguments in heads}
