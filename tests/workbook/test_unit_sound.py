@@ -162,7 +162,7 @@ def test_one_wrong_label_is_one_finding(name, place, text, where, kind) -> None:
 
 ONE_FORMULA = [
     ("lug", "C15", "=C13/C14", "unit-scale"),
-    ("lug", "C16", "=2*C5*(C6-C4/2*COS(40))", None),
+    ("lug", "C16", "=2*C5*(C6-C4/2*COS(40))", "angle-unit"),
     ("lug", "C20", "=MIN(C17:C19)", "unit-clash"),
     ("beam", "B9", "=B8/B5", "unit-scale"),
     ("beam", "B8", "=B3*B2/8+B4*B2/4", "unit-clash"),

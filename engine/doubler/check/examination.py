@@ -11,6 +11,7 @@ from typing import TYPE_CHECKING, Any
 from doubler.check import coverage, elastic, margins, shear_form, strength, structure, units, values
 from doubler.check.finding import SEVERITIES, Finding, rank
 from doubler.check.folding import folded
+from doubler.check.pairs import odd_pairs
 from doubler.check.policy import Policy, policy_for
 from doubler.check.policy_rules import margins_too_small, units_not_allowed
 from doubler.check.round_sections import round_findings
@@ -31,6 +32,7 @@ RULES: tuple[Rule, ...] = (
     values.text_numbers,
     values.blank_inputs,
     structure.filled_lines,
+    odd_pairs,
     short_ranges,
     structure.circles,
     structure.external_links,

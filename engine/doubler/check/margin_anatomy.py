@@ -8,18 +8,21 @@ as one in a single cell.
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable
+from collections.abc import Hashable, Iterable
 from dataclasses import dataclass, field
 
 from doubler.check.fills import walk
 from doubler.check.roles import ALLOWABLE, APPLIED, FACTOR, MARGIN, RESERVE, USED, Role, Roles
 from doubler.check.trials import Trials
 from doubler.workbook.examined import Examined, Key
+from doubler.workbook.graph import Group
 from doubler.workbook.syntax import Number
 
 DEEPEST = 8
 WIDEST_READ = 64
 LONGEST_LINE = 4096
+MOST_APART = 256
+"""Copies of one margin that are looked at one by one; in longer fills the first speaks for all."""
 _CLOSE = 0.02
 
 PROPER, LACKS_ONE, INVERTED, UTILISATION, COMPLEMENT, UNKNOWN = (
@@ -128,10 +131,35 @@ class Margins:
             direct = self._read_by(key)
             if direct is None or any(self._is_margin(read) for read in direct):
                 continue
-            found = self._frontier(key)
-            if found is not None:
-                lanes = range(1, min(group.run.count, LONGEST_LINE))
-                yield Anatomy(key, role, value, *found, tuple((key[0], group.run.cell(lane)) for lane in lanes))
+            for lanes in self._like_lanes(group, key[0]):
+                own = (key[0], group.run.cell(lanes[0]))
+                number, found = book.number(own), self._frontier(own)
+                its = self.roles.at(own)
+                if found is None or number is None or its is None:
+                    continue
+                line = tuple((key[0], group.run.cell(lane)) for lane in lanes[1:LONGEST_LINE])
+                yield Anatomy(own, its, number, *found, line)
+
+    def _like_lanes(self, group: Group, sheet: str) -> list[list[int]]:
+        """Part the copies of a formula by what stands behind the cells that they read: each part is one margin."""
+        count = group.run.count
+        if count == 1:
+            return [[0]]
+        if count > MOST_APART:
+            return [list(range(min(count, LONGEST_LINE)))]
+        parts: dict[Hashable, list[int]] = {}
+        for lane in range(count):
+            parts.setdefault(self._behind((sheet, group.run.cell(lane)), 3), []).append(lane)
+        return list(parts.values())
+
+    def _behind(self, key: Key, depth: int) -> Hashable:
+        """Return what tells the chain behind a cell, so far as it is near: the formulas that it and its inputs are."""
+        found: list[Hashable] = []
+        for read in self._read_by(key) or ():
+            at = self.book.graph.group_at(*read)
+            tree = None if at is None else self.book.graph.groups[at[0]].tree
+            found.append(None if tree is None else (tree, self._behind(read, depth - 1) if depth > 1 else None))
+        return tuple(found)
 
     def _is_margin(self, key: Key) -> bool:
         role = self.roles.at(key)

@@ -70,6 +70,7 @@ class Table:
         for section, entries in (more or {}).items():
             for name, texts in entries.items():
                 own[section][name] = [*own[section].get(name, ()), *texts]
+        self.strain = kind("strain").dimension
         self.parts: dict[str, tuple[re.Pattern[str], re.Pattern[str], frozenset[Any]]] = {}
         for part in (FACTOR, ALLOWABLE, APPLIED):
             entry = own[part]
@@ -98,11 +99,14 @@ class Table:
         for part, (by_words, symbols, dimensions) in self.parts.items():
             if dimension not in dimensions:
                 continue
+            if dimension == self.strain and part != FACTOR and not _STRAIN.search(words):
+                continue  # an allowed ratio or damage is no allowable strain
             if by_words.search(words) or symbols.search(words):
                 return part
         return None
 
 
+_STRAIN = re.compile(r"\bstrains?\b|[εµμ]", re.IGNORECASE)
 _OTHER = re.compile(r"\b(?:modulus|concentration|intensity factor|range|amplitude|mean stress)\b", re.IGNORECASE)
 
 

@@ -12,7 +12,8 @@ from doubler.workbook.addresses import cell_name
 from doubler.workbook.evaluate import NotEvaluated
 from doubler.workbook.examined import Examined, Key, cell_name_of, shown
 from doubler.workbook.model import Address, Sheet
-from doubler.workbook.syntax import ExternalRef
+from doubler.workbook.roles import is_total
+from doubler.workbook.syntax import Call, ExternalRef
 
 _REMARK = re.compile(
     r"\b(?:override|overridden|over-?ridden|measured|test(?:ed)?|per (?:drawing|report|test)|manual(?:ly)?|by "
@@ -48,6 +49,8 @@ def _judge(book: Examined, fills: Fills, gap: Gap, address: Address) -> Finding 
             due = 1 if line > 2 else 2
             sure = fills.same_kind_of_row(gap, due) and not (not gap.before and fills.reads_back(gap))
         return _pasted(book, fills, gap, address) if sure else None
+    if _sums_up(book, fills, gap, address):
+        return None
     if not gap.inside:
         due = 0 if line > 2 else 2
         if not gap.before or not _anchor_differs(fills, gap, address) or not fills.same_kind_of_row(gap, due):
@@ -65,6 +68,14 @@ def _stands_out(fills: Fills, gap: Gap, address: Address) -> bool:
     row, column = address
     sides = ((row, column - 1), (row, column + 1)) if gap.down else ((row - 1, column), (row + 1, column))
     return not any(trees.get(side) is trees[address] for side in sides)
+
+
+def _sums_up(book: Examined, fills: Fills, gap: Gap, address: Address) -> bool:
+    """Return whether a cell is a subtotal among the lines that it parts: its label says so, or its row holds sums."""
+    tree = fills.trees[gap.sheet][address]
+    if not (isinstance(tree, Call) and tree.name in ("SUM", "SUBTOTAL", "MAX", "MIN", "AVERAGE")):
+        return False
+    return is_total(book.label((gap.sheet, address)).text)
 
 
 def _anchor_differs(fills: Fills, gap: Gap, address: Address) -> bool:

@@ -27,7 +27,7 @@ from doubler.workbook.label_units import bracket_unit, is_bare_name, loose_unit,
 from doubler.workbook.labels import Label, Labels, Layout
 from doubler.workbook.model import Address, Workbook
 from doubler.workbook.pounds import pounds_force
-from doubler.workbook.roles import is_difference, is_pure_number, is_total
+from doubler.workbook.roles import is_difference, is_pure_number, is_pure_row, is_total
 from doubler.workbook.unit_cells import UnitCells
 from doubler.workbook.unit_text import (
     conversion_unit,
@@ -349,12 +349,13 @@ class Declarations:
         head = layout.header_row(address)
         if head is None:
             return None, None, None
-        if layout.apart(head, address[0]):
-            left = layout.left_texts(address)
-            if left and layout.touches_left(address, left[0]):
-                total = is_total(layout.texts[left[-1]]) and reads_own_column(layout.cells.get(address), address[1])
-                if not total:
-                    return None, None, None  # a block of its own below the table
+        left = layout.left_texts(address)
+        if left and is_pure_row(layout.texts[left[-1]]) and layout.touches_left(address, left[0]):
+            return None, None, None
+        if layout.apart(head, address[0]) and left and layout.touches_left(address, left[0]):
+            total = is_total(layout.texts[left[-1]]) and reads_own_column(layout.cells.get(address), address[1])
+            if not total:
+                return None, None, None  # a block of its own below the table
         key = (sheet, head, address[1])
         known = self._heads.get(key)
         if known is None:

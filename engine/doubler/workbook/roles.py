@@ -48,6 +48,7 @@ _NOT_PURE = re.compile(
 )
 _MARGIN = re.compile(
     r"\bmargins?\b(?: of safety)?|\breserve factor\b|\bsafety factor\b|\bfactor of safety\b|\butili[sz]ation\b|"
+    r"\b(?:load|impact|dynamic|gust|amplification|magnification) (?:factor|coefficient)\b|"
     r"^\s*(?:MS|M\.S\.|RF|R\.F\.|MoS|FoS)(?:[_ ]\w+)?\s*[:=]?\s*$|[,(\s](?:MS|RF)\s*\)?\s*[:=]?\s*$",
     re.IGNORECASE,
 )
@@ -85,6 +86,20 @@ def is_pure_number(label: str) -> bool:
 def is_margin(label: str) -> bool:
     """Return whether a label names a margin of safety, a reserve factor or a utilisation: surely a pure number."""
     return bool(_MARGIN.search(label))
+
+
+_PURE_ROW = re.compile(
+    r"^\s*(?:\d[\d.]*\s+)?(?:(?:utili[sz]ation|usage|stress|load|demand/capacity|interaction|strength)?\s*ratio|"
+    r"utili[sz]ation|usage|reserve factor|margin(?: of safety)?|unity check|R\.?F\.?|M\.?S\.?|U\.?[FRC]\.?|D/C)"
+    r"\s*[:=]?\s*$",
+    re.IGNORECASE,
+)
+
+
+@lru_cache(maxsize=65536)
+def is_pure_row(label: str) -> bool:
+    """Return whether a row's whole label names a ratio, so that a unit over its columns is not meant for it."""
+    return bool(_PURE_ROW.match(label))
 
 
 @lru_cache(maxsize=65536)

@@ -50,6 +50,8 @@ class UnitCells:
         text = self._layout.unit_text(at)
         read = read_unit_text(text)
         column = self._column(at[1])
+        if text == "M" and self._layout.capitals and column.firm > max(column.other, 1):
+            return read_unit_text("m")  # among units in capitals
         if read.unit is None:
             if read.complaint:
                 return read

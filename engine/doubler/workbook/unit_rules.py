@@ -102,6 +102,11 @@ def _settle_ratio(walk: Walk, node: Carried) -> None:
     note_constraint(node, NONE, (Reading(1.0),), walk.constraints, "")
 
 
+def _plainly_degrees(number: float) -> bool:
+    """Return whether a number typed as an angle is one of degrees: whole, and more than a turn in radians."""
+    return abs(number) > 2 * math.pi and number % 7.5 in (0.0, 2.5, 5.0) and abs(number) <= 360
+
+
 def angle_in(walk: Walk, call: Call) -> Carried:
     """The argument is an angle in radians, and the result a pure number."""
     node = walk.one(call.arguments[0])
@@ -114,6 +119,9 @@ def angle_in(walk: Walk, call: Call) -> Carried:
             scale = node.readings[0].scale
             given = "degrees" if math.isclose(scale, DEGREE, rel_tol=1e-6) else describe(node)
             raise UnitFault("angle-unit", f"{call.name} takes radians and gets {given}", node, None, 1 / scale)
+    if node.state is State.LITERAL and node.value is not None and _plainly_degrees(node.value):
+        given = f"the number {node.value:g}, which is an angle in degrees"
+        raise UnitFault("angle-unit", f"{call.name} takes radians and gets {given}", node, None, 1 / DEGREE)
     _settle_ratio(walk, node)
     return replace(RATIO, sources=independent(node.sources), factors=())
 
