@@ -96,6 +96,8 @@ def _same(stored: Any, value: Any, relative: float = RELATIVE) -> bool:
         return math.isclose(stored, value, rel_tol=relative, abs_tol=1e-12)
     if stored in (None, "") and value in (None, ""):
         return True
+    if isinstance(stored, str) and isinstance(value, float):
+        return stored == f"{value:.15g}"  # some programs keep a number as the text that spells it
     if value is None and stored == 0.0:
         return True
     return bool(stored == value)
