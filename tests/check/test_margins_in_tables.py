@@ -99,6 +99,21 @@ SECOND MOMENT|23130 {i}|CM4
 YOUNG'S MODULUS|210000 {e}|MPA
 DEFLECTION|={w}*1000*({l}*1000)^3/(48*{e}*{i}*10000) {d}|MM
 """,
+    "key": """!sheet Key
+Shear stress in key, MPa|36 {tau}
+Surface pressure, MPa|91 {p}
+Allowable pressure, MPa|110 {pa}
+Allowable shear, MPa|60 {ta}
+Reserve on pressure, RF|={pa}/{p}
+Reserve on shear, RF|={ta}/{tau} {rf}
+""",
+    "stringer": """!sheet Section
+Element|b|h|A|y|A·y
+|in|in|in2|in|in3
+Flange|1.2|0.08|=B3*C3|0.04|=D3*E3
+Web|0.08|1.34|=B4*C4|0.75|=D4*E4 {m}
+Cap|0.9|0.08|=B5*C5|1.46|=D5*E5
+""",
     "cases": """!sheet Joint
 LC|F1|F2|F3|Largest
 |kN|kN|kN|kN
@@ -119,6 +134,8 @@ WRONG = [
     ("columns", "op", "=B2+C3", "pattern-break"),
     ("turned", "s", "={sx}/2+{sx}/2*COS(60)+{t}*SIN(60)", "angle-unit"),
     ("girder", "d", "={w}*({l}*1000)^3/(48*{e}*{i}*10000)", "unit-scale"),
+    ("key", "rf", "={ta}/{p}", "allowable-mixed"),
+    ("stringer", "m", "0.11", "pasted-number"),
     ("cases", "m", "=MAX(B4:C4)", "short-range"),
 ]
 

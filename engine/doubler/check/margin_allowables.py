@@ -9,6 +9,7 @@ from doubler.check.fills import walk
 from doubler.check.finding import Finding
 from doubler.check.margin_anatomy import UNKNOWN, Anatomy, Margins
 from doubler.check.roles import ALLOWABLE, MARGIN, Role
+from doubler.units import kind
 from doubler.workbook.addresses import cell_name
 from doubler.workbook.examined import Key, cell_name_of, shown
 from doubler.workbook.syntax import Call, Number
@@ -62,10 +63,27 @@ def _wrong_mode(margins: Margins, margin: Anatomy, role: Role) -> tuple[frozense
     modes, own = _modes(margins, margin), role.modes & frozenset(_GOES_WITH)
     if not modes or not own:
         return None
+    stresses = _modes_of_stresses(margins, margin)
+    if stresses and margin.role.modes and not own & frozenset().union(*(_GOES_WITH[mode] for mode in stresses)):
+        modes = stresses  # the allowable is the margin's, and the stress another's
     served = frozenset().union(*(_GOES_WITH[mode] for mode in modes))
     if own & served or _converted(margins, margin):
         return None
     return served, f"the load is {_and(modes)} and {role.words!r} is the allowable for {_and(own)}"
+
+
+def _modes_of_stresses(margins: Margins, margin: Anatomy) -> frozenset[str]:
+    """Return the modes that the stresses behind a margin name; a force is named by its direction and tells no mode."""
+    found: frozenset[str] = frozenset()
+    for key in margin.applied:
+        declared, role = margins.book.declarations.unit(*key), margins.roles.at(key)
+        named = frozenset() if role is None else role.modes & frozenset(_GOES_WITH)
+        if declared is None or declared.unit.dimension != kind("stress").dimension or not named:
+            return frozenset()
+        if _EQUIVALENT.search(role.words if role is not None else ""):
+            return frozenset()
+        found |= named
+    return found
 
 
 def _wrong_level(margin: Anatomy, role: Role) -> tuple[frozenset[str], str] | None:

@@ -42,6 +42,8 @@ def _judge(book: Examined, fills: Fills, gap: Gap, address: Address) -> Finding 
     assert sheet is not None
     cell = sheet.cells[address]
     line = len(gap.before) + len(gap.after)
+    if cell.formula is None and _another_quantity(book, gap, address):
+        return None
     if cell.formula is None:
         if gap.inside:
             sure = line >= 2 and len(gap.cells) < line
@@ -68,6 +70,15 @@ def _stands_out(fills: Fills, gap: Gap, address: Address) -> bool:
     row, column = address
     sides = ((row, column - 1), (row, column + 1)) if gap.down else ((row - 1, column), (row + 1, column))
     return not any(trees.get(side) is trees[address] for side in sides)
+
+
+def _another_quantity(book: Examined, gap: Gap, address: Address) -> bool:
+    """Return whether a constant is declared as another quantity than its neighbours: it is no cell of their line."""
+    own = book.declarations.unit(gap.sheet, address)
+    sides = [book.declarations.unit(gap.sheet, side[0]) for side in (gap.before, gap.after) if side]
+    if own is None or own.weak or None in sides:
+        return False
+    return all(side is not None and side.unit.dimension != own.unit.dimension for side in sides)
 
 
 def _sums_up(book: Examined, fills: Fills, gap: Gap, address: Address) -> bool:
