@@ -91,9 +91,10 @@ class Declarations:
         return dict(self._pounds)
 
     def head(self, sheet: str, address: Address) -> Key:
-        """Return the cell that stands for a column: its header where there is one, else the cell itself."""
-        row = self.labels.layout(sheet).header_row(address)
-        return (sheet, address) if row is None else (sheet, (row, address[1]))
+        """Return the cell that stands for a column: its header, the top of a long list without one, or the cell itself."""
+        layout = self.labels.layout(sheet)
+        row = layout.header_row(address)
+        return sheet, (layout.list_top(address) if row is None else row, address[1])
 
     def _ask_all(self) -> None:
         if self._complete:

@@ -10,6 +10,8 @@ from functools import cached_property
 from doubler.workbook.capital_units import in_capitals, in_right_case
 from doubler.workbook.model import Address, Area, Sheet, Workbook
 
+LONG_LIST = 64
+"""So many numbers below each other without a text are a list of one quantity."""
 LONGEST_LABEL = 160
 """Longer texts are prose, not labels."""
 WIDEST_RUN = 60
@@ -74,6 +76,7 @@ class Layout:
         self._ends: dict[tuple[int, int], int] = {}
         self._above: dict[tuple[int, int], tuple[Address, ...]] = {}
         self._gaps: dict[int, int] = {}
+        self._lists: dict[int, list[tuple[int, int]]] | None = None
         self._last_head: dict[int, tuple[int, int, int]] = {}
         self._left: dict[Address, tuple[Address, ...]] = {}
         self._words: dict[tuple[Address, ...], tuple[str, ...]] = {}
@@ -131,6 +134,22 @@ class Layout:
                 found.append((row, columns[index]))
         known = self._left[nearest] = tuple(found)
         return known
+
+    def list_top(self, address: Address) -> int:
+        """Return the first row of the long list of numbers in which a cell stands; its own row where there is none."""
+        row, column = address
+        if self._lists is None:
+            rows: dict[int, list[int]] = {}
+            for at, cell in self.cells.items():
+                if cell.formula is not None or isinstance(cell.value, float):
+                    rows.setdefault(at[1], []).append(at[0])
+            self._lists = {at: _stretches(sorted(found)) for at, found in rows.items()}
+        stretches = self._lists.get(column, [])
+        at = bisect_left(stretches, (row + 1, 0)) - 1
+        if at < 0 or stretches[at][1] < row:
+            return row
+        first, last = stretches[at]
+        return first if last - first >= LONG_LIST else row
 
     def words(self, places: tuple[Address, ...]) -> tuple[str, ...]:
         """Return what stands in some cells, cut to the length of a label."""
@@ -223,6 +242,18 @@ class Layout:
             row -= 1
         self._above[head, column] = tuple(found)
         return self._above[head, column]
+
+
+def _stretches(rows: list[int]) -> list[tuple[int, int]]:
+    """Return the first and last of each stretch of neighbouring rows."""
+    found: list[tuple[int, int]] = []
+    start = before = rows[0]
+    for row in rows[1:]:
+        if row != before + 1:
+            found.append((start, before))
+            start = row
+        before = row
+    return [*found, (start, before)]
 
 
 def _size(area: Area) -> int:
