@@ -128,7 +128,7 @@ def _content(book: Examined, key: tuple[str, tuple[int, int]]) -> str:
 BLIND = """## A second set, written blind
 
 Sixty calculations in sixty habits, each with one fault and a clean twin, recalculated by LibreOffice. The first group \
-was written before its author had read a rule; the second and the third after that, without looking at the rules again. \
+was written before its author had read a rule; the second and the third later, without looking at the rules again. \
 Each group was measured once before anything was mended for it: these figures, and not the table above, tell what to \
 expect of unknown workbooks. A note of the right kind at the right cell counts as found.
 
