@@ -91,7 +91,7 @@ class Declarations:
         return dict(self._pounds)
 
     def head(self, sheet: str, address: Address) -> Key:
-        """Return the cell that stands for a column: its header, the top of a long list without one, or the cell itself."""
+        """Return the cell that stands for a column: its header, the top of a long list, or the cell itself."""
         layout = self.labels.layout(sheet)
         row = layout.header_row(address)
         return sheet, (layout.list_top(address) if row is None else row, address[1])
