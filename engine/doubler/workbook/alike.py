@@ -21,6 +21,7 @@ from doubler.workbook.carried import (
     State,
     Use,
     _add_uses,
+    add_hidden,
     contradictory,
     inside_sum,
 )
@@ -129,7 +130,7 @@ def together(
     sure = [(n, s) for n, s in terms if not n.opens]
     loose = [n for n, _ in terms if n.opens]
     factors, opens, sources = inside_sum([n for n, _ in terms])
-    hidden = tuple(h for n, _ in terms for h in n.hidden)
+    hidden = add_hidden(*(n.hidden for n, _ in terms))
     if not sure:
         one = loose[0]
         alike = all(n.dimension == one.dimension and n.opens == one.opens for n in loose)
@@ -150,7 +151,7 @@ def together(
         factors,
         (),
         sources,
-        hidden + extra,
+        add_hidden(hidden, extra),
         None,
         reference.angle_mark,
         shifted=any(n.shifted for n, _ in sure) or (bool(signs) and any(n.value != 0.0 for n, _ in literals)),

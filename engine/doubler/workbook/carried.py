@@ -152,11 +152,25 @@ TEXT = Carried(State.TEXT)
 LOGICAL = Carried(State.LOGICAL)
 BLANK = Carried(State.BLANK, value=0.0)
 RATIO = Carried(State.KNOWN)
+MOST_ROOTS = 8
+MOST_KEPT: Final = 64
+"""Literals and declared units that a node remembers; a long chain without a declared unit, row upon
+row, would else hand on all that came before, and where it reads a row twice, twice as much each time."""
+MOST_OPENS: Final = 256
+"""Undeclared inputs that a node remembers."""
+MOST_PAIRS: Final = 512
+"""Pairs of readings that a product tries; of more, those with the fewest conversions."""
+MOST_USES: Final = 16
+"""Conversions within one reading of a number; a reading that takes more is none that was meant."""
 
 
 def contradictory(roots: Iterable[Key] = ()) -> Carried:
-    """Return what a node carries once its units were found to contradict each other at `roots`."""
-    return Carried(State.CONTRADICTORY, rooted_at=tuple(roots))
+    """Return what a node carries once its units were found to contradict each other at `roots`.
+
+    Each root once and no more than the first few: where both sides of a product hang on one root, and the next row on
+    both, the roots would else double from row to row.
+    """
+    return Carried(State.CONTRADICTORY, rooted_at=tuple(dict.fromkeys(roots))[:MOST_ROOTS])
 
 
 def unknown(key: Key) -> Carried:
@@ -207,11 +221,12 @@ def multiply(left: Carried, right: Carried) -> Carried:
     value = None
     if left.value is not None and right.value is not None:
         value = left.value * right.value
+    most = MOST_READINGS if len(left.readings) * len(right.readings) <= MOST_PAIRS else MOST_READINGS // 3
     pure_left, pure_right = left.state is State.LITERAL, right.state is State.LITERAL
     readings = _limit(
         _times(a, b, left.value if pure_left else None, right.value if pure_right else None)
-        for a in left.readings
-        for b in right.readings
+        for a in left.readings[:most]
+        for b in right.readings[:most]
     )
     return Carried(
         state,
@@ -220,7 +235,7 @@ def multiply(left: Carried, right: Carried) -> Carried:
         _add_factors(left.factors, right.factors),
         _add_opens(left.opens, right.opens),
         _add_sources(left.sources, right.sources),
-        left.hidden + right.hidden,
+        add_hidden(left.hidden, right.hidden),
         value,
         left.angle_mark != right.angle_mark,
         shifted=left.shifted or right.shifted,
@@ -278,7 +293,12 @@ def _limit(readings: Iterable[Reading]) -> tuple[Reading, ...]:
     for reading in sorted(readings, key=lambda r: len(r.used)):
         key = (float(f"{reading.scale:.9e}"), float(f"{reading.zero:.6e}") + reading.weight)
         kept.setdefault(key, reading)
-    return tuple(kept.values())[:MOST_READINGS]
+    found = list(kept.values())[:MOST_READINGS]
+    while len(found) > 1 and len(found[-1].used) > MOST_USES:
+        found.pop()
+    if found and len(found[0].used) > MOST_USES:
+        found[0] = replace(found[0], used=found[0].used[:MOST_USES])
+    return tuple(found)
 
 
 def _add_uses(left: tuple[Use, ...], right: tuple[Use, ...]) -> tuple[Use, ...]:
@@ -292,7 +312,28 @@ def _add_uses(left: tuple[Use, ...], right: tuple[Use, ...]) -> tuple[Use, ...]:
 
 
 def _add_factors(left: tuple[Factor, ...], right: tuple[Factor, ...]) -> tuple[Factor, ...]:
-    return left + right if left and right else left or right
+    if not left or not right:
+        return left or right
+    return few_factors(left + right)
+
+
+def few_factors(factors: tuple[Factor, ...]) -> tuple[Factor, ...]:
+    """Return factors as they are; of very many each once, with its exponents added, and the first of them only."""
+    if len(factors) <= MOST_KEPT:
+        return factors
+    merged: dict[tuple[int, Key | None, bool], Factor] = {}
+    for factor in factors:
+        key = (factor.position, factor.cell, factor.common)
+        held = merged.get(key)
+        exponent = factor.exponent if held is None else held.exponent + factor.exponent
+        merged[key] = factor if held is None or not factor.common else replace(held, exponent=exponent)
+    return tuple(merged.values())[:MOST_KEPT]
+
+
+def add_hidden(*parts: tuple[Hidden, ...]) -> tuple[Hidden, ...]:
+    """Put together the literals that must carry a unit; of very many each once."""
+    found = tuple(item for part in parts for item in part)
+    return found if len(found) <= MOST_KEPT else tuple(dict.fromkeys(found))[:MOST_KEPT]
 
 
 def _add_opens(left: tuple[Open, ...], right: tuple[Open, ...]) -> tuple[Open, ...]:
@@ -307,7 +348,14 @@ def _add_opens(left: tuple[Open, ...], right: tuple[Open, ...]) -> tuple[Open, .
             merged[item.key] = replace(item, exponent=None)
         else:
             merged[item.key] = replace(item, exponent=held.exponent + item.exponent)
-    return tuple(o for o in merged.values() if o.exponent is None or o.exponent != 0)
+    return few_opens(tuple(o for o in merged.values() if o.exponent is None or o.exponent != 0))
+
+
+def few_opens(opens: tuple[Open, ...]) -> tuple[Open, ...]:
+    """Return undeclared inputs as they are; of very many the first, none of which can then cancel any more."""
+    if len(opens) <= MOST_OPENS:
+        return opens
+    return tuple(o if o.exponent is None else replace(o, exponent=None) for o in opens[:MOST_OPENS])
 
 
 def _add_sources(left: tuple[Source, ...], right: tuple[Source, ...]) -> tuple[Source, ...]:
@@ -322,7 +370,7 @@ def _add_sources(left: tuple[Source, ...], right: tuple[Source, ...]) -> tuple[S
             merged[item.cell] = replace(item, exponent=None)
         else:
             merged[item.cell] = replace(item, exponent=held.exponent + item.exponent)
-    return tuple(merged.values())
+    return tuple(merged.values())[:MOST_KEPT]
 
 
 def inside_sum(nodes: list[Carried]) -> tuple[tuple[Factor, ...], tuple[Open, ...], tuple[Source, ...]]:
@@ -354,4 +402,4 @@ def inside_sum(nodes: list[Carried]) -> tuple[tuple[Factor, ...], tuple[Open, ..
         first = sources_of_cell[0]
         everywhere = all(places.get(first.place) == {first.exponent} for places in by_place)
         merged_sources.append(first if everywhere else replace(first, exponent=None))
-    return tuple(factors), merged_opens, tuple(merged_sources)
+    return few_factors(tuple(factors)), few_opens(merged_opens), tuple(merged_sources)[:MOST_KEPT]
