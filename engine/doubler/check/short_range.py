@@ -13,7 +13,7 @@ from doubler.check.finding import Finding
 from doubler.check.recognise import quantity_at
 from doubler.workbook.addresses import area_name, cell_name
 from doubler.workbook.examined import Examined, Key, cell_name_of, shown
-from doubler.workbook.geometry import OutsideError
+from doubler.workbook.geometry import OutsideError, Run
 from doubler.workbook.graph import Group
 from doubler.workbook.model import Address, Area, Cell, Sheet
 from doubler.workbook.syntax import Axis, Call, RangeRef
@@ -78,12 +78,13 @@ def _lines(book: Examined) -> Iterator[_Line]:
         for call in walk(tree):
             if not isinstance(call, Call) or call.name not in _TAKES_ALL:
                 continue
-            for argument in call.arguments:
-                if isinstance(argument, RangeRef) and argument.last_sheet is None:
-                    yield from _line(book, group, call.name, argument)
+            ranges = [one for one in call.arguments if isinstance(one, RangeRef) and one.last_sheet is None]
+            for argument in ranges:
+                mates = [one for one in ranges if one is not argument] if call.name == "SUMPRODUCT" else []
+                yield from _line(book, group, call.name, argument, mates)
 
 
-def _line(book: Examined, group: Group, function: str, node: RangeRef) -> Iterator[_Line]:
+def _line(book: Examined, group: Group, function: str, node: RangeRef, mates: list[RangeRef]) -> Iterator[_Line]:
     if None in (node.first_row, node.last_row, node.first_column, node.last_column):
         return
     run = group.run
@@ -95,12 +96,32 @@ def _line(book: Examined, group: Group, function: str, node: RangeRef) -> Iterat
         except OutsideError:
             continue
         key = (book.workbook.sheets[run.sheet].name, run.cell(lane))
+        if not all(_goes_on(book, run, mate, lane, area) for mate in mates):
+            continue  # multiplied with a range that ends there
         tall, wide = area.last_row - area.first_row, area.last_column - area.first_column
         lookup = function in ("VLOOKUP", "INDEX")
         if tall >= 1 and (wide == 0 or lookup):
             yield _Line(key, book.workbook.sheets[index], area, function, down=True)
         elif wide >= 1 and tall == 0:
             yield _Line(key, book.workbook.sheets[index], area, function, down=False)
+
+
+def _goes_on(book: Examined, run: Run, mate: RangeRef, lane: int, area: Area) -> bool:
+    """Return whether a range of the same shape has a number beyond its end, or before its start, too."""
+    try:
+        ((index, other),) = book.graph.geometry.places(mate, run, lane)
+    except OutsideError:
+        return True
+    shape = area.last_row - area.first_row, area.last_column - area.first_column
+    if shape != (other.last_row - other.first_row, other.last_column - other.first_column):
+        return True
+    step = (1, 0) if shape[0] else (0, 1)
+    ends = (
+        (other.last_row + step[0], other.last_column + step[1]),
+        (other.first_row - step[0], other.first_column - step[1]),
+    )
+    cells = (book.workbook.sheets[index].cells.get(end) for end in ends)
+    return any(cell is not None and _holds_number(cell) for cell in cells)
 
 
 def _moves_along(node: RangeRef, down: int, across: int) -> bool:
@@ -175,7 +196,7 @@ def _same_words(book: Examined, sheet: str, inside: Address, beyond: Address, *,
 
 _NUMBERED = re.compile(
     r"^(?:(?:load )?cases?|lc|no\.?|nos\.?|nr\.?|n°|#|ids?|items?|pos\.?|points?|pts?\.?|nodes?|elem(?:ent)?s?|eid|nid|"
-    r"rows?|lines?|steps?|runs?|stations?|plies|ply|bolts?|fasteners?|blocks?|members?|bars?|years?)\b"
+    r"rows?|lines?|steps?|runs?|stations?|plies|ply|bolts?|fasteners?|blocks?|members?|bars?|years?)(?!\w)"
     r"(?: (?:no\.?|id|nr\.?|#))?$",
     re.IGNORECASE,
 )

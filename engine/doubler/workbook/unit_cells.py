@@ -17,6 +17,10 @@ _NEVER_ALONE = frozenset(
 )
 _NO_UNITS = frozenset(
     {"n/a", "na", "n.a.", "none", "text", "type", "tbd", "see note", "name", "unit", "units", "bool", "y/n"}
+    # What goods are counted and sold in, in lists of articles (common practice).
+    | {"l", "ltr", "litre", "litres", "liter", "liters", "box", "boxes", "bag", "bags", "roll", "rolls", "set", "sets"}
+    | {"pair", "pairs", "pack", "packs", "pallet", "pallets", "each", "sheet", "sheets", "bottle", "carton", "drum"}
+    | {"pc", "piece", "pieces", "item", "items", "lot", "job", "dozen", "person", "persons", "visit", "trip"}
 )
 
 
