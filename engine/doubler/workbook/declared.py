@@ -55,6 +55,7 @@ class Declarations:
     _columns: dict[tuple[str, int, int, int, bool], Declared | None] = field(default_factory=dict)
     _pounds: dict[Key, tuple[str, Address, str, Unit]] = field(default_factory=dict)
     _complete: bool = False
+    _apart_from_texts: dict[tuple[str, int, int], bool] = field(default_factory=dict)
 
     def label(self, sheet: str, address: Address) -> Label:
         """Return the words that belong to a cell."""
@@ -136,24 +137,33 @@ class Declarations:
     def _under_header(self, sheet: str, layout: Layout, address: Address) -> tuple[str, int, int, int, bool] | None:
         """Return the column from whose header alone a cell has its unit: no text beside it could tell another."""
         row, column = address
-        texts = layout.columns_of_text.get(row)
-        if texts:
-            if texts[-1] > column and (
-                (row, column + 1) in layout.texts
-                or (row, column + 2) in layout.texts
-                or layout.right_text(address) is not None
-            ):
-                return None
-            left = layout.left_texts(address) if texts[0] < column else ()
-            if left and (
-                len(left) > 1 or not is_bare_name(layout.texts[left[0]]) or layout.touches_left(address, left[0])
-            ):
-                return None
-        if address in layout.sheet.comments or (sheet, address) in self.labels.names:
+        shape = (sheet, layout.row_shape(row), column)
+        apart = self._apart_from_texts.get(shape)
+        if apart is None:
+            apart = self._apart_from_texts[shape] = self._no_text_tells(layout, address)
+        if not apart or address in layout.sheet.comments or (sheet, address) in self.labels.names:
             return None
         head = layout.header_row(address)
         cell = layout.cells.get(address)
         return None if head is None or cell is None else (sheet, head, column, cell.style, layout.apart(head, row))
+
+    @staticmethod
+    def _no_text_tells(layout: Layout, address: Address) -> bool:
+        """Return whether no text of its row bears on a cell's unit; the same in all rows of one shape."""
+        row, column = address
+        texts = layout.columns_of_text.get(row)
+        if not texts:
+            return True
+        if texts[-1] > column and (
+            (row, column + 1) in layout.texts
+            or (row, column + 2) in layout.texts
+            or layout.right_text(address) is not None
+        ):
+            return False
+        left = layout.left_texts(address) if texts[0] < column else ()
+        return not left or (
+            len(left) == 1 and is_bare_name(layout.texts[left[0]]) and not layout.touches_left(address, left[0])
+        )
 
     def _share(self, sheet: str, layout: Layout, address: Address, found: Found) -> Declared:
         absolute = False

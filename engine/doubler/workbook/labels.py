@@ -76,6 +76,7 @@ class Layout:
         self._ends: dict[tuple[int, int], int] = {}
         self._above: dict[tuple[int, int], tuple[Address, ...]] = {}
         self._gaps: dict[int, int] = {}
+        self._shapes: dict[int, int] | None = None
         self._lists: dict[int, list[tuple[int, int]]] | None = None
         self._last_head: dict[int, tuple[int, int, int]] = {}
         self._left: dict[Address, tuple[Address, ...]] = {}
@@ -143,13 +144,37 @@ class Layout:
             for at, cell in self.cells.items():
                 if cell.formula is not None or isinstance(cell.value, float):
                     rows.setdefault(at[1], []).append(at[0])
-            self._lists = {at: _stretches(sorted(found)) for at, found in rows.items()}
+            self._lists = {line: _stretches(sorted(found)) for line, found in rows.items()}
         stretches = self._lists.get(column, [])
-        at = bisect_left(stretches, (row + 1, 0)) - 1
-        if at < 0 or stretches[at][1] < row:
+        index = bisect_left(stretches, (row + 1, 0)) - 1
+        if index < 0 or stretches[index][1] < row:
             return row
-        first, last = stretches[at]
+        first, last = stretches[index]
         return first if last - first >= LONG_LIST else row
+
+    def row_shape(self, row: int) -> int:
+        """Return a number that rows share which hold numbers and texts in the same columns, bare names told apart."""
+        if self._shapes is None:
+            from doubler.workbook.label_units import is_bare_name
+
+            numbers: dict[int, list[int]] = {}
+            for (at, column), cell in self.cells.items():
+                if cell.formula is not None or isinstance(cell.value, float):
+                    numbers.setdefault(at, []).append(column)
+            known: dict[object, int] = {}
+            self._shapes = {}
+            for at in {*numbers, *self.columns_of_text}:
+                columns = self.columns_of_text.get(at, ())
+                origins = [self.origin((at, column)) for column in columns]
+                texts = tuple(
+                    [
+                        (column, is_bare_name(self.texts[at, column]), first - at, origin)
+                        for column, (first, origin) in zip(columns, origins, strict=True)
+                    ]
+                )
+                shape = (texts, tuple(sorted(numbers.get(at, ()))))
+                self._shapes[at] = known.setdefault(shape, len(known))
+        return self._shapes.get(row, -1)
 
     def words(self, places: tuple[Address, ...]) -> tuple[str, ...]:
         """Return what stands in some cells, cut to the length of a label."""
