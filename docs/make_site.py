@@ -34,6 +34,7 @@ SECTIONS = {
         "docs/tour.md",
         "docs/conventions.md",
         "docs/hosts.md",
+        "docs/tour-calc.md",
     ),
     "How-tos": ("docs/how-to/*.md",),
     "Functions": ("docs/functions/*.md",),

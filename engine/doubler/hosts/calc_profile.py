@@ -102,7 +102,7 @@ def uno_python(of: Path) -> Path | None:
 
 
 class Driven:
-    """A hidden LibreOffice on a profile, driven from here; use it in a ``with`` statement.
+    """A LibreOffice on a profile, driven from here; use it in a ``with`` statement.
 
     Parameters
     ----------
@@ -110,6 +110,8 @@ class Driven:
         The profile; made where it does not exist.
     of : Path, optional
         LibreOffice's program.
+    visible : bool, optional
+        Whether its windows are to be seen.
 
     Raises
     ------
@@ -117,7 +119,7 @@ class Driven:
         Where LibreOffice, or a Python with its ``uno`` module, is missing, or the session does not start.
     """
 
-    def __init__(self, profile: Path, of: Path | None = None) -> None:
+    def __init__(self, profile: Path, of: Path | None = None, visible: bool = False) -> None:
         own = of or program()
         python = uno_python(own)
         if python is None:
@@ -127,7 +129,7 @@ class Driven:
         script = str(resources.files("doubler.hosts") / "calc_session.py")
         profile.mkdir(parents=True, exist_ok=True)
         self._process = subprocess.Popen(
-            [str(python), "-E", script, str(own), profile.resolve().as_uri()],
+            [str(python), "-E", script, str(own), profile.resolve().as_uri(), *(["visible"] if visible else [])],
             stdin=subprocess.PIPE,
             stdout=subprocess.PIPE,
             text=True,

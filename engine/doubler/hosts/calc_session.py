@@ -20,16 +20,17 @@ CELL_EMPTY, CELL_TEXT = 0, 2
 
 
 class Session:
-    """A hidden LibreOffice in a process group of its own, on a profile of its own."""
+    """A LibreOffice in a process group of its own, on a profile of its own; hidden unless said otherwise."""
 
-    def __init__(self, program: str, profile_url: str) -> None:
+    def __init__(self, program: str, profile_url: str, hidden: bool = True) -> None:
         import uno
 
         self.uno = uno
+        self.hidden = hidden
         pipe = f"doubler{uuid.uuid4().hex}"
         words = [
             program,
-            "--headless",
+            *(["--headless"] if hidden else []),
             "--norestore",
             "--nologo",
             "--nodefault",
@@ -104,9 +105,9 @@ class Session:
         return self.context.getValueByName("/singletons/com.sun.star.deployment.ExtensionManager")
 
     def open(self, key: str, path: str) -> None:
-        """Open a document hidden, or a new spreadsheet where `path` is empty."""
+        """Open a document, or a new spreadsheet where `path` is empty."""
         url = self.uno.systemPathToFileUrl(path) if path else "private:factory/scalc"
-        document = self.desktop.loadComponentFromURL(url, "_blank", 0, self._properties(Hidden=True))
+        document = self.desktop.loadComponentFromURL(url, "_blank", 0, self._properties(Hidden=self.hidden))
         if document is None:
             raise RuntimeError(f"LibreOffice could not open {path}")
         self.documents[key] = document
@@ -176,6 +177,29 @@ class Session:
         """Close a document."""
         self.documents.pop(key).close(True)
 
+    def configure(self, path: str, name: str, value: Any) -> None:
+        """Set one of LibreOffice's own settings."""
+        provider = self._make("com.sun.star.configuration.ConfigurationProvider")
+        service = "com.sun.star.configuration.ConfigurationUpdateAccess"
+        node = provider.createInstanceWithArguments(service, self._properties(nodepath=path))
+        node.setPropertyValue(name, value)
+        node.commitChanges()
+
+    def show(self, key: str, sheet: str, address: str, box: list[int], zoom: int) -> None:
+        """Put a visible document's window in a place (left, top, width, height) and select cells in it."""
+        controller = self.documents[key].getCurrentController()
+        window = controller.getFrame().getContainerWindow()
+        window.setPosSize(*box, 15)
+        window.toFront()
+        controller.ZoomValue = zoom
+        controller.select(self._sheet(key, sheet).getCellRangeByName(address))
+
+    def widen(self, key: str, sheet: str, widths: dict[str, int]) -> None:
+        """Set columns' widths, in hundredths of a millimetre."""
+        columns = self._sheet(key, sheet).getColumns()
+        for name, width in widths.items():
+            columns.getByName(name).Width = width
+
     def functions(self, prefix: str) -> dict[str, Any]:
         """Return what the function wizard knows of the functions whose name begins with `prefix`."""
         known = self._make("com.sun.star.sheet.FunctionDescriptions")
@@ -235,10 +259,10 @@ class _Accept:
 
 
 def main() -> None:
-    """Serve one session: program and profile URL are the process's arguments."""
+    """Serve one session: program and profile URL are the process's arguments, then ``visible`` to see it."""
     session: Session | None = None
     try:
-        session = Session(sys.argv[1], sys.argv[2])
+        session = Session(sys.argv[1], sys.argv[2], sys.argv[3:] != ["visible"])
         print(json.dumps(["done", session.version()]), flush=True)
         for line in sys.stdin:
             verb, arguments = json.loads(line)

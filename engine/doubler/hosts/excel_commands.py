@@ -57,9 +57,9 @@ def install(folder: Path) -> Report:
         (
             f"the VBA module is written: {target}",
             "make it an add-in once, as docs/hosts.md shows: xlwings quickstart doubler_addin --addin --ribbon,",
-            "open doubler_addin.xlam, import the module in the VBA editor, set Interpreter_Win and UDF_Modules, save",
+            "open doubler_addin.xlam, import the module in the VBA editor, fill its sheet myaddin.conf in, save:",
             f"Interpreter_Win: {sys.executable}",
-            "UDF_Modules: doubler.hosts.excel_functions",
+            "UDF Modules: doubler.hosts.excel_functions",
             "to undo: doubler host excel remove, and remove the add-in in Excel under File > Options > Add-ins",
         )
     )
