@@ -266,7 +266,11 @@ def _belongs(book: Examined, key: Key, use: Use) -> bool:
 
 
 def blank_inputs(book: Examined) -> Iterator[Finding]:
-    """Find empty cells that a formula reads as a number."""
+    """Find empty cells that a formula reads as a number.
+
+    In a workbook none of whose formulas has a unit, which is no calculation of the trade but perhaps a form, a field
+    may stay empty on purpose: there it is a note.
+    """
     found: dict[Key, list[Key]] = {}
     for group, uses, tested in _single_uses(book):
         singles = [use for use in uses if isinstance(use.node, CellRef) and use.node not in tested]
@@ -275,9 +279,12 @@ def blank_inputs(book: Examined) -> Iterator[Finding]:
                 continue
             for lane in range(group.run.count):
                 reader = (book.workbook.sheets[group.run.sheet].name, group.run.cell(lane))
+                if isinstance(book.value(reader), str):
+                    continue  # IF(C5="","",…) asks another cell first, and shows no number
                 key = _blank(book, use, group, lane)
                 if key is not None and (use.how == ARITHMETIC or _is_quantity(book, reader)):
                     found.setdefault(key, []).append(reader)
+    measured = bool(found) and any(_is_quantity(book, key) for key, _ in book.formulas())
     waiting = _not_filled_in(book, found)
     if waiting:
         yield _rows_waiting(waiting)
@@ -291,7 +298,7 @@ def blank_inputs(book: Examined) -> Iterator[Finding]:
             key[0],
             cell_name(*key[1]),
             "blank-input",
-            "error",
+            "error" if measured else "note",
             f"The cell{named} is empty and {first} reads it as 0; write its value, or point the formula at the right "
             "cell.",
             "empty",
