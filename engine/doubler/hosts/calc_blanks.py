@@ -9,6 +9,7 @@ from __future__ import annotations
 
 import re
 import time
+from abc import ABC, abstractmethod
 from typing import Any, Dict, Iterable, Iterator, List, Sequence, Set, Tuple  # noqa: UP035 - Python 3.8
 
 ZERO, EMPTY, OMITTED, UNKNOWN = "zero", "empty", "omitted", "unknown"
@@ -43,27 +44,27 @@ Table = Tuple[Dict[Tuple[Any, ...], Set[str]], List[Tuple[List[Any], str]]]  # n
 """Calls by the values of their arguments, and calls of which some are not known."""
 
 
-class Sheets:
+class Sheets(ABC):
     """What is asked of the open documents; the component gives one that does it over UNO."""
 
+    @abstractmethod
     def formulas(self) -> Iterable[Tuple[Any, str]]:  # noqa: UP006
         """Give (sheet, formula text) of every formula cell of the documents that may have made the call."""
-        raise NotImplementedError
 
+    @abstractmethod
     def state(self) -> Tuple[Any, bool]:  # noqa: UP006
         """Return what tells one set of open documents from another, and whether every change of them is told."""
-        raise NotImplementedError
 
+    @abstractmethod
     def value(self, sheet: Any, reference: Reference) -> Tuple[Any, bool]:  # noqa: UP006
         """Give one cell's value and whether a formula gives it.
 
         The value is a float, a text, None where the cell is empty, `UNREAD` where it shows an error.
         """
-        raise NotImplementedError
 
+    @abstractmethod
     def is_empty(self, sheet: Any, reference: Reference) -> bool:
         """Say whether one cell is empty; nothing may be computed for that."""
-        raise NotImplementedError
 
 
 def calls_in(formula: str, names: Set[str]) -> Iterator[Tuple[str, List[str]]]:  # noqa: UP006
