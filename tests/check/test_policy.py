@@ -8,6 +8,7 @@ from tests.check.written_sheets import all_written, build
 from doubler.check.examination import check
 from doubler.check.policy import read_policy
 from doubler.errors import InputError
+from strap_book import strap_template
 
 BOOKS = {book.name: book for book in all_written()}
 
@@ -55,6 +56,19 @@ def test_a_silenced_kind_is_kept_with_its_reason(tmp_path: Path) -> None:
     assert report.as_object()["policy"]["kinds"][0] == {
         "kind": "hidden-input", "severity": "off", "reason": "the customer hides it", "silenced": 1,
     }  # fmt: skip
+
+
+def test_the_record_prints_the_reason_of_what_is_silenced(tmp_path: Path) -> None:
+    from doubler.check.record import write_record
+
+    book = strap_template(tmp_path / "strap.xlsx", {"ms_yield": "=C6/C10"})
+    reason = "agreed with the customer for this part"
+    (tmp_path / "doubler.toml").write_text(f'[kinds.margin-form]\nseverity = "off"\nreason = "{reason}"\n')
+    page = write_record(check(book), tmp_path / "record").html.read_text(encoding="utf-8")
+    assert "Checked under doubler.toml" in page
+    assert reason in page
+    (tmp_path / "doubler.toml").unlink()
+    assert "Checked under" not in write_record(check(book), tmp_path / "other").html.read_text(encoding="utf-8")
 
 
 @pytest.mark.parametrize(

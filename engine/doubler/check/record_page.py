@@ -17,6 +17,8 @@ from doubler.explain import Explanation, explain
 if TYPE_CHECKING:
     from jinja2 import Template
 
+    from doubler.check.examination import CheckReport
+
 MOST_FINDINGS = 400
 MOST_MARGINS = 200
 """What a page shows at most; how much more there is, and where it stands, is said on it."""
@@ -65,8 +67,14 @@ def page(content: Content) -> str:
         number=number_shown,
         rounded=lambda value: float(f"{value:.5g}") + 0.0,
         against=content.comparison,
+        policy=_policy(content.report),
         changes=content.comparison.changes[:MOST_CHANGES] if content.comparison else [],
     )
+
+
+def _policy(report: CheckReport) -> dict[str, Any] | None:
+    """Return what is printed of the policy, or None where the workbook was checked without one."""
+    return None if report.policy.path is None else report.policy.as_object(report.silenced)
 
 
 def _share(part: int, whole: int) -> str:
