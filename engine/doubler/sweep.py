@@ -117,7 +117,7 @@ def _evaluated(
     opened: OpenedTemplate, outputs: list[Port], batches: Iterator[CaseBatch], scheduler: str | None
 ) -> Iterator[tuple[CaseBatch, dict[str, Any]]]:
     if scheduler is not None:
-        yield from _shared(opened, outputs, batches, scheduler)
+        yield from _shared(opened, batches, scheduler)
         return
     for batch in batches:
         yield batch, results_of(opened, outputs, batch)
@@ -148,7 +148,7 @@ def results_of(opened: OpenedTemplate, outputs: list[Port], batch: CaseBatch) ->
 
 
 def _shared(
-    opened: OpenedTemplate, outputs: list[Port], batches: Iterator[CaseBatch], scheduler: str
+    opened: OpenedTemplate, batches: Iterator[CaseBatch], scheduler: str
 ) -> Iterator[tuple[CaseBatch, dict[str, Any]]]:
     """Evaluate batches on the workers of a scheduler, a few ahead of the one being written."""
     try:
@@ -173,7 +173,6 @@ def _shared(
                 yield first, future.result()
         for first, future in waiting:
             yield first, future.result()
-    del outputs
 
 
 _OPENED: dict[bytes, tuple[OpenedTemplate, list[Port]]] = {}

@@ -173,10 +173,11 @@ def bind_cases(table: CaseTable, template: Template) -> BoundCases:
         if other is not heading:
             raise InputError(f"{where} and column {other.text!r} both fill {port.place}; keep one of them")
         columns.append(_Bound(index, heading, port, _form(template, port, heading, where)))
+    read = template.cells_read()
     missing = [
         port
         for port in template.inputs.values()
-        if (port.sheet, port.address) not in taken and _is_blank(template, port) and _is_read(template, port)
+        if (port.sheet, port.address) not in taken and _is_blank(template, port) and (port.sheet, port.address) in read
     ]
     if missing:
         names = ", ".join(f"{port.heading!r}" for port in missing)
@@ -198,10 +199,6 @@ def _case_title(template: Template) -> Port | None:
 def _is_blank(template: Template, port: Port) -> bool:
     cell = template.cell(port)
     return cell is None or cell.value is None
-
-
-def _is_read(template: Template, port: Port) -> bool:
-    return (port.sheet, port.address) in template.cells_read()
 
 
 def _form(template: Template, port: Port, heading: Heading, where: str) -> str:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass, field, replace
+from dataclasses import dataclass, field
 from typing import Any
 
 SEVERITIES = ("error", "warning", "note")
@@ -76,10 +76,6 @@ class Finding:
             raise ValueError(f"no such kind of finding: {self.kind}")
         if self.severity not in SEVERITIES:
             raise ValueError(f"no such severity: {self.severity}")
-
-    def with_follows(self, follows: tuple[str, ...]) -> Finding:
-        """Return the finding with what was folded under it."""
-        return replace(self, follows=follows)
 
     def as_object(self) -> dict[str, Any]:
         """Return the finding as the contract's JSON object."""

@@ -126,10 +126,6 @@ class Unit:
         energy = "energy" in (self.kind, other.kind) and sign > 0 and dimension == _ENERGY
         return Unit(text, dimension, scale, system=system, kind="energy" if energy else "")
 
-    def same_scale(self, other: Unit) -> bool:
-        """Return whether two units of one dimension mean the same size, to rounding."""
-        return abs(self.scale - other.scale) <= 1e-12 * abs(other.scale)
-
     def __repr__(self) -> str:
         return f"<Unit {self.text}>"
 

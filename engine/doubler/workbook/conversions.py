@@ -166,14 +166,6 @@ def conversion(value: float, text: str = "") -> Conversion | None:
     return Conversion(best * scale, strong)
 
 
-def is_power_of_thousand(value: float) -> bool:
-    """Return whether a number is 1000, 10⁶, 0.001 … but not 1."""
-    if value <= 0.0:
-        return False
-    power = math.log10(value) / 3
-    return abs(power - round(power)) < 1e-9 and round(power) != 0
-
-
 _SIMPLE_ROOTS = (
     math.sqrt(2),
     math.sqrt(3),

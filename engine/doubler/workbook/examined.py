@@ -211,17 +211,6 @@ class Examined:
                     work.append(reader)
         return found
 
-    def upstream(self, key: Key) -> set[Key]:
-        """Return all cells on which a formula cell depends, without itself."""
-        found: set[Key] = set()
-        work = deque([key])
-        while work:
-            for read in self.cells_read(work.popleft()):
-                if read not in found:
-                    found.add(read)
-                    work.append(read)
-        return found
-
 
 def cell_name_of(key: Key) -> str:
     """Write a cell with its sheet, as findings do."""

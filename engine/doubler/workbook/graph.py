@@ -88,11 +88,6 @@ class Graph:
         index = self.sheet_index(sheet)
         return None if index is None else self.occupancy[index].at(*address)
 
-    def tree_at(self, sheet: str, address: Address) -> Node | None:
-        """Return the syntax tree of a formula cell, as parsed; None where there is none."""
-        found = self.group_at(sheet, address)
-        return None if found is None else self.groups[found[0]].tree
-
     def places_read(self, group: int) -> list[Place]:
         """Return the rectangles that a group reads, over all its copies."""
         program = self.groups[group].program

@@ -109,29 +109,6 @@ class MovableFormula:
         return _TOKEN.sub(replace, self.text)
 
 
-def shift_formula(text: str, rows: int, columns: int) -> str:
-    """Return a formula's text moved by some rows and columns.
-
-    Parameters
-    ----------
-    text : str
-        Formula without its leading ``=``.
-    rows, columns : int
-        The move; negative is up and left.
-
-    Returns
-    -------
-    str
-        Relative references moved; anchored ones, text, sheet names, table references and names unchanged.
-
-    Examples
-    --------
-    >>> shift_formula("SUM(B$2:B9)*Rates!$A1", 1, 1)
-    'SUM(C$2:C10)*Rates!$A2'
-    """
-    return MovableFormula(text).moved(rows, columns)
-
-
 def _cut(match: re.Match[str]) -> list[_Piece] | None:
     """Cut a reference into fixed and relative pieces; None where the token is none, or does not move."""
     if match.lastgroup is None:

@@ -6,7 +6,7 @@ import re
 from dataclasses import dataclass
 from functools import lru_cache
 
-from doubler.units import Unit, UnitError, consistent_set, kind, parse_unit
+from doubler.units import Unit, UnitError, kind, parse_unit
 from doubler.workbook.roles import is_pure_number, kind_of_role, roles
 
 LONGEST_UNIT = 24
@@ -258,11 +258,3 @@ def format_unit(number_format: str) -> UnitText:
 def is_percent_format(number_format: str) -> bool:
     """Return whether a number format shows the number times a hundred with a percent sign."""
     return "%" in re.sub(r'"[^"]*"|\\.', "", number_format.split(";", maxsplit=1)[0])
-
-
-def is_set_name(text: str) -> bool:
-    """Return whether a text names a consistent set of units, such as N-mm."""
-    try:
-        return consistent_set(text) is not None
-    except UnitError:
-        return False
